@@ -39,13 +39,10 @@ export type Answer<T extends object = Record<never, never>> =
 
 export interface ClientToServerEvents {
   /** Enters the run's room; answers its state and every trace sample so far. */
-  join: (
-    event: JoinRunEvent,
-    answer: (a: Answer<{ run: RunDto; traces: TraceEvent["traces"] }>) => void,
-  ) => void;
-  leave: (event: JoinRunEvent, answer: (a: Answer) => void) => void;
+  join: (event: JoinRunEvent, answer: (a: Joined) => void) => void;
+  leave: (event: JoinRunEvent, answer: (a: Done) => void) => void;
   /** Asks for frames; replaces this viewer's earlier view of the run. */
-  view: (event: ViewEvent, answer: (a: Answer) => void) => void;
+  view: (event: ViewEvent, answer: (a: Done) => void) => void;
   /** Acknowledges a frame by its sequence: the viewer has drawn it and can take another. */
   credit: (event: CreditEvent) => void;
 }
