@@ -33,9 +33,12 @@ export interface TraceEvent {
   traces: { probe: string; unit: string; startNs: number; stepNs: number; from: number; values: number[] }[];
 }
 
-export type Answer<T extends object = Record<never, never>> =
-  | ({ ok: true } & T)
-  | { ok: false; error: ErrorDto };
+export interface Refusal {
+  ok: false;
+  error: ErrorDto;
+}
+export type Done = { ok: true } | Refusal;
+export type Joined = { ok: true; run: RunDto; traces: TraceEvent["traces"] } | Refusal;
 
 export interface ClientToServerEvents {
   /** Enters the run's room; answers its state and every trace sample so far. */
