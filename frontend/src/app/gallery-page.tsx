@@ -1,0 +1,3 @@
+export function GalleryPage() {
+  return null;
+}

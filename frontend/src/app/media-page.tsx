@@ -1,0 +1,3 @@
+export function MediaPage() {
+  return null;
+}

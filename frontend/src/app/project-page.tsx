@@ -1,0 +1,3 @@
+export function ProjectPage() {
+  return null;
+}

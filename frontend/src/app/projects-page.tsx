@@ -1,0 +1,3 @@
+export function ProjectsPage() {
+  return null;
+}

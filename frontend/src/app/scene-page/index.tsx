@@ -1,0 +1,3 @@
+export function ScenePage() {
+  return null;
+}

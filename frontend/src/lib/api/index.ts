@@ -1,0 +1,3 @@
+export { request } from "./client";
+export { ApiError, sentenceOf } from "./errors";
+export { onSignedOut } from "./signed-out";
