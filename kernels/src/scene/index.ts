@@ -6,3 +6,20 @@ export * from "./schema-drives.js";
 export * from "./schema-media.js";
 export * from "./schema-paint.js";
 export * from "./schema-values.js";
+export {
+  type CostEstimate,
+  cellsPerWavelength,
+  countedWavelengthsMm,
+  estimateCost,
+  type Grid,
+  gridOf,
+  shortestWavelengthMm,
+} from "./grid.js";
+export { canonicalJson, documentSha256, resultSha256, sceneSha256 } from "./hash.js";
+export * from "./media-figures.js";
+export { mediumAt, patchContains } from "./contains.js";
+export { evaluateExpression, type Evaluation } from "./expressions.js";
+export * from "./features.js";
+export { type Migration, MIGRATIONS } from "./migrations.js";
+export { type ReadOptions, type ReadOutcome, readScene } from "./read.js";
+export { defaultWaveform, resolveScene, SceneError } from "./resolve.js";
