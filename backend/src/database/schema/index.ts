@@ -4,6 +4,7 @@ export * from "./media.js";
 export * from "./members.js";
 export * from "./people.js";
 export * from "./projects.js";
+export * from "./runs.js";
 export * from "./scene-revisions.js";
 export * from "./scenes.js";
 export * from "./sessions.js";
