@@ -1,0 +1,2 @@
+/** Media: what their figures mean to a wave. */
+export * from "./figures.js";
