@@ -7,5 +7,6 @@ export const PATHS = {
   migrations: fromRoot("drizzle"),
   examples: fromRoot("examples"),
   pages: fromRoot("frontend/dist"),
+  manifest: fromRoot("backend/package.json"),
   defaultDataDir: fromRoot(".data"),
 } as const;

@@ -1,0 +1,36 @@
+import { Module, type DynamicModule } from "@nestjs/common";
+import { AuthModule } from "./auth/auth.module.js";
+import type { BetterAuth } from "./auth/better-auth.js";
+import { BetterAuthModule } from "./auth/better-auth.module.js";
+import { CommonModule } from "./common/common.module.js";
+import type { Config } from "./config/config.js";
+import { ConfigModule } from "./config/config.module.js";
+import type { Database } from "./database/database.js";
+import { DatabaseModule } from "./database/database.module.js";
+import { HealthModule } from "./health/health.module.js";
+import { WorkspacesModule } from "./workspaces/workspaces.module.js";
+
+/** What is opened before the modules are put together. */
+export interface Foundations {
+  config: Config;
+  db: Database;
+  betterAuth: BetterAuth;
+}
+
+@Module({})
+export class AppModule {
+  static of({ config, db, betterAuth }: Foundations): DynamicModule {
+    return {
+      module: AppModule,
+      imports: [
+        ConfigModule.of(config),
+        DatabaseModule.of(db),
+        BetterAuthModule.of(betterAuth),
+        CommonModule,
+        AuthModule,
+        WorkspacesModule,
+        HealthModule,
+      ],
+    };
+  }
+}

@@ -1,0 +1,74 @@
+/** Puts the server together; `main` and the tests start from here. */
+import type { LoggerService, LogLevel } from "@nestjs/common";
+import { NestFactory } from "@nestjs/core";
+import type { NestExpressApplication } from "@nestjs/platform-express";
+import { json } from "express";
+import { AppModule } from "./app.module.js";
+import { authRoutes } from "./auth/auth.routes.js";
+import { makeBetterAuth } from "./auth/better-auth.js";
+import { OriginPolicy } from "./common/origin-policy.js";
+import { servePages, securityHeaders } from "./common/pages.js";
+import type { Config } from "./config/config.js";
+import { openDataFolder, readSecret } from "./config/data-folder.js";
+import { openDatabase } from "./database/database.js";
+
+/** Largest body of a request: the maximum of a scene document, and room for what wraps it. */
+const BODY_LIMIT_BYTES = 2 * 1024 * 1024 + 16 * 1024;
+
+export interface AppOptions {
+  logger?: LoggerService | LogLevel[] | false;
+}
+
+/**
+ * Opens the data folder and the database and builds the application over them; `listen` it or `init` it.
+ * Closing the application closes both.
+ * @throws DataFolderError when the folder cannot be used; whatever the database driver throws
+ */
+export async function createApp(config: Config, options: AppOptions = {}): Promise<NestExpressApplication> {
+  const folder = await openDataFolder(config.dataDir);
+  try {
+    const database = await openDatabase(config.database);
+    try {
+      const betterAuth = makeBetterAuth(config, database.db, await readSecret(folder));
+      const app = await NestFactory.create<NestExpressApplication>(
+        AppModule.of({ config, db: database.db, betterAuth }),
+        {
+          bodyParser: false,
+          abortOnError: false,
+          forceCloseConnections: true,
+          logger: options.logger ?? ["error", "warn"],
+        },
+      );
+      app.disable("x-powered-by");
+      app.setGlobalPrefix("api");
+      app.use(securityHeaders);
+      app.use("/api", app.get(OriginPolicy).middleware);
+      app.use("/api/auth", authRoutes(betterAuth));
+      app.use("/api", json({ limit: BODY_LIMIT_BYTES, strict: true }));
+      servePages(app);
+      closeWith(app, async () => {
+        await database.close();
+        await folder.release();
+      });
+      return app;
+    } catch (error) {
+      await database.close();
+      throw error;
+    }
+  } catch (error) {
+    await folder.release();
+    throw error;
+  }
+}
+
+/** Stops accepting first, lets every module end its work, then runs `last`; once, however often it is asked. */
+function closeWith(app: NestExpressApplication, last: () => Promise<void>): void {
+  const close = app.close.bind(app);
+  let closing: Promise<void> | undefined;
+  app.close = () => {
+    const server = app.getHttpServer();
+    if (server.listening) server.close();
+    closing ??= close().finally(last);
+    return closing;
+  };
+}

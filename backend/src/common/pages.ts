@@ -1,0 +1,56 @@
+/** The built pages on the server's own port: files as they are, every other path the one page. */
+import { existsSync } from "node:fs";
+import { join, sep } from "node:path";
+import type { NestExpressApplication } from "@nestjs/platform-express";
+import type { NextFunction, Request, Response } from "express";
+import { PATHS } from "../config/paths.js";
+
+const CONTENT_SECURITY_POLICY = [
+  "default-src 'self'",
+  // The style engine of the pages writes its rules into style elements.
+  "style-src 'self' 'unsafe-inline'",
+  "img-src 'self' data: blob:",
+  "font-src 'self' data:",
+  // A socket of the page's own origin; older browsers do not read 'self' as that.
+  "connect-src 'self' ws: wss:",
+  "worker-src 'self' blob:",
+  "object-src 'none'",
+  "base-uri 'none'",
+  "form-action 'self'",
+  "frame-ancestors 'none'",
+].join("; ");
+
+export function securityHeaders(_request: Request, response: Response, next: NextFunction): void {
+  response.setHeader("content-security-policy", CONTENT_SECURITY_POLICY);
+  response.setHeader("x-content-type-options", "nosniff");
+  response.setHeader("referrer-policy", "same-origin");
+  response.setHeader("cross-origin-opener-policy", "same-origin");
+  response.setHeader("cross-origin-resource-policy", "same-origin");
+  next();
+}
+
+/** Paths that are never a page of the application. */
+const NO_PAGE = /^\/(api|socket\.io|assets)(\/|$)/;
+
+/** Serves `frontend/dist`; hashed assets for a year, the page itself never from a cache without asking. */
+export function servePages(app: NestExpressApplication, folder: string = PATHS.pages): void {
+  const page = join(folder, "index.html");
+  app.useStaticAssets(folder, {
+    index: false,
+    setHeaders: (response, path) => {
+      const hashed = path.startsWith(join(folder, "assets") + sep);
+      response.setHeader("cache-control", hashed ? "public, max-age=31536000, immutable" : "no-cache");
+    },
+  });
+  app.use((request: Request, response: Response, next: NextFunction) => {
+    const wanted = (request.method === "GET" || request.method === "HEAD") && !NO_PAGE.test(request.path);
+    if (!wanted || !existsSync(page)) {
+      next();
+      return;
+    }
+    response.setHeader("cache-control", "no-cache");
+    response.sendFile(page, (error?: Error) => {
+      if (error !== undefined) next(error);
+    });
+  });
+}
