@@ -1,0 +1,56 @@
+import type { PointMm } from "../../hooks/viewport";
+import { formatFixed, formatSi, THIN_SPACE } from "../../lib/figures";
+import type { SectionSize } from "./field-layer";
+import type { FieldSlot } from "./field-slot";
+import { useFrameFacts } from "./frame-facts";
+import { resolution, valueAt } from "./frame-view";
+import { labelOf, unitOf } from "./quantities";
+import styles from "./field.module.css";
+
+export interface FieldReadoutProps {
+  slot: FieldSlot;
+  section: SectionSize;
+  at: PointMm | null;
+  /** Cells of the run's grid; null before a run has one. */
+  grid: { nx: number; ny: number } | null;
+  /** The name of the medium at a point of the section. */
+  mediumAt: (at: PointMm) => string | null;
+}
+
+/** Under the pointer: place, cell, value and medium, in one line. */
+export function FieldReadout({ slot, section, at, grid, mediumAt }: FieldReadoutProps) {
+  // Renews the line while a run goes on under a resting pointer.
+  useFrameFacts(slot);
+  const frame = slot.latest();
+  const inside =
+    at !== null && at.xMm >= 0 && at.yMm >= 0 && at.xMm <= section.widthMm && at.yMm <= section.heightMm;
+  if (!inside) return <output className={styles.readout} aria-label="Under the pointer" />;
+  const across = at.xMm / section.widthMm;
+  const up = at.yMm / section.heightMm;
+  const value = frame === null ? null : valueAt(frame, across, up);
+  const cell = (share: number, count: number): number => Math.min(count - 1, Math.floor(share * count));
+  // A value that the levels cannot tell from zero is not given more figures than it has.
+  const small = frame !== null && value !== null && Math.abs(value) < resolution(frame);
+  return (
+    <output className={styles.readout} aria-label="Under the pointer">
+      <span>
+        x {formatFixed(at.xMm, 2)} y {formatFixed(at.yMm, 2)}
+        {THIN_SPACE}mm
+      </span>
+      {grid !== null && (
+        <span>
+          cell {cell(across, grid.nx)}, {cell(up, grid.ny)}
+        </span>
+      )}
+      {frame !== null && value !== null && (
+        <span>
+          {labelOf(frame.quantity)}{" "}
+          {small
+            ? `< ${formatSi(resolution(frame), unitOf(frame.quantity), 1)}`
+            : formatSi(value, unitOf(frame.quantity))}
+        </span>
+      )}
+      <span>{mediumAt(at) ?? ""}</span>
+    </output>
+  );
+}
