@@ -1,7 +1,18 @@
 /** What a viewer asks for, what the solver samples, and what travels. PROTOCOL.md says how it is laid out in bytes. */
 
 /** Field quantities of a frame. Components exist per polarization; magnitudes and densities in both. */
-export const FIELD_QUANTITIES = ["Ez", "Hx", "Hy", "Hz", "Ex", "Ey", "absE", "absH", "energyDensity", "lossDensity"] as const;
+export const FIELD_QUANTITIES = [
+  "Ez",
+  "Hx",
+  "Hy",
+  "Hz",
+  "Ex",
+  "Ey",
+  "absE",
+  "absH",
+  "energyDensity",
+  "lossDensity",
+] as const;
 export type FieldQuantity = (typeof FIELD_QUANTITIES)[number];
 
 export interface ViewRequest {
