@@ -21,7 +21,9 @@ function settings(): Config {
 
 function sentenceOf(error: unknown, config: Config): string {
   if (error instanceof DataFolderError) return error.message;
-  return listenError(error, config) ?? (error instanceof Error ? (error.stack ?? error.message) : String(error));
+  return (
+    listenError(error, config) ?? (error instanceof Error ? (error.stack ?? error.message) : String(error))
+  );
 }
 
 async function start(config: Config): Promise<void> {

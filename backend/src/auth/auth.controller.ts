@@ -1,5 +1,10 @@
 import { Body, Controller, Get, HttpCode, Post, Req, Res } from "@nestjs/common";
-import { ApiBadRequestResponse, ApiConflictResponse, ApiNoContentResponse, ApiOkResponse } from "@nestjs/swagger";
+import {
+  ApiBadRequestResponse,
+  ApiConflictResponse,
+  ApiNoContentResponse,
+  ApiOkResponse,
+} from "@nestjs/swagger";
 import type { Request, Response } from "express";
 import type { z } from "zod";
 import { Needs, Open } from "../common/access.js";

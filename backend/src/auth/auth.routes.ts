@@ -6,14 +6,22 @@ import { describeError } from "../common/error.filter.js";
 import { ADDRESS_HEADER, PASSWORD_LENGTH, type BetterAuth } from "./better-auth.js";
 
 /** Everything else that better-auth could serve stays shut. */
-const ROUTES = new Set(["POST /sign-in/email", "POST /sign-out", "GET /get-session", "POST /change-password"]);
+const ROUTES = new Set([
+  "POST /sign-in/email",
+  "POST /sign-out",
+  "GET /get-session",
+  "POST /change-password",
+]);
 
 const LENGTH_CODES = new Set(["PASSWORD_TOO_SHORT", "PASSWORD_TOO_LONG"]);
 
 function refusalOf(status: number, code: string, retryAfterSeconds: string | null): Refusal {
   if (status === 429) {
     const wait = retryAfterSeconds === null ? "a minute" : `${retryAfterSeconds} seconds`;
-    return new Refusal("too-many", `Too many attempts to sign in from your address: wait ${wait} and try again.`);
+    return new Refusal(
+      "too-many",
+      `Too many attempts to sign in from your address: wait ${wait} and try again.`,
+    );
   }
   if (code === "INVALID_EMAIL_OR_PASSWORD") {
     return new Refusal("not-signed-in", "The e-mail address or the password is wrong.");
@@ -59,7 +67,9 @@ async function inOurWords(answer: Response): Promise<Response> {
 
 /** Express handler to mount at /api/auth before any body is parsed. */
 export function authRoutes(betterAuth: BetterAuth) {
-  const handle = toNodeHandler(async (request: globalThis.Request) => inOurWords(await betterAuth.handler(request)));
+  const handle = toNodeHandler(async (request: globalThis.Request) =>
+    inOurWords(await betterAuth.handler(request)),
+  );
   return (request: Request, response: ExpressResponse, next: NextFunction): void => {
     if (!ROUTES.has(`${request.method} ${request.path}`)) {
       const refusal = refusalOf(404, "", null);

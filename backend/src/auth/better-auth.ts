@@ -37,7 +37,13 @@ const opensSessions = {
 } satisfies BetterAuthPlugin;
 
 export function makeBetterAuth(config: Config, db: Database, secret: string) {
-  const tables = { user: people, session: sessions, account: accounts, verification: verifications, rateLimit: rateLimits };
+  const tables = {
+    user: people,
+    session: sessions,
+    account: accounts,
+    verification: verifications,
+    rateLimit: rateLimits,
+  };
   return betterAuth({
     appName: "Heddle",
     secret,

@@ -10,7 +10,10 @@ import { installation, members, workspaces } from "../database/schema/index.js";
 import { addPerson } from "./people.js";
 
 const takenAlready = (): Refusal =>
-  new Refusal("wrong-state", "This installation already has its first owner: sign in, or ask them to invite you.");
+  new Refusal(
+    "wrong-state",
+    "This installation already has its first owner: sign in, or ask them to invite you.",
+  );
 
 /** The first person of an installation, who owns its workspace. The demo's invented people do not count. */
 @Injectable()

@@ -22,7 +22,8 @@ function hashWhere(where: Where[]): { where: Where[]; tokenByHash: Map<string, s
   const rewritten = where.map((clause): Where => {
     if (clause.field !== "token") return clause;
     if (typeof clause.value === "string") return { ...clause, value: hashed(clause.value) };
-    if (Array.isArray(clause.value)) return { ...clause, value: clause.value.map((value) => hashed(String(value))) };
+    if (Array.isArray(clause.value))
+      return { ...clause, value: clause.value.map((value) => hashed(String(value))) };
     return clause;
   });
   return { where: rewritten, tokenByHash };
@@ -39,7 +40,8 @@ function restore<Row>(row: Row, tokenByHash: ReadonlyMap<string, string>): Row {
 
 function wrapRows(inner: TransactionAdapter): TransactionAdapter {
   const forSession = <Query extends { model: string; where?: Where[] | undefined }>(query: Query) => {
-    if (query.model !== "session" || query.where === undefined) return { query, tokenByHash: new Map<string, string>() };
+    if (query.model !== "session" || query.where === undefined)
+      return { query, tokenByHash: new Map<string, string>() };
     const { where, tokenByHash } = hashWhere(query.where);
     return { query: { ...query, where }, tokenByHash };
   };
@@ -49,7 +51,9 @@ function wrapRows(inner: TransactionAdapter): TransactionAdapter {
       if (query.model !== "session" || !hasToken(query.data)) return inner.create(query);
       const { token } = query.data;
       const row = await inner.create({ ...query, data: { ...query.data, token: hash(token) } });
-      return restore(row, new Map([[hash(token), token]])) as Awaited<ReturnType<typeof inner.create>> as never;
+      return restore(row, new Map([[hash(token), token]])) as Awaited<
+        ReturnType<typeof inner.create>
+      > as never;
     },
     findOne: async (query) => {
       const s = forSession(query);

@@ -22,7 +22,8 @@ export class AccessGuard implements CanActivate {
       context.getClass(),
     ]);
     if (access === "open") return true;
-    if (access === undefined) throw new Error(`${context.getClass().name} has a route that declares no access.`);
+    if (access === undefined)
+      throw new Error(`${context.getClass().name} has a route that declares no access.`);
     const request = context.switchToHttp().getRequest<Request>();
     const actor = await this.auth.actorOf(request.headers);
     if (actor === null) throw notSignedIn();

@@ -26,7 +26,10 @@ interface Told {
   body: ErrorDto;
 }
 
-const told = (refusal: Refusal): Told => ({ status: refusal.getStatus(), body: refusal.getResponse() as ErrorDto });
+const told = (refusal: Refusal): Told => ({
+  status: refusal.getStatus(),
+  body: refusal.getResponse() as ErrorDto,
+});
 
 /**
  * Turns whatever was thrown into a status and an ErrorDto; what nobody foresaw is logged and told as "internal"
@@ -50,12 +53,17 @@ export function describeError(error: unknown): Told {
   if (isDiskFull(error)) {
     logger.error("The disk that holds the data folder or the database is full.");
     return told(
-      new Refusal("disk-full", "The server's disk is full, so nothing was saved: free some space and try again."),
+      new Refusal(
+        "disk-full",
+        "The server's disk is full, so nothing was saved: free some space and try again.",
+      ),
     );
   }
   if (isOutOfReach(error)) {
     logger.error(error);
-    return told(new Refusal("unavailable", "The database cannot be reached at the moment: try again shortly."));
+    return told(
+      new Refusal("unavailable", "The database cannot be reached at the moment: try again shortly."),
+    );
   }
   logger.error(error instanceof Error ? (error.stack ?? error.message) : error);
   if (error instanceof Error && error.cause !== undefined) logger.error(error.cause);

@@ -30,7 +30,8 @@ export class OriginPolicy {
     if (!URL.canParse(origin)) return false;
     const from = new URL(origin);
     if (from.protocol !== "http:" && from.protocol !== "https:") return false;
-    if (isLoopback(this.config.host)) return isLoopback(from.hostname) && Number(from.port || 80) === this.port();
+    if (isLoopback(this.config.host))
+      return isLoopback(from.hostname) && Number(from.port || 80) === this.port();
     // Bound to more than this machine, the server cannot know its names: the page must come from where it asks.
     return from.host === headers.host;
   }

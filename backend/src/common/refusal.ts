@@ -23,7 +23,11 @@ const STATUS: Record<ErrorCode, number> = {
 export class Refusal extends HttpException {
   readonly dto: ErrorDto;
 
-  constructor(code: ErrorCode, message: string, extra: { problems?: ProblemDto[]; [key: string]: unknown } = {}) {
+  constructor(
+    code: ErrorCode,
+    message: string,
+    extra: { problems?: ProblemDto[]; [key: string]: unknown } = {},
+  ) {
     super({ code, message, ...extra }, STATUS[code]);
     const { problems } = extra;
     this.dto = problems === undefined ? { code, message } : { code, message, problems };
@@ -39,5 +43,8 @@ export const notFound = (what: string): Refusal =>
 
 export function notAllowed(permission: Permission): Refusal {
   const roles = rolesThat(permission).join(", ");
-  return new Refusal("not-allowed", `Your role may not ${PERMISSION_WORDS[permission]}; these may: ${roles}.`);
+  return new Refusal(
+    "not-allowed",
+    `Your role may not ${PERMISSION_WORDS[permission]}; these may: ${roles}.`,
+  );
 }

@@ -27,7 +27,9 @@ export const contractPipe = (): StandardSchemaValidationPipe =>
       const problems = problemsOf(issues);
       const first = problems[0];
       const where = first === undefined || first.path === "" ? "" : `${first.path}: `;
-      return new Refusal("bad-request", `The request does not fit: ${where}${first?.sentence ?? ""}`, { problems });
+      return new Refusal("bad-request", `The request does not fit: ${where}${first?.sentence ?? ""}`, {
+        problems,
+      });
     },
   });
 

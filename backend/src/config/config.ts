@@ -36,7 +36,10 @@ export class ConfigError extends Error {
 }
 
 const httpUrl = z
-  .url({ protocol: /^https?$/, error: "APP_URL must be an http or https address such as https://heddle.example.org." })
+  .url({
+    protocol: /^https?$/,
+    error: "APP_URL must be an http or https address such as https://heddle.example.org.",
+  })
   .refine((text) => {
     if (!URL.canParse(text)) return true;
     const url = new URL(text);

@@ -36,15 +36,23 @@ async function make(path: string): Promise<string> {
   } catch (error) {
     const code = codeOf(error);
     if (code === "ENOSPC" || code === "EDQUOT") {
-      throw new DataFolderError(`The disk of the data folder ${path} is full: free some space and start again.`);
+      throw new DataFolderError(
+        `The disk of the data folder ${path} is full: free some space and start again.`,
+      );
     }
     if (code === "EACCES" || code === "EPERM" || code === "EROFS") {
-      throw new DataFolderError(`The data folder ${path} cannot be written: set DATA_DIR to a folder you may write.`);
+      throw new DataFolderError(
+        `The data folder ${path} cannot be written: set DATA_DIR to a folder you may write.`,
+      );
     }
     if (code === "EEXIST" || code === "ENOTDIR") {
-      throw new DataFolderError(`The data folder ${path} is a file or lies below one: set DATA_DIR to a folder.`);
+      throw new DataFolderError(
+        `The data folder ${path} is a file or lies below one: set DATA_DIR to a folder.`,
+      );
     }
-    throw new DataFolderError(`The data folder ${path} cannot be used (${code}): set DATA_DIR to another one.`);
+    throw new DataFolderError(
+      `The data folder ${path} cannot be used (${code}): set DATA_DIR to another one.`,
+    );
   }
 }
 
@@ -135,7 +143,9 @@ export async function readSecret(folder: DataFolder): Promise<string> {
   }
   const secret = (await readFile(file, "utf8")).trim();
   if (secret.length < 32) {
-    throw new DataFolderError(`The file ${file} is damaged: remove it and start again; everyone has to sign in anew.`);
+    throw new DataFolderError(
+      `The file ${file} is damaged: remove it and start again; everyone has to sign in anew.`,
+    );
   }
   return secret;
 }

@@ -9,7 +9,8 @@ export function listenError(error: unknown, config: Config): string | null {
     if (listens && code === "EADDRINUSE") {
       return `Port ${config.port} on ${config.host} is taken: stop what listens there, or set PORT to another one.`;
     }
-    if (listens && code === "EACCES") return `Port ${config.port} is not open to you: set PORT to 1024 or above.`;
+    if (listens && code === "EACCES")
+      return `Port ${config.port} is not open to you: set PORT to 1024 or above.`;
     if (code === "EADDRNOTAVAIL" || (listens && code === "ENOTFOUND")) {
       return `${config.host} is no address of this machine: set HOST to one that is, such as 127.0.0.1.`;
     }
