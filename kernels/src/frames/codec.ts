@@ -128,7 +128,7 @@ const checkStart = (bytes: Uint8Array): void => {
   for (let index = 0; index < known; index++)
     if (bytes[index] !== MAGIC[index])
       throw new FrameError("not-a-frame", "These bytes are no field frame: they do not begin with HFR.");
-  const version = bytes[AT.version];
+  const version = bytes.at(AT.version);
   if (version !== undefined && version !== FRAME_VERSION)
     throw new FrameError(
       "version",
@@ -145,7 +145,7 @@ const checkStart = (bytes: Uint8Array): void => {
 export const decodeFrame = (bytes: Uint8Array): Frame => {
   checkStart(bytes);
   const view = new DataView(bytes.buffer, bytes.byteOffset, bytes.byteLength);
-  const quantity = FIELD_QUANTITIES[view.getUint8(AT.quantity)];
+  const quantity = FIELD_QUANTITIES.at(view.getUint8(AT.quantity));
   if (quantity === undefined)
     throw new FrameError(
       "quantity",

@@ -128,7 +128,7 @@ const planeWaveProblems = (scene: ResolvedScene, insetMm: number, path: string):
     [insetMm, heightMm - insetMm],
   ];
   const boundary = corners.flatMap(([x1, y1], side) => {
-    const [x2, y2] = corners[(side + 1) % 4] ?? [x1, y1];
+    const [x2, y2] = corners[(side + 1) % 4];
     return Array.from({ length: LOOKS }, (_, index): [number, number] => [
       x1 + ((x2 - x1) * index) / LOOKS,
       y1 + ((y2 - y1) * index) / LOOKS,

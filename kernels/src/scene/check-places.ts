@@ -18,7 +18,7 @@ const extents = (patch: ResolvedPatch, path: string): Problem[] => {
       return positive(patch.widthMm, `${path}.widthMm`);
     case "wall":
     case "film": {
-      const [first] = patch.points;
+      const first = patch.points.at(0);
       const same = first !== undefined && patch.points.every(([x, y]) => x === first[0] && y === first[1]);
       return same
         ? [

@@ -15,7 +15,7 @@ const turnedBack = (x: number, y: number, cx: number, cy: number, angle: number)
 const crossings = (ring: readonly Point[], x: number, y: number): number => {
   let count = 0;
   ring.forEach(([x1, y1], index) => {
-    const [x2, y2] = ring[(index + 1) % ring.length] ?? [x1, y1];
+    const [x2, y2] = ring[(index + 1) % ring.length];
     if (y1 > y !== y2 > y && x < x1 + ((y - y1) * (x2 - x1)) / (y2 - y1)) count += 1;
   });
   return count;
@@ -31,14 +31,12 @@ export const distanceToSegmentMm = (x: number, y: number, [x1, y1]: Point, [x2, 
 
 /** Distance in mm from a point to a line of segments (or to its only point). */
 export const distanceToLineMm = (x: number, y: number, points: readonly Point[]): number => {
-  const first = points[0];
+  const first = points.at(0);
   if (first === undefined) return Number.POSITIVE_INFINITY;
   if (points.length === 1) return Math.hypot(x - first[0], y - first[1]);
   let nearest = Number.POSITIVE_INFINITY;
   for (let index = 1; index < points.length; index++) {
-    const from = points[index - 1];
-    const to = points[index];
-    if (from && to) nearest = Math.min(nearest, distanceToSegmentMm(x, y, from, to));
+    nearest = Math.min(nearest, distanceToSegmentMm(x, y, points[index - 1], points[index]));
   }
   return nearest;
 };
@@ -69,7 +67,7 @@ export const mediumAt = (
 ): Medium | undefined => {
   for (let index = scene.paint.length - 1; index >= 0; index--) {
     const patch = scene.paint[index];
-    if (patch === undefined || patch.kind === "wall" || patch.kind === "film") continue;
+    if (patch.kind === "wall" || patch.kind === "film") continue;
     if (patchContains(patch, x, y)) return scene.mediaById.get(patch.medium);
   }
   return scene.mediaById.get(scene.background);

@@ -51,6 +51,8 @@ const NOT_ALLOWED = `use numbers, parameters, + - * / ( ) and ${FUNCTION_NAMES.j
 const isNode = (value: unknown): value is jsep.Expression =>
   typeof value === "object" && value !== null && typeof (value as { type?: unknown }).type === "string";
 
+const word = (value: unknown): string => (typeof value === "string" ? value : typeof value);
+
 const child = (node: jsep.Expression, key: string): jsep.Expression => {
   const value = node[key];
   if (!isNode(value)) throw new ExpressionError(`It is incomplete; ${NOT_ALLOWED}.`);
@@ -68,7 +70,7 @@ const evaluateCall = (node: jsep.Expression, values: ReadonlyMap<string, number>
   const given = Array.isArray(node.arguments) ? (node.arguments as readonly unknown[]) : [];
   if (given.length < rule.fewest || given.length > rule.most)
     throw new ExpressionError(
-      `${String(name)} takes ${rule.most === 1 ? "one value" : `${String(rule.fewest)} to ${String(rule.most)} values`}, not ${String(given.length)}.`,
+      `${word(name)} takes ${rule.most === 1 ? "one value" : `${String(rule.fewest)} to ${String(rule.most)} values`}, not ${String(given.length)}.`,
     );
   return rule.apply(
     given.map((argument) => {
@@ -95,7 +97,7 @@ const evaluateBinary = (
     case "/":
       return left / right;
     default:
-      throw new ExpressionError(`The operator "${String(node.operator)}" is not allowed; ${NOT_ALLOWED}.`);
+      throw new ExpressionError(`The operator "${word(node.operator)}" is not allowed; ${NOT_ALLOWED}.`);
   }
 };
 
@@ -106,9 +108,9 @@ const evaluateNode = (node: jsep.Expression, values: ReadonlyMap<string, number>
   switch (node.type) {
     case "Literal":
       if (typeof node.value === "number") return node.value;
-      throw new ExpressionError(`${String(node.raw)} is not a number; ${NOT_ALLOWED}.`);
+      throw new ExpressionError(`${word(node.raw)} is not a number; ${NOT_ALLOWED}.`);
     case "Identifier": {
-      const name = String(node.name);
+      const name = word(node.name);
       const value = values.get(name);
       if (value === undefined)
         throw new ExpressionError(
@@ -122,7 +124,7 @@ const evaluateNode = (node: jsep.Expression, values: ReadonlyMap<string, number>
       const value = evaluateNode(child(node, "argument"), values, depth + 1);
       if (node.operator === "-") return -value;
       if (node.operator === "+") return value;
-      throw new ExpressionError(`The operator "${String(node.operator)}" is not allowed; ${NOT_ALLOWED}.`);
+      throw new ExpressionError(`The operator "${word(node.operator)}" is not allowed; ${NOT_ALLOWED}.`);
     }
     case "BinaryExpression":
       return evaluateBinary(node, values, depth);

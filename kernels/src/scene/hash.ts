@@ -24,6 +24,7 @@ export const sceneSha256 = (scene: Scene): string => documentSha256(scene);
 
 /** The hash of a result without `timing`, the only part that may differ between two runs. */
 export const resultSha256 = (result: SolveResult): string => {
-  const { timing: _timing, ...rest } = result;
+  const rest: Partial<SolveResult> = { ...result };
+  delete rest.timing;
   return documentSha256(rest);
 };

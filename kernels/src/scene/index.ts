@@ -23,3 +23,5 @@ export * from "./features.js";
 export { type Migration, MIGRATIONS } from "./migrations.js";
 export { type ReadOptions, type ReadOutcome, readScene } from "./read.js";
 export { defaultWaveform, resolveScene, SceneError } from "./resolve.js";
+export { type SceneChange, sceneDiff } from "./diff.js";
+export { sceneJsonSchema } from "./json-schema.js";

@@ -44,7 +44,10 @@ const describe = (value: unknown): string => {
   if (typeof value === "number" && !Number.isFinite(value)) return `${String(value)}, which is not finite`;
   if (Array.isArray(value)) return "a list";
   if (typeof value === "object") return "an object";
-  const text = JSON.stringify(value) ?? typeof value;
+  const text =
+    typeof value === "string" || typeof value === "number" || typeof value === "boolean"
+      ? JSON.stringify(value)
+      : typeof value;
   return text.length > 60 ? `${text.slice(0, 57)}…` : text;
 };
 

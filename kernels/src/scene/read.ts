@@ -45,14 +45,18 @@ const tooLarge = (text: string): boolean =>
   text.length > MAXIMA.jsonBytes ||
   (text.length * 3 > MAXIMA.jsonBytes && utf8ToBytes(text).length > MAXIMA.jsonBytes);
 
+/** What is no JSON value at all (undefined, a function) has no text; the schema then says that it is no object. */
+const asText = (value: unknown): string => {
+  const text: unknown = JSON.stringify(value);
+  return typeof text === "string" ? text : "";
+};
+
 const parse = (input: unknown): { ok: true; value: unknown } | { ok: false; outcome: ReadOutcome } => {
   const maximum = `${String(MAXIMA.jsonBytes / 1024 / 1024)} MB`;
   const large = refused("", `The document is larger than ${maximum}; simplify brush strokes and outlines.`);
   try {
     if (typeof input !== "string")
-      return tooLarge(JSON.stringify(input) ?? "")
-        ? { ok: false, outcome: large }
-        : { ok: true, value: input };
+      return tooLarge(asText(input)) ? { ok: false, outcome: large } : { ok: true, value: input };
     if (tooLarge(input)) return { ok: false, outcome: large };
     return { ok: true, value: JSON.parse(input) as unknown };
   } catch (error) {

@@ -53,16 +53,17 @@ export const repair = (document: unknown, issues: readonly Issue[]): Repaired | 
   const replaced = new Set<string>();
   const refused = new Map<ListName, Set<number>>(LISTS.map((list) => [list, new Set()]));
   for (const issue of issues) {
-    const [key, index] = issue.path;
+    const key = issue.path.at(0);
+    const index = issue.path.at(1);
     if (key === undefined) {
       if (issue.code !== "unrecognized_keys") return null;
-      for (const unknown of issue.keys) delete copy[unknown];
+      for (const unknown of issue.keys) Reflect.deleteProperty(copy, unknown);
     } else if (typeof key === "string" && isList(key) && typeof index === "number") {
       refused.get(key)?.add(index);
     } else if (typeof key === "string") {
       replaced.add(key);
       if (key in STAND_INS) copy[key] = STAND_INS[key];
-      else delete copy[key];
+      else Reflect.deleteProperty(copy, key);
     }
   }
   const left = new Map<ListName, unknown[]>();

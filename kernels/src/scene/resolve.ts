@@ -3,7 +3,7 @@ import { evaluateExpression, FUNCTION_NAMES } from "./expressions.js";
 import { meshCellMm } from "./grid.js";
 import { MAXIMA } from "./limits.js";
 import { formatPath } from "./problems.js";
-import type { Problem, ResolvedScene, ResolvedSource, Scene } from "./schema.js";
+import type { Problem, Resolved, ResolvedScene, ResolvedSource, Scene } from "./schema.js";
 import type { Waveform } from "./schema-drives.js";
 import { BUILT_IN_MEDIA } from "./schema-media.js";
 import type { Medium } from "./schema-media.js";
@@ -133,34 +133,34 @@ export interface Evaluated {
  * the document but were left out of `scene` because they are refused for another reason.
  */
 export const evaluateScene = (scene: Scene, knownNames: Iterable<string> = []): Evaluated => {
-  const parameters = evaluateParameters(scene.parameters, new Set(knownNames));
+  const { parameters: written, ...rest } = scene;
+  const parameters = evaluateParameters(written, new Set(knownNames));
   const evaluator = new LengthEvaluator(parameters.values, parameters.unusable);
-  const { parameters: _parameters, ...rest } = scene;
   const resolve = <K extends "section" | "paint" | "ports" | "probes">(key: K): ResolvedScene[K] =>
     evaluator.copy(scene[key], [key], false) as ResolvedScene[K];
   const section = resolve("section");
   const mediaById = new Map<string, Medium>(
     [...BUILT_IN_MEDIA, ...scene.media].map((medium) => [medium.id, medium]),
   );
-  const sources = evaluator.copy(scene.sources, ["sources"], false) as ResolvedSource[];
+  const sources = evaluator.copy(scene.sources, ["sources"], false) as Resolved<Scene["sources"]>;
+  const paint = resolve("paint");
+  const insetMm = DEFAULT_INSET_CELLS * meshCellMm({ ...rest, paint, mediaById });
+  const filledIn = sources.map((source): ResolvedSource => {
+    const waveform = source.waveform ?? defaultWaveform(scene.band);
+    return source.kind === "plane-wave"
+      ? { ...source, waveform, insetMm: source.insetMm ?? insetMm }
+      : { ...source, waveform };
+  });
   const resolved: ResolvedScene = {
     ...rest,
     section,
-    paint: resolve("paint"),
-    sources,
+    paint,
+    sources: filledIn,
     ports: resolve("ports"),
     probes: resolve("probes"),
     parameterValues: parameters.values,
     mediaById,
   };
-  const insetMm = DEFAULT_INSET_CELLS * meshCellMm(resolved);
-  resolved.sources = sources.map((source) => {
-    // Both are optional in the document; the types of a resolved source promise them from here on.
-    const waveform = (source.waveform as Waveform | undefined) ?? defaultWaveform(scene.band);
-    return source.kind === "plane-wave"
-      ? { ...source, waveform, insetMm: (source.insetMm as number | undefined) ?? insetMm }
-      : { ...source, waveform };
-  });
   return { scene: resolved, problems: [...parameters.problems, ...evaluator.problems] };
 };
 
