@@ -1,0 +1,2 @@
+export { useExamples } from "./api";
+export { ExampleCards } from "./example-cards";

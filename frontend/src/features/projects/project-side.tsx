@@ -1,0 +1,60 @@
+import Link from "@mui/material/Link";
+import Skeleton from "@mui/material/Skeleton";
+import { Link as RouterLink } from "react-router-dom";
+import { Moment } from "../../components/moment";
+import { Refusal } from "../../components/refusal";
+import { initialsOf } from "../../lib/words";
+import { useActivity, useMembers } from "./api";
+import "./project-side.css";
+
+/** Who is in the workspace, and in which role. */
+export function Members() {
+  const members = useMembers();
+  return (
+    <section className="side-section">
+      <h2 className="label">Members</h2>
+      {members.isError ? <Refusal error={members.error} onRetry={() => void members.refetch()} /> : null}
+      {members.isPending ? <Skeleton /> : null}
+      <ul>
+        {members.data?.map((member) => (
+          <li key={member.id} className="side-member">
+            <span className="side-initials" aria-hidden="true">
+              {initialsOf(member.name)}
+            </span>
+            <span>{member.name}</span>
+            <span className="side-soft">{member.role}</span>
+          </li>
+        ))}
+      </ul>
+    </section>
+  );
+}
+
+/** What happened in a project, newest first. */
+export function Activity({ projectId }: { projectId: string }) {
+  const activity = useActivity(projectId);
+  return (
+    <section className="side-section">
+      <h2 className="label">Activity</h2>
+      {activity.isError ? <Refusal error={activity.error} onRetry={() => void activity.refetch()} /> : null}
+      {activity.isPending ? <Skeleton /> : null}
+      {activity.data?.length === 0 ? <p className="side-soft">Nothing has happened here yet.</p> : null}
+      <ol>
+        {activity.data?.map((entry) => (
+          <li key={`${entry.at} ${entry.who.id} ${entry.sentence}`} className="side-entry">
+            {entry.sceneId === null ? (
+              entry.sentence
+            ) : (
+              <Link component={RouterLink} to={`/scenes/${entry.sceneId}`}>
+                {entry.sentence}
+              </Link>
+            )}
+            <span className="side-soft">
+              {entry.who.name}, <Moment at={entry.at} />
+            </span>
+          </li>
+        ))}
+      </ol>
+    </section>
+  );
+}
