@@ -1,6 +1,6 @@
 CREATE TABLE "run_results" (
 	"run_id" uuid PRIMARY KEY NOT NULL,
-	"document" jsonb NOT NULL
+	"document" json NOT NULL
 );
 --> statement-breakpoint
 CREATE TABLE "runs" (

@@ -7,6 +7,7 @@ import {
   foreignKey,
   index,
   integer,
+  json,
   jsonb,
   pgTable,
   text,
@@ -74,6 +75,9 @@ export const runResults = pgTable("run_results", {
   runId: uuid()
     .primaryKey()
     .references(() => runs.id, { onDelete: "cascade" }),
-  /** The result document; a long array stands as {"array": sha256, "length": n} and lies in the array store. */
-  document: jsonb().$type<Record<string, unknown>>().notNull(),
+  /**
+   * The result document, kept letter by letter so that its hash can be taken anew; a long array stands as
+   * {"array": sha256, "length": n} and lies in the array store.
+   */
+  document: json().$type<Record<string, unknown>>().notNull(),
 });

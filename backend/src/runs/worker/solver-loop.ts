@@ -14,11 +14,11 @@ import { endOf, toChunks } from "./trace-chunks.js";
 export interface LoopDoors {
   session: SolveSession;
   scene: Scene;
-  post(message: FromThread, transfer?: ArrayBuffer[]): void;
-  read(document: unknown): { scene: Scene; sha256: string } | { problems: Problem[] };
-  encode(sample: FieldSample, range: number | null, sequence: number): Uint8Array<ArrayBuffer>;
+  post: (message: FromThread, transfer?: ArrayBuffer[]) => void;
+  read: (document: unknown) => { scene: Scene; sha256: string } | { problems: Problem[] };
+  encode: (sample: FieldSample, range: number | null, sequence: number) => Uint8Array<ArrayBuffer>;
   /** Milliseconds of a steady clock. */
-  now(): number;
+  now: () => number;
 }
 
 const PROGRESS_EVERY_MS = 250;
