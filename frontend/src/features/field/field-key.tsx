@@ -42,7 +42,7 @@ export function FieldKey(props: FieldKeyProps) {
   const facts = useFrameFacts(slot);
   const shown = facts?.quantity === quantity ? facts : null;
   const locked = range !== null;
-  const full = range ?? shown?.range ?? null;
+  const full = range ?? (shown !== null && shown.range > 0 ? shown.range : null);
   const signed = isSigned(quantity);
   const { prefix, factor } = prefixOf(full ?? 1);
   const cut = locked && shown !== null && shown.peak > range * 1.001;

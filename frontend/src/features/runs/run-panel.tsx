@@ -1,0 +1,182 @@
+import { isOver } from "@heddle/backend/contract";
+import Button from "@mui/material/Button";
+import Slider from "@mui/material/Slider";
+import { useEffect, useState } from "react";
+import { PACE_POSITIONS, paceAt, paceWords, positionOf } from "./pace";
+import styles from "./runs.module.css";
+import { figuresOf, stateWords } from "./run-words";
+import type { RunHandle } from "./use-run";
+
+export interface RunPanelProps {
+  handle: RunHandle;
+  /** Null where the person may run; else why not, as a sentence. */
+  refusal: string | null;
+}
+
+/** Run, pause, step, stop, pace, and how far the run is. */
+export function RunPanel({ handle, refusal }: RunPanelProps) {
+  const { run, busy, connection, notice } = handle;
+  return (
+    <section className={styles.panel} aria-label="Run">
+      {refusal === null ? (
+        <>
+          <Buttons handle={handle} />
+          <Pace pace={handle.pace} onPace={handle.setPace} />
+        </>
+      ) : (
+        <p className={styles.quiet}>{refusal}</p>
+      )}
+      <div aria-live="polite">
+        {connection.kind === "lost" && <p className={styles.problem}>{connection.sentence}</p>}
+        {run?.message != null && <p className={styles.problem}>{run.message}</p>}
+        {notice !== null && (
+          <div className={styles.problem}>
+            <p>{notice.sentence}</p>
+            {notice.problems.length > 0 && (
+              <ul>
+                {notice.problems.slice(0, 4).map((problem) => (
+                  <li key={problem.path + problem.sentence}>
+                    <span className={styles.path}>{problem.path}</span> {problem.sentence}
+                  </li>
+                ))}
+                {notice.problems.length > 4 && <li>and {notice.problems.length - 4} more.</li>}
+              </ul>
+            )}
+            <button type="button" className={styles.link} onClick={handle.dismissNotice}>
+              Dismiss
+            </button>
+          </div>
+        )}
+      </div>
+      {run?.edited === true && (
+        <div className={styles.edited}>
+          <p>Edited while it ran: for the eye, not evidence.</p>
+          {refusal === null && (
+            <Button
+              size="small"
+              variant="outlined"
+              disabled={busy}
+              onClick={() => {
+                handle.start();
+              }}
+            >
+              Run the edited scene cleanly
+            </Button>
+          )}
+        </div>
+      )}
+      {run === null ? (
+        <p className={styles.quiet}>{handle.loading ? "Looking for the last run…" : "Not run yet."}</p>
+      ) : (
+        <dl className={styles.figures}>
+          <div>
+            <dt>Run of rev {run.revision}</dt>
+            <dd className={styles.state} data-testid="run-state">
+              {stateWords(run)}
+            </dd>
+          </div>
+          {figuresOf(run).map(({ name, value }) => (
+            <div key={name}>
+              <dt>{name}</dt>
+              <dd>{value}</dd>
+            </div>
+          ))}
+        </dl>
+      )}
+    </section>
+  );
+}
+
+function Buttons({ handle }: { handle: RunHandle }) {
+  const { run, busy, start, command } = handle;
+  const live = run !== null && !isOver(run.state);
+  const paused = run?.state === "paused";
+  return (
+    <div className={styles.buttons}>
+      {!live && (
+        <Button
+          variant="contained"
+          size="small"
+          disabled={busy}
+          title="Saves, then runs (Ctrl+Enter)"
+          aria-keyshortcuts="Control+Enter"
+          onClick={() => {
+            start();
+          }}
+        >
+          Run
+        </Button>
+      )}
+      {live && (
+        <Button
+          variant="contained"
+          size="small"
+          disabled={busy || run.state === "queued"}
+          aria-keyshortcuts="Control+Enter"
+          onClick={() => {
+            command({ kind: paused ? "resume" : "pause" });
+          }}
+        >
+          {paused ? "Resume" : "Pause"}
+        </Button>
+      )}
+      <Button
+        variant="outlined"
+        size="small"
+        disabled={busy || (live && !paused)}
+        title={
+          live ? "One step of the field (while paused)" : "Starts a run that waits before its first step"
+        }
+        onClick={() => {
+          if (live) command({ kind: "step", steps: 1 });
+          else start({ paused: true });
+        }}
+      >
+        Step
+      </Button>
+      <Button
+        variant="outlined"
+        size="small"
+        disabled={busy || !live}
+        onClick={() => {
+          command({ kind: "stop" });
+        }}
+      >
+        Stop
+      </Button>
+    </div>
+  );
+}
+
+function Pace({ pace, onPace }: { pace: number | null; onPace: (pace: number | null) => void }) {
+  const [position, setPosition] = useState(() => positionOf(pace));
+  // While the thumb is held the slider is the person's; between, it shows the run's pace.
+  const [held, setHeld] = useState(false);
+  useEffect(() => {
+    if (!held) setPosition(positionOf(pace));
+  }, [pace, held]);
+  return (
+    <div className={styles.pace}>
+      <div className={styles.paceHead}>
+        <span id="pace-label">Pace</span>
+        <span className={styles.figure}>{paceWords(paceAt(position))}</span>
+      </div>
+      <Slider
+        size="small"
+        min={0}
+        max={PACE_POSITIONS}
+        value={position}
+        aria-labelledby="pace-label"
+        getAriaValueText={(value) => paceWords(paceAt(value))}
+        onChange={(_event, value) => {
+          setHeld(true);
+          setPosition(value);
+        }}
+        onChangeCommitted={(_event, value) => {
+          setHeld(false);
+          onPace(paceAt(value));
+        }}
+      />
+    </div>
+  );
+}

@@ -1,0 +1,196 @@
+import type {
+  ClientToServerEvents,
+  ProblemDto,
+  RunCommand,
+  RunDto,
+  ServerToClientEvents,
+} from "@heddle/backend/contract";
+import { isOver, STREAM_NAMESPACE } from "@heddle/backend/contract";
+import { decodeFrame } from "@heddle/kernels/frames";
+import { useQueryClient } from "@tanstack/react-query";
+import { useCallback, useEffect, useMemo, useRef, useState } from "react";
+import type { Socket } from "socket.io-client";
+import { io } from "socket.io-client";
+import { ApiError, sentenceOf } from "../../lib/api";
+import { commandRun, editRun, startRun, tellRun, useRuns } from "./api/runs";
+import { createLatestWins } from "./latest-wins";
+import type { Connection, FrameView, RunStream, StreamListeners } from "./run-stream";
+import { createRunStream } from "./run-stream";
+
+/** Live edits go out at most this often, so that the field answers a stroke within 200 ms and the server keeps up. */
+const EDIT_INTERVAL_MS = 120;
+
+export interface RunNotice {
+  sentence: string;
+  problems: readonly ProblemDto[];
+}
+
+/** Where frames and traces go: outside React, and kept the same for the life of the page. */
+export type RunSinks = Pick<StreamListeners, "onFrame" | "onTracesFromStart" | "onTraces">;
+
+export interface UseRunOptions {
+  sceneId: string;
+  sinks: RunSinks;
+  /** The frames wanted; null: none. */
+  view: FrameView | null;
+  /** Saves what is drawn and gives the revision to run; null where it could not be saved. */
+  save: () => Promise<number | null>;
+}
+
+export interface RunHandle {
+  /** The scene's latest run, null before there is one. */
+  run: RunDto | null;
+  /** Every run known, newest first. */
+  runs: readonly RunDto[];
+  loading: boolean;
+  connection: Connection;
+  /** A command is on its way. */
+  busy: boolean;
+  notice: RunNotice | null;
+  dismissNotice: () => void;
+  /** The pace to start with and to go on with; null: as fast as the server goes. */
+  pace: number | null;
+  start: (options?: { paused?: boolean }) => void;
+  command: (command: RunCommand) => void;
+  setPace: (pace: number | null) => void;
+  /** Gives the drawing as it stands to the run, if one is under way. The latest wins. */
+  edit: (document: unknown) => void;
+}
+
+const noticeOf = (error: unknown): RunNotice => ({
+  sentence: sentenceOf(error),
+  problems: error instanceof ApiError ? error.problems : [],
+});
+
+/** The scene's latest run: found again after a reload, started, steered, edited and watched. */
+export function useRun({ sceneId, sinks, view, save }: UseRunOptions): RunHandle {
+  const client = useQueryClient();
+  const query = useRuns(sceneId);
+  const runs = useMemo(() => query.data ?? [], [query.data]);
+  const run = runs[0] ?? null;
+  const runId = run?.id ?? null;
+  const [connection, setConnection] = useState<Connection>({ kind: "connecting" });
+  const [notice, setNotice] = useState<RunNotice | null>(null);
+  const [busy, setBusy] = useState(false);
+  const [chosenPace, setChosenPace] = useState<number | null>(null);
+  const stream = useRef<RunStream | null>(null);
+  const wanted = useRef({ runId, view });
+
+  useEffect(() => {
+    const socket: Socket<ServerToClientEvents, ClientToServerEvents> = io(STREAM_NAMESPACE, {
+      transports: ["websocket"],
+      autoConnect: false,
+    });
+    const made = createRunStream(socket, decodeFrame, {
+      ...sinks,
+      onState: (told) => {
+        tellRun(client, told);
+      },
+      onConnection: setConnection,
+      onRefused: (error) => {
+        setNotice({ sentence: error.message, problems: error.problems ?? [] });
+      },
+    });
+    stream.current = made;
+    made.view(wanted.current.view);
+    made.watch(wanted.current.runId);
+    return () => {
+      stream.current = null;
+      made.close();
+    };
+  }, [client, sinks]);
+
+  useEffect(() => {
+    wanted.current = { runId, view };
+    stream.current?.view(view);
+    stream.current?.watch(runId);
+  }, [runId, view]);
+
+  const act = useCallback(async (action: () => Promise<void>) => {
+    setBusy(true);
+    setNotice(null);
+    try {
+      await action();
+    } catch (error) {
+      setNotice(noticeOf(error));
+    } finally {
+      setBusy(false);
+    }
+  }, []);
+
+  const start = useCallback(
+    (options: { paused?: boolean } = {}) => {
+      void act(async () => {
+        const revision = await save();
+        if (revision === null) return;
+        const paused = options.paused ?? false;
+        // A paced run is started paused, so that it does not rush off before its pace is known.
+        const told = await startRun(sceneId, { revision, paused: paused || chosenPace !== null });
+        tellRun(client, told);
+        if (chosenPace === null) return;
+        tellRun(client, await commandRun(told.id, { kind: "pace", picosecondsPerSecond: chosenPace }));
+        if (!paused) tellRun(client, await commandRun(told.id, { kind: "resume" }));
+      });
+    },
+    [act, save, sceneId, chosenPace, client],
+  );
+
+  const command = useCallback(
+    (wantedCommand: RunCommand) => {
+      if (runId === null) return;
+      void act(async () => {
+        tellRun(client, await commandRun(runId, wantedCommand));
+      });
+    },
+    [act, runId, client],
+  );
+
+  const live = run !== null && !isOver(run.state);
+  const setPace = useCallback(
+    (pace: number | null) => {
+      setChosenPace(pace);
+      if (live) command({ kind: "pace", picosecondsPerSecond: pace });
+    },
+    [live, command],
+  );
+
+  const edits = useMemo(
+    () =>
+      createLatestWins<{ runId: string; document: unknown }>(async (edit) => {
+        try {
+          await editRun(edit.runId, edit.document);
+          setNotice(null);
+        } catch (error) {
+          // A run that ended while the stroke was on its way needs no telling: its state says so.
+          if (error instanceof ApiError && error.code === "wrong-state") return;
+          setNotice(noticeOf(error));
+        }
+      }, EDIT_INTERVAL_MS),
+    [],
+  );
+  useEffect(() => edits.cancel, [edits]);
+
+  const edit = useCallback(
+    (document: unknown) => {
+      if (live && runId !== null) edits.push({ runId, document });
+    },
+    [live, runId, edits],
+  );
+
+  return {
+    run,
+    runs,
+    loading: query.isPending,
+    connection,
+    busy,
+    notice: notice ?? (query.isError ? noticeOf(query.error) : null),
+    dismissNotice: useCallback(() => {
+      setNotice(null);
+    }, []),
+    pace: live ? run.pacePsPerSecond : chosenPace,
+    start,
+    command,
+    setPace,
+    edit,
+  };
+}
