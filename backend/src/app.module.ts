@@ -7,7 +7,13 @@ import type { Config } from "./config/config.js";
 import { ConfigModule } from "./config/config.module.js";
 import type { Database } from "./database/database.js";
 import { DatabaseModule } from "./database/database.module.js";
+import { DemoModule } from "./demo/demo.module.js";
+import { ExamplesModule } from "./examples/examples.module.js";
 import { HealthModule } from "./health/health.module.js";
+import { MediaModule } from "./media/media.module.js";
+import { ProjectsModule } from "./projects/projects.module.js";
+import { RunsModule } from "./runs/runs.module.js";
+import { ScenesModule } from "./scenes/scenes.module.js";
 import { WorkspacesModule } from "./workspaces/workspaces.module.js";
 
 /** What is opened before the modules are put together. */
@@ -29,6 +35,12 @@ export class AppModule {
         CommonModule,
         AuthModule,
         WorkspacesModule,
+        ProjectsModule,
+        ScenesModule,
+        MediaModule,
+        ExamplesModule,
+        RunsModule,
+        DemoModule,
         HealthModule,
       ],
     };

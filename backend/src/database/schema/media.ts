@@ -1,4 +1,5 @@
-import { index, jsonb, pgTable, text, uuid } from "drizzle-orm/pg-core";
+import { sql } from "drizzle-orm";
+import { jsonb, pgTable, text, uniqueIndex, uuid } from "drizzle-orm/pg-core";
 import { moment } from "./columns.js";
 import { workspaces } from "./workspaces.js";
 
@@ -15,5 +16,8 @@ export const media = pgTable(
     createdAt: moment().notNull().defaultNow(),
     updatedAt: moment().notNull().defaultNow(),
   },
-  (table) => [index().on(table.workspaceId)],
+  (table) => [
+    // Ids name media inside a scene; two with one id could not both be taken to a sheet.
+    uniqueIndex("media_medium_id").on(table.workspaceId, sql`(${table.medium}->>'id')`),
+  ],
 );

@@ -1,0 +1,5 @@
+import { Module } from "@nestjs/common";
+import { ActivityRepository } from "./activity.repository.js";
+
+@Module({ providers: [ActivityRepository], exports: [ActivityRepository] })
+export class ActivityModule {}
