@@ -1,0 +1,116 @@
+/** The options of `solve`, parsed and refused by name. */
+import { parseArgs } from "node:util";
+import type { Problem } from "../scene/index.js";
+import type { Precision } from "../solving/session.js";
+
+export interface SolveOptions {
+  sceneFile: string;
+  /** Where the result goes; null: standard output. */
+  out: string | null;
+  frequenciesGHz: number[] | null;
+  engine: "reference";
+  precision: Precision;
+  threads: number;
+}
+
+export const SOLVE_USAGE =
+  "npm run --silent solve -- SCENE.json [--out RESULT.json] [--frequencies 1,2.5,4] [--engine reference] [--precision f64|f32] [--threads N]";
+
+const MOST_FREQUENCIES = 100_000;
+const MOST_THREADS = 64;
+
+export type ParsedOptions = { ok: true; options: SolveOptions } | { ok: false; problems: Problem[] };
+
+const parseFrequencies = (text: string): number[] | Problem => {
+  const path = "--frequencies";
+  const values = text.split(",").map((part) => (part.trim() === "" ? Number.NaN : Number(part)));
+  if (values.length > MOST_FREQUENCIES)
+    return { path, sentence: `It names more than ${String(MOST_FREQUENCIES)} frequencies; give fewer.` };
+  const wrong = values.findIndex((value) => !(value > 0 && Number.isFinite(value)));
+  if (wrong >= 0)
+    return {
+      path,
+      sentence: `Entry ${String(wrong + 1)} is no frequency; give GHz above 0 separated by commas, such as 1,2.5,4.`,
+    };
+  return values;
+};
+
+/** Options that the contract has but that nothing computes yet. */
+const notYet = (values: { shielding?: boolean; "two-mesh"?: boolean; engine?: string }): Problem[] => {
+  const problems: Problem[] = [];
+  if (values.shielding === true)
+    problems.push({
+      path: "--shielding",
+      sentence: "Shielding is not computed yet; solve both scenes and compare.",
+    });
+  if (values["two-mesh"] === true)
+    problems.push({
+      path: "--two-mesh",
+      sentence:
+        "The comparison of two meshes is not computed yet; solve with two values of mesh and compare.",
+    });
+  if (values.engine === "wasm")
+    problems.push({
+      path: "--engine",
+      sentence: "The wasm engine is not there yet; use --engine reference.",
+    });
+  return problems;
+};
+
+/** Parses the arguments after the command's name. All problems come at once, with the option as path. */
+export const parseSolveOptions = (args: readonly string[]): ParsedOptions => {
+  let parsed;
+  try {
+    parsed = parseArgs({
+      args: [...args],
+      allowPositionals: true,
+      options: {
+        out: { type: "string" },
+        frequencies: { type: "string" },
+        shielding: { type: "boolean" },
+        "two-mesh": { type: "boolean" },
+        engine: { type: "string" },
+        precision: { type: "string" },
+        threads: { type: "string" },
+      },
+    });
+  } catch (error) {
+    const reason =
+      error instanceof Error ? (error.message.split(/\.(?:\s|$)/)[0] ?? "") : "they cannot be read";
+    return { ok: false, problems: [{ path: "options", sentence: `${reason}. Usage: ${SOLVE_USAGE}` }] };
+  }
+  const { values, positionals } = parsed;
+  const problems = notYet(values);
+  const [sceneFile, ...more] = positionals;
+  if (positionals.length === 0)
+    problems.push({ path: "options", sentence: `Name the scene to solve. Usage: ${SOLVE_USAGE}` });
+  if (more.length > 0)
+    problems.push({ path: "options", sentence: `One scene at a time; "${more[0]}" is one too many.` });
+  if (values.engine !== undefined && !["reference", "wasm"].includes(values.engine))
+    problems.push({ path: "--engine", sentence: `There is no engine "${values.engine}"; use reference.` });
+  const precision = values.precision ?? "f64";
+  if (precision !== "f64" && precision !== "f32")
+    problems.push({ path: "--precision", sentence: `"${precision}" is no precision; use f64 or f32.` });
+  const threads = Number(values.threads ?? "1");
+  if (!Number.isInteger(threads) || threads < 1 || threads > MOST_THREADS)
+    problems.push({
+      path: "--threads",
+      sentence: `"${values.threads ?? ""}" is no number of threads; give 1 to ${String(MOST_THREADS)}.`,
+    });
+  if (values.out === "") problems.push({ path: "--out", sentence: "Name the file that the result goes to." });
+  const frequencies = values.frequencies === undefined ? null : parseFrequencies(values.frequencies);
+  if (frequencies !== null && !Array.isArray(frequencies)) problems.push(frequencies);
+  if (problems.length > 0 || (frequencies !== null && !Array.isArray(frequencies)))
+    return { ok: false, problems };
+  return {
+    ok: true,
+    options: {
+      sceneFile,
+      out: values.out ?? null,
+      frequenciesGHz: frequencies,
+      engine: "reference",
+      precision: precision === "f32" ? "f32" : "f64",
+      threads,
+    },
+  };
+};

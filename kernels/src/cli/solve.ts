@@ -1,0 +1,134 @@
+/** `solve`: a scene file in, a result document out; exit statuses as in the contract of the command line. */
+import { readFileSync } from "node:fs";
+import type { Writable } from "node:stream";
+import { setImmediate as nextTurn } from "node:timers/promises";
+import { type Problem, readScene, type Scene, SceneError } from "../scene/index.js";
+import type { SessionOptions, SolveSession } from "../solving/session.js";
+import { parseSolveOptions, type SolveOptions } from "./options.js";
+import { OutputError, OutputFile, writeStream } from "./output.js";
+import { Progress } from "./progress.js";
+
+export const EXIT = { done: 0, refused: 2, failed: 3, interrupted: 130 } as const;
+export type ExitStatus = (typeof EXIT)[keyof typeof EXIT];
+
+/** Signals are seen between two turns of about this length. */
+const TURN_MS = 100;
+const FIRST_STEPS = 8;
+
+export interface SolveIo {
+  stdout: Writable;
+  stderr: Writable & { isTTY?: boolean };
+  /** Aborted by the first interrupt. */
+  interrupt: AbortSignal;
+  openSession: (scene: Scene, options: SessionOptions) => Promise<SolveSession>;
+}
+
+const say = (io: SolveIo, line: string): void => {
+  io.stderr.write(`${line.replaceAll(/\s*\n\s*/g, " ")}\n`);
+};
+
+const sayProblems = (io: SolveIo, problems: readonly Problem[]): void => {
+  for (const { path, sentence } of problems) say(io, `${path === "" ? "scene" : path}: ${sentence}`);
+};
+
+const readFile = (path: string): { text: string } | { problem: Problem } => {
+  try {
+    return { text: readFileSync(path, "utf8") };
+  } catch (error) {
+    const code = error instanceof Error && "code" in error ? error.code : undefined;
+    const reason =
+      code === "ENOENT"
+        ? "There is no such file"
+        : code === "EISDIR"
+          ? "It is a folder, not a file"
+          : `It cannot be read (${String(code)})`;
+    return { problem: { path, sentence: `${reason}; name a scene document.` } };
+  }
+};
+
+/** Runs to the end. Null: interrupted. Throws what the session says when the run fails. */
+const runToEnd = async (io: SolveIo, session: SolveSession): Promise<"ended" | "interrupted" | string> => {
+  const progress = new Progress(io.stderr, session.grid.maxSteps, session.grid.nx * session.grid.ny);
+  let steps = FIRST_STEPS;
+  try {
+    for (;;) {
+      const before = performance.now();
+      const outcome = session.advance(steps);
+      if (outcome.kind === "failed") return outcome.failure.sentence;
+      if (outcome.kind === "ended") return "ended";
+      const took = performance.now() - before;
+      steps = Math.max(1, Math.round(steps * Math.min(4, TURN_MS / Math.max(took, 1))));
+      progress.update(session.step);
+      await nextTurn();
+      if (io.interrupt.aborted) return "interrupted";
+    }
+  } finally {
+    progress.clear();
+  }
+};
+
+const solveScene = async (
+  io: SolveIo,
+  scene: Scene,
+  options: SolveOptions,
+  file: OutputFile | null,
+): Promise<ExitStatus> => {
+  const session = await io.openSession(scene, {
+    engine: options.engine,
+    precision: options.precision,
+    threads: options.threads,
+    ...(options.frequenciesGHz === null ? {} : { frequenciesGHz: options.frequenciesGHz }),
+  });
+  try {
+    const end = await runToEnd(io, session);
+    if (end === "interrupted") return EXIT.interrupted;
+    if (end !== "ended") {
+      say(io, end);
+      return EXIT.failed;
+    }
+    const text = `${JSON.stringify(session.result())}\n`;
+    if (file === null) await writeStream(io.stdout, text);
+    else file.write(text);
+    return EXIT.done;
+  } finally {
+    session.dispose();
+  }
+};
+
+/**
+ * Solves the scene that `args` name. Resolves with the exit status: 0 done, 2 refused (one line a problem),
+ * 3 failed (one line), 130 interrupted. Nothing is left at `--out` unless the status is 0.
+ */
+export const solve = async (args: readonly string[], io: SolveIo): Promise<ExitStatus> => {
+  const parsed = parseSolveOptions(args);
+  if (!parsed.ok) {
+    sayProblems(io, parsed.problems);
+    return EXIT.refused;
+  }
+  const { options } = parsed;
+  const read = readFile(options.sceneFile);
+  if ("problem" in read) {
+    sayProblems(io, [read.problem]);
+    return EXIT.refused;
+  }
+  const outcome = readScene(read.text, { purpose: "run" });
+  if (!outcome.ok) {
+    sayProblems(io, outcome.problems);
+    return EXIT.refused;
+  }
+  let file: OutputFile | null = null;
+  try {
+    file = options.out === null ? null : new OutputFile(options.out);
+    return await solveScene(io, outcome.scene, options, file);
+  } catch (error) {
+    if (error instanceof SceneError) {
+      sayProblems(io, error.problems);
+      return EXIT.refused;
+    }
+    if (error instanceof OutputError) say(io, error.message);
+    else say(io, `The run failed: ${error instanceof Error ? error.message : "for an unknown reason"}.`);
+    return EXIT.failed;
+  } finally {
+    file?.discard();
+  }
+};
