@@ -1,2 +1,7 @@
-/** Media: what their figures mean to a wave. */
-export * from "./figures.js";
+/** Media: what they are, how they mix in a partial cell, and the update coefficients they make. */
+export { SectionCoefficients } from "./coefficients.js";
+export type { SectionMedia } from "./coefficients.js";
+export type { Pair, Properties, RelativeProperties, SolverMedium } from "./properties.js";
+export { propertiesOf, VACUUM } from "./properties.js";
+export { FIXED, halfStorage, lossOf, updateOf } from "./update.js";
+export type { Update } from "./update.js";

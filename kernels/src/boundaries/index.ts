@@ -1,0 +1,2 @@
+/** Edges of the section: absorbing layers. Electric and magnetic walls are update coefficients, made in `media`. */
+export * from "./cpml.js";

@@ -1,0 +1,263 @@
+/**
+ * The update coefficients of a painted section, row by row: media with their partial cells, perfect conductors, and the
+ * section's electric and magnetic walls, which are coefficients too:
+ *
+ *   - a wall through F's points fixes F (electric in TMz), or cuts its cell, its gx or its gy in half (magnetic in TMz);
+ *   - a wall through G's points fixes G (electric in TEz), or has half a cell of storage behind it (magnetic in TEz),
+ *     with the ring's F = 0 as the mean over the wall.
+ *
+ * Behind the absorbing layers stands an electric wall.
+ */
+import type { Lattice, Side } from "../lattice/index.js";
+import { cellOfColumn, cellOfRow, columnShare, rowShare } from "../lattice/index.js";
+import type { RowCoefficients } from "../stepping/index.js";
+import type { PairKind, Quarter } from "./averaging.js";
+import { arithmeticMean, inPlaneMean } from "./averaging.js";
+import type { ConductorInput } from "./conductors.js";
+import { ConductorMap, FIXED_F, FIXED_GX, FIXED_GY } from "./conductors.js";
+import type { Pair, Properties, SolverMedium } from "./properties.js";
+import type { QuarterRow } from "./quarters.js";
+import { QuarterRaster } from "./quarters.js";
+import { updateOf } from "./update.js";
+
+export interface SectionMedia extends Omit<ConductorInput, "kinds"> {
+  media: readonly SolverMedium[];
+  /** rad/s at which means along a field are exact: the band's middle. */
+  omega: number;
+}
+
+interface MediumUpdates {
+  fill: boolean;
+  aF: number;
+  bF: number;
+  aG: number;
+  bGx: number;
+  bGy: number;
+}
+
+export class SectionCoefficients {
+  private readonly quarters: QuarterRaster;
+  private readonly conductors: ConductorMap;
+  private readonly updates: readonly MediumUpdates[];
+  private readonly kindF: PairKind;
+  private readonly kindG: PairKind;
+  private readonly geometryF: number;
+  private readonly geometryGx: number;
+  private readonly geometryGy: number;
+
+  constructor(
+    private readonly lattice: Lattice,
+    private readonly section: SectionMedia,
+  ) {
+    const { dx, dy, nx, ny, polarization } = lattice;
+    const { areas, background, media, widthMm, heightMm } = section;
+    this.kindF = polarization === "TMz" ? "electric" : "magnetic";
+    this.kindG = polarization === "TMz" ? "magnetic" : "electric";
+    this.geometryF = 1 / (dx * dy);
+    this.geometryGx = dx / dy;
+    this.geometryGy = dy / dx;
+    this.quarters = new QuarterRaster(areas, background, media, { widthMm, heightMm, nx, ny });
+    const kinds = media.map(({ kind }) => (kind === "fill" ? "none" : kind === this.kindF ? "f" : "g"));
+    this.conductors = new ConductorMap(lattice, { ...section, kinds });
+    this.updates = media.map((medium) =>
+      medium.kind === "fill"
+        ? this.updatesOf(medium.properties)
+        : { fill: false, aF: 0, bF: 0, aG: 0, bGx: 0, bGy: 0 },
+    );
+  }
+
+  private updatesOf(properties: Properties): MediumUpdates {
+    const { dt } = this.lattice;
+    const pair = (kind: PairKind): Pair =>
+      kind === "electric"
+        ? { storage: properties.epsilon, loss: properties.sigma }
+        : { storage: properties.mu, loss: properties.sigmaStar };
+    const f = updateOf(pair(this.kindF), dt, this.geometryF);
+    const gx = updateOf(pair(this.kindG), dt, this.geometryGx);
+    const gy = updateOf(pair(this.kindG), dt, this.geometryGy);
+    return { fill: true, aF: f.a, bF: f.b, aG: gx.a, bGx: gx.b, bGy: gy.b };
+  }
+
+  /** Writes row j, 0 … rows + 1. */
+  readonly row = (j: number, out: RowCoefficients): void => {
+    for (const values of [out.aF, out.bF, out.aGx, out.bGx, out.aGy, out.bGy]) values.fill(0);
+    const { rows } = this.lattice;
+    if (j > rows) return;
+    const y = 2 * cellOfRow(this.lattice, j);
+    const below = this.quarters.row(y - 1);
+    const here = this.quarters.row(y);
+    const above = this.quarters.row(y + 1);
+    if (j >= 1) {
+      this.writeF(below, here, out);
+      this.writeGy(below, here, out);
+    }
+    if (this.hasGx(j)) this.writeGx(here, above, out);
+    this.applyWalls(j, out);
+    this.applyConductors(j, out);
+  };
+
+  /** gx exists between rows of F, and in TEz on the walls below and above them. */
+  private hasGx(j: number): boolean {
+    return this.lattice.polarization === "TEz" || (j >= 1 && j < this.lattice.rows);
+  }
+
+  private writeF(below: QuarterRow, here: QuarterRow, out: RowCoefficients): void {
+    const { lattice, quarters } = this;
+    const { dt } = lattice;
+    for (let i = 1; i <= lattice.columns; i += 1) {
+      const x = 2 * cellOfColumn(lattice, i);
+      const only = this.onlyMedium(below, here, x - 1, x);
+      if (only >= 0) {
+        const update = this.updates[only];
+        out.aF[i] = update.aF;
+        out.bF[i] = update.bF;
+        continue;
+      }
+      const mean = arithmeticMean(this.four(below, here, x - 1, quarters), this.kindF);
+      if (!mean) continue;
+      const update = updateOf(mean, dt, this.geometryF);
+      out.aF[i] = update.a;
+      out.bF[i] = update.b;
+    }
+  }
+
+  private writeGx(here: QuarterRow, above: QuarterRow, out: RowCoefficients): void {
+    const { lattice, quarters } = this;
+    for (let i = 1; i <= lattice.columns; i += 1) {
+      const x = 2 * cellOfColumn(lattice, i);
+      const only = this.onlyMedium(here, above, x - 1, x);
+      if (only >= 0) {
+        const update = this.updates[only];
+        out.aGx[i] = update.aG;
+        out.bGx[i] = update.bGx;
+        continue;
+      }
+      const [q00, q01, q10, q11] = this.four(here, above, x - 1, quarters);
+      const lanes = [
+        [q00, q01],
+        [q10, q11],
+      ] as const;
+      const mean = inPlaneMean(lanes, this.kindG, this.section.omega);
+      if (!mean) continue;
+      const update = updateOf(mean, lattice.dt, this.geometryGx);
+      out.aGx[i] = update.a;
+      out.bGx[i] = update.b;
+    }
+  }
+
+  private writeGy(below: QuarterRow, here: QuarterRow, out: RowCoefficients): void {
+    const { lattice, quarters } = this;
+    const onNodes = lattice.polarization === "TMz";
+    const first = onNodes ? 1 : 0;
+    const last = onNodes ? lattice.columns - 1 : lattice.columns;
+    for (let i = first; i <= last; i += 1) {
+      const x = 2 * cellOfColumn(lattice, i);
+      const only = this.onlyMedium(below, here, x, x + 1);
+      if (only >= 0) {
+        const update = this.updates[only];
+        out.aGy[i] = update.aG;
+        out.bGy[i] = update.bGy;
+        continue;
+      }
+      const [q00, q01, q10, q11] = this.four(below, here, x, quarters);
+      const lanes = [
+        [q00, q10],
+        [q01, q11],
+      ] as const;
+      const mean = inPlaneMean(lanes, this.kindG, this.section.omega);
+      if (!mean) continue;
+      const update = updateOf(mean, lattice.dt, this.geometryGy);
+      out.aGy[i] = update.a;
+      out.bGy[i] = update.b;
+    }
+  }
+
+  /** The medium of all four quarters, or −1. */
+  private onlyMedium(lower: QuarterRow, upper: QuarterRow, left: number, right: number): number {
+    const last = this.quarters.columns - 1;
+    const l = left < 0 ? 0 : left > last ? last : left;
+    const r = right < 0 ? 0 : right > last ? last : right;
+    const index = lower.medium[l];
+    const same = lower.medium[r] === index && upper.medium[l] === index && upper.medium[r] === index;
+    return same ? index : -1;
+  }
+
+  private four(
+    lower: QuarterRow,
+    upper: QuarterRow,
+    left: number,
+    quarters: QuarterRaster,
+  ): [Quarter, Quarter, Quarter, Quarter] {
+    return [
+      quarters.quarter(lower, left),
+      quarters.quarter(lower, left + 1),
+      quarters.quarter(upper, left),
+      quarters.quarter(upper, left + 1),
+    ];
+  }
+
+  private applyWalls(j: number, out: RowCoefficients): void {
+    const { lattice } = this;
+    const { columns, rows, edges } = lattice;
+    const isMagnetic = (side: Side): boolean => edges[side] === "magnetic";
+    const fix = (values: readonly Float64Array[], i: number): void => {
+      for (const array of values) array[i] = 0;
+    };
+    if (lattice.polarization === "TMz") {
+      if (!isMagnetic("left")) fix([out.aF, out.bF], 1);
+      if (!isMagnetic("right")) fix([out.aF, out.bF], columns);
+      const wholeRowFixed = (j === 1 && !isMagnetic("bottom")) || (j === rows && !isMagnetic("top"));
+      if (wholeRowFixed) for (const values of [out.aF, out.bF]) values.fill(0);
+      const vertical = rowShare(lattice, j);
+      for (let i = 1; i <= columns; i += 1) {
+        const horizontal = columnShare(lattice, i);
+        out.bF[i] /= horizontal * vertical;
+        out.bGx[i] *= horizontal;
+        out.bGy[i] *= vertical;
+      }
+      return;
+    }
+    const side = (magnetic: boolean, a: Float64Array, b: Float64Array, i: number): void => {
+      if (magnetic) b[i] *= 2;
+      else fix([a, b], i);
+    };
+    side(isMagnetic("left"), out.aGy, out.bGy, 0);
+    side(isMagnetic("right"), out.aGy, out.bGy, columns);
+    if (j === 0 || j === rows) {
+      const magnetic = isMagnetic(j === 0 ? "bottom" : "top");
+      for (let i = 1; i <= columns; i += 1) side(magnetic, out.aGx, out.bGx, i);
+    }
+  }
+
+  private applyConductors(j: number, out: RowCoefficients): void {
+    const { stride, columns } = this.lattice;
+    const { flags } = this.conductors;
+    const base = j * stride;
+    for (let i = 0; i <= columns; i += 1) {
+      const k = base + i;
+      const own = flags[k];
+      // Between fixed points of F (or inside fixed G) nothing can change: no field is left frozen there.
+      const fBoth = own & FIXED_F;
+      const fixGx = own & FIXED_GX || (fBoth && flags[k + stride] & FIXED_F);
+      const fixGy = own & FIXED_GY || (fBoth && flags[k + 1] & FIXED_F);
+      const enclosed =
+        own & FIXED_GX &&
+        own & FIXED_GY &&
+        k > stride &&
+        flags[k - 1] & FIXED_GY &&
+        flags[k - stride] & FIXED_GX;
+      if (own & FIXED_F || enclosed) {
+        out.aF[i] = 0;
+        out.bF[i] = 0;
+      }
+      if (fixGx) {
+        out.aGx[i] = 0;
+        out.bGx[i] = 0;
+      }
+      if (fixGy) {
+        out.aGy[i] = 0;
+        out.bGy[i] = 0;
+      }
+    }
+  }
+}

@@ -1,0 +1,298 @@
+/** The session: one engine, its scene, what it records, and when it ends. */
+import type { FieldQuantity, FieldSample, ViewRequest } from "../frames/index.js";
+import type { Lattice } from "../lattice/index.js";
+import { storedEnergy } from "../observers/index.js";
+import type { ResolvedScene, Scene, SolveResult } from "../scene/index.js";
+import { documentSha256, readScene, resolveScene, sceneSha256 } from "../scene/index.js";
+import type { Engine } from "../stepping/index.js";
+import { rowCoefficients } from "../stepping/index.js";
+import { packBlocks, unpackBlocks } from "./blocks.js";
+import { editProblems } from "./editing.js";
+import { nonFiniteFailure } from "./failure.js";
+import type { DrivePlan, ProbePlan } from "./plan.js";
+import { coefficientsOf, drivesOf } from "./plan.js";
+import { buildResult } from "./result.js";
+import { quantitiesOf, sampleQuantity } from "./sampling.js";
+import type {
+  AdvanceOutcome,
+  EditLogEntry,
+  EditOutcome,
+  GridSummary,
+  RunFailure,
+  SessionSnapshot,
+  SolveSession,
+  StopReason,
+  TraceIncrement,
+} from "./session.js";
+import { TraceStore } from "./trace-store.js";
+
+/** Energy is looked at, and non-finite fields are found, at multiples of this many steps. */
+export const CHECK_INTERVAL = 64;
+
+export interface SessionParts {
+  scene: Scene;
+  resolved: ResolvedScene;
+  warnings: readonly string[];
+  grid: GridSummary;
+  engine: Engine;
+  drives: DrivePlan;
+  probes: ProbePlan;
+  frequenciesGHz: readonly number[];
+}
+
+/** What a snapshot says in words; the numbers follow in blocks. */
+interface SnapshotHeader {
+  openedSha256: string;
+  engineText: string;
+  step: number;
+  samples: number;
+  energy: number;
+  energyMax: number;
+  stopReason: StopReason | null;
+  edits: EditLogEntry[];
+  /** The scene as edited, where it was. */
+  scene: Scene | null;
+}
+
+export class EngineSession implements SolveSession {
+  readonly grid: GridSummary;
+  readonly quantities: readonly FieldQuantity[];
+  private readonly engine: Engine;
+  private readonly lattice: Lattice;
+  private readonly opened: Scene;
+  private readonly openedSha256: string;
+  private readonly parts: SessionParts;
+  private readonly traces: TraceStore;
+  private scene: Scene;
+  private resolved: ResolvedScene;
+  private drives: DrivePlan;
+  private editLog: EditLogEntry[] = [];
+  private energy = 0;
+  private energyMax = 0;
+  private stopReason: StopReason | null = null;
+  private failure: RunFailure | null = null;
+  private seconds = 0;
+  private stepsTimed = 0;
+
+  constructor(parts: SessionParts) {
+    this.parts = parts;
+    this.grid = parts.grid;
+    this.engine = parts.engine;
+    this.lattice = parts.engine.lattice;
+    this.opened = parts.scene;
+    this.openedSha256 = sceneSha256(parts.scene);
+    this.scene = parts.scene;
+    this.resolved = parts.resolved;
+    this.drives = parts.drives;
+    this.quantities = quantitiesOf(parts.resolved.polarization);
+    this.traces = new TraceStore(parts.probes.probes.length, parts.grid.maxSteps);
+  }
+
+  get step(): number {
+    return this.engine.step;
+  }
+
+  get timeNs(): number {
+    return this.engine.step * this.lattice.dt * 1e9;
+  }
+
+  get decayDb(): number {
+    if (this.energyMax === 0) return 0;
+    return 10 * Math.log10(Math.max(this.energy, Number.MIN_VALUE) / this.energyMax);
+  }
+
+  get edits(): readonly EditLogEntry[] {
+    return this.editLog;
+  }
+
+  advance(steps: number): AdvanceOutcome {
+    const started = performance.now();
+    const first = this.engine.step;
+    let left = Math.max(0, Math.floor(steps));
+    while (left > 0 && !this.stopReason && !this.failure) {
+      const toCheck = CHECK_INTERVAL - (this.engine.step % CHECK_INTERVAL);
+      const taken = Math.min(left, toCheck, this.grid.maxSteps - this.engine.step);
+      this.takeSteps(taken);
+      left -= taken;
+    }
+    this.seconds += (performance.now() - started) / 1000;
+    this.stepsTimed += this.engine.step - first;
+    if (this.failure) return { kind: "failed", failure: this.failure };
+    if (this.stopReason) return { kind: "ended", reason: this.stopReason };
+    return { kind: "running" };
+  }
+
+  private takeSteps(steps: number): void {
+    const { sources } = this.drives;
+    const { dt } = this.lattice;
+    const signals = new Float64Array(steps * sources.length);
+    const largest = new Float64Array(sources.length);
+    for (let t = 0; t < steps; t += 1) {
+      const time = (this.engine.step + t + 0.5) * dt;
+      sources.forEach((source, index) => {
+        const value = source.amplitude * source.waveform.valueAt(time);
+        signals[t * sources.length + index] = value;
+        if (!(Math.abs(value) <= largest[index])) largest[index] = Math.abs(value);
+      });
+    }
+    const records = new Float64Array(steps * this.parts.probes.probes.length);
+    this.engine.advance(steps, signals, records);
+    this.traces.append(records, steps);
+    const atEnd = this.engine.step >= this.grid.maxSteps;
+    if (this.engine.step % CHECK_INTERVAL === 0 || atEnd) this.check(largest);
+    if (atEnd && !this.failure) this.stopReason ??= "time";
+  }
+
+  private check(largestSignals: Float64Array): void {
+    this.energy = storedEnergy(this.engine);
+    if (!Number.isFinite(this.energy)) {
+      this.failure = nonFiniteFailure(this.engine, this.resolved, this.drives.sources, largestSignals);
+      return;
+    }
+    this.energyMax = Math.max(this.energyMax, this.energy);
+    const over = this.engine.step * this.lattice.dt > this.drives.endSeconds;
+    const floor = this.energyMax * 10 ** (-this.resolved.stop.decayDb / 10);
+    if (over && this.energyMax > 0 && this.energy <= floor) this.stopReason = "decay";
+  }
+
+  cancel(): void {
+    this.stopReason ??= "cancelled";
+  }
+
+  tracesSince(from: number): TraceIncrement[] {
+    const { probes } = this.parts.probes;
+    const stepNs = this.lattice.dt * 1e9;
+    return probes.map((probe, index) => ({
+      probe: probe.id,
+      unit: probe.unit,
+      startNs: probe.firstSampleStep * stepNs,
+      stepNs,
+      from: Math.min(from, this.traces.length),
+      values: this.traces.since(index, from).slice(),
+    }));
+  }
+
+  sampleField(request: ViewRequest): FieldSample {
+    return sampleQuantity(this.engine, request);
+  }
+
+  edit(scene: Scene): EditOutcome {
+    const read = readScene(scene, { purpose: "run" });
+    if (!read.ok) return { kind: "refused", problems: read.problems };
+    const resolved = resolveScene(read.scene);
+    const problems = editProblems(this.resolved, resolved, this.grid);
+    if (problems.length > 0) return { kind: "refused", problems };
+    this.apply(read.scene, resolved);
+    const entry = { step: this.engine.step, sceneSha256: sceneSha256(read.scene) };
+    this.editLog.push(entry);
+    return { kind: "applied", step: entry.step };
+  }
+
+  /** Coefficients and drives of an edited scene from the next step on. */
+  private apply(scene: Scene, resolved: ResolvedScene): void {
+    const coefficients = coefficientsOf(resolved, this.lattice);
+    const drives = drivesOf(resolved, this.lattice);
+    this.clearOverdamped(coefficients.row);
+    this.engine.setRows(0, this.lattice.rows + 1, coefficients.row);
+    this.engine.setDrives(drives.points, drives.sources.length);
+    this.scene = scene;
+    this.resolved = resolved;
+    this.drives = drives;
+  }
+
+  /**
+   * A field point that becomes a conductor, or so lossy that its own field dies within a step (a < 0), loses its field now: a
+   * conductor would keep it frozen, and the semi-implicit loss would let it ring at the step rate.
+   */
+  private clearOverdamped(source: (row: number, out: ReturnType<typeof rowCoefficients>) => void): void {
+    const { stride, rows } = this.lattice;
+    const { f, gx, gy } = this.engine.fields;
+    const before = rowCoefficients(stride);
+    const after = rowCoefficients(stride);
+    for (let j = 0; j <= rows + 1; j += 1) {
+      this.engine.readCoefficients(j, before);
+      source(j, after);
+      const base = j * stride;
+      for (let i = 0; i < stride; i += 1) {
+        if (after.bF[i] === 0 || (after.aF[i] < 0 && before.aF[i] >= 0)) f[base + i] = 0;
+        if (after.bGx[i] === 0 || (after.aGx[i] < 0 && before.aGx[i] >= 0)) gx[base + i] = 0;
+        if (after.bGy[i] === 0 || (after.aGy[i] < 0 && before.aGy[i] >= 0)) gy[base + i] = 0;
+      }
+    }
+  }
+
+  /** What must agree for a snapshot to fit: everything that shapes the engine's arrays. */
+  private engineText(): string {
+    const { engine, lattice } = this;
+    return documentSha256({
+      precision: engine.precision,
+      lattice: { ...lattice, edges: { ...lattice.edges } },
+    });
+  }
+
+  snapshot(): SessionSnapshot {
+    const header: SnapshotHeader = {
+      openedSha256: this.openedSha256,
+      engineText: this.engineText(),
+      step: this.engine.step,
+      samples: this.traces.length,
+      energy: this.energy,
+      energyMax: this.energyMax,
+      stopReason: this.stopReason,
+      edits: [...this.editLog],
+      scene: this.editLog.length > 0 ? this.scene : null,
+    };
+    const traces = this.traces.save();
+    const bytes = packBlocks(header, [
+      this.engine.save(),
+      new Uint8Array(traces.buffer, traces.byteOffset, traces.byteLength),
+    ]);
+    return { version: 1, step: this.engine.step, bytes };
+  }
+
+  restore(snapshot: SessionSnapshot): void {
+    const { header, blocks } = unpackBlocks(snapshot.bytes);
+    const words = header as SnapshotHeader;
+    if (words.openedSha256 !== this.openedSha256)
+      throw new RangeError("The snapshot belongs to another scene.");
+    if (words.engineText !== this.engineText() || blocks.length !== 2) {
+      throw new RangeError("The snapshot belongs to another grid or precision.");
+    }
+    const scene = words.scene ?? this.opened;
+    this.apply(scene, resolveScene(scene));
+    this.engine.load(blocks[0]);
+    this.traces.load(new Float64Array(blocks[1].slice().buffer), words.samples);
+    this.energy = words.energy;
+    this.energyMax = words.energyMax;
+    this.stopReason = words.stopReason;
+    this.failure = null;
+    this.editLog = [...words.edits];
+  }
+
+  result(): SolveResult {
+    const { engine, lattice } = this;
+    const cells = (lattice.columns - 1) * (lattice.rows - 1);
+    return buildResult({
+      scene: this.opened,
+      sceneSha256: this.openedSha256,
+      resolved: this.resolved,
+      engine,
+      grid: this.grid,
+      probes: this.parts.probes.probes,
+      drives: this.drives,
+      traces: (probe) => this.traces.since(probe, 0),
+      frequenciesGHz: this.parts.frequenciesGHz,
+      reason: this.stopReason ?? "cancelled",
+      energy: this.energy,
+      energyMax: this.energyMax,
+      edits: this.editLog,
+      warnings: this.parts.warnings,
+      seconds: this.seconds,
+      cellStepsPerSecond: this.seconds > 0 ? (cells * this.stepsTimed) / this.seconds : 0,
+    });
+  }
+
+  dispose(): void {
+    this.engine.dispose();
+  }
+}

@@ -1,0 +1,54 @@
+/** Why a run cannot go on: which medium or source a field that passed every bound points to. */
+import type { Lattice } from "../lattice/index.js";
+import { cellOfColumn, cellOfRow } from "../lattice/index.js";
+import type { ResolvedScene } from "../scene/index.js";
+import { mediumAt } from "../scene/index.js";
+import type { Engine } from "../stepping/index.js";
+import type { PlannedSource } from "./plan.js";
+import type { RunFailure } from "./session.js";
+
+/** Index of the first field point that is not finite; null where all are. */
+function firstNonFinite(engine: Engine): { row: number; column: number } | null {
+  const { stride } = engine.lattice;
+  for (const field of [engine.fields.f, engine.fields.gx, engine.fields.gy]) {
+    const k = field.findIndex((value) => !Number.isFinite(value));
+    if (k >= 0) return { row: Math.floor(k / stride), column: k % stride };
+  }
+  return null;
+}
+
+const placeMm = (lattice: Lattice, row: number, column: number): [number, number] => [
+  Math.min(lattice.nx, Math.max(0, cellOfColumn(lattice, column))) * lattice.dx * 1000,
+  Math.min(lattice.ny, Math.max(0, cellOfRow(lattice, row))) * lattice.dy * 1000,
+];
+
+/** Names a source whose current itself is no number, else the medium where the field first went wrong. */
+export function nonFiniteFailure(
+  engine: Engine,
+  scene: ResolvedScene,
+  sources: readonly PlannedSource[],
+  largestSignals: Float64Array,
+): RunFailure {
+  const step = `step ${engine.step}`;
+  const limit = engine.precision === "f32" ? 1e30 : 1e290;
+  const loud = sources.findIndex((_, index) => !(largestSignals[index] < limit));
+  if (loud >= 0) {
+    return {
+      code: "non-finite",
+      sentence: `The field is no longer finite at ${step}: the source "${sources[loud].id}" drives more than a number can hold; lower its amplitude or samples.`,
+    };
+  }
+  const at = firstNonFinite(engine);
+  if (!at) {
+    return {
+      code: "non-finite",
+      sentence: `The field energy is no longer finite at ${step}; lower the sources' amplitudes.`,
+    };
+  }
+  const [x, y] = placeMm(engine.lattice, at.row, at.column);
+  const medium = mediumAt(scene, x, y);
+  return {
+    code: "non-finite",
+    sentence: `The field is no longer finite at ${step}, first in the medium "${medium?.id ?? scene.background}" near x = ${x.toPrecision(4)} mm, y = ${y.toPrecision(4)} mm; check its values and the sources beside it.`,
+  };
+}

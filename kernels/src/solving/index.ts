@@ -1,0 +1,64 @@
+/** The door to a run: a scene in, a session out. */
+import type { Scene } from "../scene/index.js";
+import { readScene, resolveScene, SceneError } from "../scene/index.js";
+import { ReferenceEngine } from "../stepping/index.js";
+import { EngineSession } from "./engine-session.js";
+import { coefficientsOf, drivesOf, latticeOf, layersOf, probesOf } from "./plan.js";
+import type { SessionOptions, SolveSession } from "./session.js";
+
+export * from "./session.js";
+export { SOLVER_VERSION } from "./version.js";
+
+/** Spectra have this many frequencies, evenly over the band, unless others are asked for. */
+export const DEFAULT_FREQUENCIES = 401;
+
+const evenly = (from: number, to: number, count: number): number[] =>
+  Array.from({ length: count }, (_, index) => from + ((to - from) * index) / (count - 1));
+
+/**
+ * Compiles a scene and opens a session before its first step.
+ *
+ * Rejects with a SceneError that lists every problem where the scene cannot be run, with a RangeError where an option
+ * cannot be served.
+ */
+export function openSession(scene: Scene, options: SessionOptions = {}): Promise<SolveSession> {
+  return Promise.resolve().then(() => open(scene, options));
+}
+
+function open(scene: Scene, options: SessionOptions): SolveSession {
+  if (options.engine === "wasm") {
+    throw new RangeError('The engine "wasm" is not built yet; leave the engine out or ask for "reference".');
+  }
+  if (options.frequenciesGHz?.some((frequency) => !(frequency > 0 && Number.isFinite(frequency)))) {
+    throw new RangeError("Every frequency of a spectrum must be a positive number of GHz.");
+  }
+  const read = readScene(scene, { purpose: "run" });
+  if (!read.ok) throw new SceneError(read.problems);
+  const resolved = resolveScene(read.scene);
+  const { grid, lattice } = latticeOf(resolved);
+  const drives = drivesOf(resolved, lattice);
+  const probes = probesOf(resolved, lattice);
+  const engine = new ReferenceEngine(
+    {
+      lattice,
+      coefficients: coefficientsOf(resolved, lattice).row,
+      layers: layersOf(resolved, lattice),
+      drives: drives.points,
+      signals: drives.sources.length,
+      taps: probes.taps,
+      records: probes.probes.length,
+    },
+    options.precision ?? "f64",
+  );
+  const { fromGHz, toGHz } = resolved.band;
+  return new EngineSession({
+    scene: read.scene,
+    resolved,
+    warnings: read.warnings.map(({ sentence }) => sentence),
+    grid,
+    engine,
+    drives,
+    probes,
+    frequenciesGHz: options.frequenciesGHz ?? evenly(fromGHz, toGHz, DEFAULT_FREQUENCIES),
+  });
+}

@@ -1,0 +1,136 @@
+/** A scene compiled for an engine: lattice, coefficients, drives, probes. */
+import { absorbingLayers } from "../boundaries/index.js";
+import type { AbsorbingLayers } from "../boundaries/index.js";
+import type { CompiledWaveform } from "../drives/index.js";
+import { compileWaveform, lineSourcePoints } from "../drives/index.js";
+import type { PaintedArea } from "../geometry/index.js";
+import type { Lattice, Side } from "../lattice/index.js";
+import { buildLattice } from "../lattice/index.js";
+import type { SolverMedium } from "../media/index.js";
+import { propertiesOf, SectionCoefficients } from "../media/index.js";
+import type { Component } from "../observers/index.js";
+import { engineFieldOf, firstSampleStep, pointProbeTaps, unitOf } from "../observers/index.js";
+import type { Grid, Medium, ResolvedScene } from "../scene/index.js";
+import { canonicalJson, gridOf, isPerfect } from "../scene/index.js";
+import type { DrivePoint, Tap } from "../stepping/index.js";
+
+export interface PlannedSource {
+  id: string;
+  amplitude: number;
+  waveform: CompiledWaveform;
+  /** Sources with the same text share a waveform. */
+  waveformText: string;
+}
+
+export interface PlannedProbe {
+  id: string;
+  component: Component;
+  unit: string;
+  /** Time of sample 0 over Δt. */
+  firstSampleStep: number;
+}
+
+export interface DrivePlan {
+  sources: readonly PlannedSource[];
+  points: readonly DrivePoint[];
+  /** Seconds after which no source drives any more; infinite with a tone. */
+  endSeconds: number;
+}
+
+export interface ProbePlan {
+  probes: readonly PlannedProbe[];
+  taps: readonly Tap[];
+}
+
+const solverMedium = (medium: Medium): SolverMedium =>
+  isPerfect(medium) ? { kind: medium.perfect } : { kind: "fill", properties: propertiesOf(medium) };
+
+/** The lattice of a resolved scene and the figures of its mesh. */
+export function latticeOf(scene: ResolvedScene): { grid: Grid; lattice: Lattice } {
+  const grid = gridOf(scene);
+  const lattice = buildLattice({
+    polarization: scene.polarization,
+    nx: grid.nx,
+    ny: grid.ny,
+    dx: grid.dxMm / 1000,
+    dy: grid.dyMm / 1000,
+    edges: scene.edges,
+    courant: grid.courant,
+  });
+  return { grid, lattice };
+}
+
+/** The update coefficients of a resolved scene's paint and media. */
+export function coefficientsOf(scene: ResolvedScene, lattice: Lattice): SectionCoefficients {
+  const ids = [...scene.mediaById.keys()];
+  const indexOf = (id: string): number => {
+    const index = ids.indexOf(id);
+    if (index < 0) throw new RangeError(`The medium "${id}" does not exist.`);
+    return index;
+  };
+  const areas: PaintedArea[] = [];
+  const walls: (readonly [number, number])[][] = [];
+  for (const patch of scene.paint) {
+    if (patch.kind === "wall") walls.push(patch.points.map(([x, y]) => [x, y] as const));
+    else if (patch.kind !== "film") areas.push({ shape: patch, medium: indexOf(patch.medium) });
+  }
+  return new SectionCoefficients(lattice, {
+    media: [...scene.mediaById.values()].map(solverMedium),
+    areas,
+    background: indexOf(scene.background),
+    walls,
+    widthMm: scene.section.widthMm,
+    heightMm: scene.section.heightMm,
+    omega: Math.PI * (scene.band.fromGHz + scene.band.toGHz) * 1e9,
+  });
+}
+
+/** The layers behind absorbing edges, matched in grading to the background. */
+export function layersOf(scene: ResolvedScene, lattice: Lattice): AbsorbingLayers {
+  const background = scene.mediaById.get(scene.background);
+  const index =
+    background && !isPerfect(background)
+      ? Math.sqrt(background.relativePermittivity * background.relativePermeability)
+      : 1;
+  const sides: Record<Side, number> = { left: index, right: index, bottom: index, top: index };
+  return absorbingLayers(lattice, scene.band.fromGHz * 1e9, sides);
+}
+
+export function drivesOf(scene: ResolvedScene, lattice: Lattice): DrivePlan {
+  const sources: PlannedSource[] = [];
+  const points: DrivePoint[] = [];
+  for (const source of scene.sources) {
+    if (source.kind !== "line")
+      throw new RangeError(`The source "${source.id}" is of a kind no engine drives.`);
+    points.push(...lineSourcePoints(lattice, source.x, source.y, sources.length));
+    sources.push({
+      id: source.id,
+      amplitude: source.amplitude,
+      waveform: compileWaveform(source.waveform),
+      waveformText: canonicalJson(source.waveform),
+    });
+  }
+  const endSeconds = sources.reduce((latest, source) => Math.max(latest, source.waveform.endSeconds), 0);
+  return { sources, points, endSeconds };
+}
+
+export function probesOf(scene: ResolvedScene, lattice: Lattice): ProbePlan {
+  const probes: PlannedProbe[] = [];
+  const taps: Tap[] = [];
+  for (const probe of scene.probes) {
+    if (probe.kind !== "point") throw new RangeError(`The probe "${probe.id}" is of a kind no engine reads.`);
+    const place = engineFieldOf(lattice, probe.field);
+    if (!place)
+      throw new RangeError(
+        `The probe "${probe.id}" reads ${probe.field}, which ${scene.polarization} lacks.`,
+      );
+    taps.push(...pointProbeTaps(lattice, probe.field, probe.x, probe.y, probes.length));
+    probes.push({
+      id: probe.id,
+      component: probe.field,
+      unit: unitOf(probe.field),
+      firstSampleStep: firstSampleStep(place.field),
+    });
+  }
+  return { probes, taps };
+}

@@ -1,0 +1,132 @@
+/** Spectra of point probes per unit source, with the sentences that belong to them. */
+import type { SampledSignal } from "../analysis/index.js";
+import { fallenDb, finalPeriods, fourierSum, quotient, tonePhasor } from "../analysis/index.js";
+import type { ComplexSpectrum } from "../scene/index.js";
+import type { DrivePlan, PlannedProbe } from "./plan.js";
+
+/** A trace that has not fallen by this much at the stop is cut off: its spectrum stands with a warning. */
+const RUNG_DOWN_DB = 40;
+/** A tone is taken over at most this many whole periods at the end. */
+const TONE_PERIODS = 20;
+/** Two successive windows of a tone that differ by more than this share are not steady. */
+const STEADY = 0.01;
+
+export interface SpectrumInput {
+  probes: readonly PlannedProbe[];
+  drives: DrivePlan;
+  traces: (probe: number) => Float64Array;
+  /** Seconds. */
+  dt: number;
+  steps: number;
+  frequenciesGHz: readonly number[];
+}
+
+export interface Spectra {
+  /** By probe. */
+  spectra: (ComplexSpectrum | null)[];
+  /** Probes whose trace was cut off before it had rung down, or was not steady. */
+  unfinished: ReadonlySet<string>;
+  warnings: string[];
+}
+
+const none = (probes: readonly PlannedProbe[], warning: string): Spectra => ({
+  spectra: probes.map(() => null),
+  unfinished: new Set(),
+  warnings: probes.length > 0 ? [warning] : [],
+});
+
+/** w as it drove the steps: at (n+½)Δt, before the amplitude. */
+function waveformSignal(input: SpectrumInput): SampledSignal {
+  const { waveform } = input.drives.sources[0];
+  const { dt, steps } = input;
+  const driven = Math.min(steps, Math.ceil(waveform.endSeconds / dt) + 1);
+  const values = Float64Array.from({ length: driven }, (_, n) => waveform.valueAt((n + 0.5) * dt));
+  return { start: 0.5 * dt, step: dt, values };
+}
+
+const traceSignal = (input: SpectrumInput, probe: number): SampledSignal => ({
+  start: input.probes[probe].firstSampleStep * input.dt,
+  step: input.dt,
+  values: input.traces(probe),
+});
+
+function pulseSpectra(input: SpectrumInput): Spectra {
+  const frequencies = input.frequenciesGHz.map((frequency) => frequency * 1e9);
+  const divisor = fourierSum(waveformSignal(input), frequencies);
+  const warnings: string[] = [];
+  const unfinished = new Set<string>();
+  const over = input.steps * input.dt >= input.drives.endSeconds;
+  if (!over)
+    warnings.push(
+      "The run was stopped while its sources were still driving; its spectra are of what was driven until then.",
+    );
+  const spectra = input.probes.map((probe, index): ComplexSpectrum => {
+    const signal = traceSignal(input, index);
+    const fallen = fallenDb(signal.values);
+    if (!over || fallen < RUNG_DOWN_DB) {
+      unfinished.add(probe.id);
+      warnings.push(
+        `The trace of "${probe.id}" had fallen by ${fallen.toFixed(0)} dB only when the run stopped (${RUNG_DOWN_DB} dB are needed): sharp peaks of its spectrum read too low, and no limit is judged on it. Run longer.`,
+      );
+    }
+    return { GHz: [...input.frequenciesGHz], ...quotient(fourierSum(signal, frequencies), divisor) };
+  });
+  return { spectra, unfinished, warnings };
+}
+
+function toneSpectra(input: SpectrumInput, hz: number): Spectra {
+  const { dt, steps, probes } = input;
+  const GHz = [hz / 1e9];
+  const periods = finalPeriods(Math.floor(steps / 2), dt, hz, TONE_PERIODS);
+  if (periods === 0) {
+    return none(probes, "The run ended within two periods of its tone, so there is no spectrum; run longer.");
+  }
+  const window = Math.round(periods / (hz * dt));
+  const divisor = tonePhasor(
+    {
+      start: 0.5 * dt,
+      step: dt,
+      values: Float64Array.from({ length: steps }, (_, n) =>
+        input.drives.sources[0].waveform.valueAt((n + 0.5) * dt),
+      ),
+    },
+    hz,
+    steps - window,
+    steps,
+  );
+  const warnings: string[] = [];
+  const unfinished = new Set<string>();
+  const spectra = probes.map((probe, index): ComplexSpectrum => {
+    const signal = traceSignal(input, index);
+    const last = tonePhasor(signal, hz, steps - window, steps);
+    const before = tonePhasor(signal, hz, steps - 2 * window, steps - window);
+    const change = Math.hypot(last[0] - before[0], last[1] - before[1]);
+    if (!(change <= STEADY * Math.hypot(last[0], last[1]))) {
+      unfinished.add(probe.id);
+      warnings.push(
+        `The tone at "${probe.id}" was not yet steady when the run stopped: over the last ${periods} periods it changed by more than ${STEADY * 100} %. Run longer.`,
+      );
+    }
+    const asValues = ([re, im]: [number, number]): { re: Float64Array; im: Float64Array } => ({
+      re: Float64Array.of(re),
+      im: Float64Array.of(im),
+    });
+    return { GHz, ...quotient(asValues(last), asValues(divisor)) };
+  });
+  return { spectra, unfinished, warnings };
+}
+
+/** Spectra of all probes; null with the reason in `warnings` where there can be none. */
+export function spectraOf(input: SpectrumInput): Spectra {
+  const { sources } = input.drives;
+  const first = sources.at(0);
+  if (!first || input.steps === 0) return none(input.probes, "Nothing was driven, so there are no spectra.");
+  if (sources.some((source) => source.waveformText !== first.waveformText)) {
+    return none(
+      input.probes,
+      "The sources have different waveforms, so there is no spectrum per unit source; give all of them one waveform.",
+    );
+  }
+  const { toneHz } = first.waveform;
+  return toneHz === null ? pulseSpectra(input) : toneSpectra(input, toneHz);
+}

@@ -1,0 +1,97 @@
+/**
+ * The engine: it owns the three fields, the coefficients and the absorbing layers' memory, and steps them. It knows rows,
+ * so that a faster one may take many steps per sweep; whatever needs a whole frame (energy, pictures, edits) asks
+ * between two calls of `advance`.
+ */
+import type { AbsorbingLayers } from "../boundaries/index.js";
+import type { FieldArray, Lattice } from "../lattice/index.js";
+
+/** Update coefficients of one row, each of the lattice's stride (index 0 is the ring). */
+export interface RowCoefficients {
+  aF: Float64Array;
+  bF: Float64Array;
+  aGx: Float64Array;
+  bGx: Float64Array;
+  aGy: Float64Array;
+  bGy: Float64Array;
+}
+
+/** Writes the coefficients of row j (0 … rows + 1) into `out`. */
+export type CoefficientSource = (row: number, out: RowCoefficients) => void;
+
+/**
+ * A share of a line current at one point of F: F −= bF·weight·signal, the signal in A (TMz) or V (TEz) at (n+½)Δt.
+ */
+export interface DrivePoint {
+  row: number;
+  column: number;
+  weight: number;
+  /** Index into the signals of a step. */
+  signal: number;
+}
+
+export type EngineField = "f" | "gx" | "gy";
+
+/** A share of a recorded quantity: record += weight·field[row, column], after the step. */
+export interface Tap {
+  row: number;
+  column: number;
+  field: EngineField;
+  weight: number;
+  /** Index into the records of a step. */
+  record: number;
+}
+
+export interface EngineSetup {
+  lattice: Lattice;
+  coefficients: CoefficientSource;
+  layers: AbsorbingLayers;
+  drives: readonly DrivePoint[];
+  signals: number;
+  taps: readonly Tap[];
+  records: number;
+}
+
+export interface EngineFields {
+  readonly f: FieldArray;
+  readonly gx: FieldArray;
+  readonly gy: FieldArray;
+}
+
+export interface Engine {
+  readonly name: "reference" | "wasm";
+  readonly precision: "f64" | "f32";
+  readonly threads: number;
+  readonly lattice: Lattice;
+  /** Steps taken: F holds time step·Δt, G (step − ½)·Δt. */
+  readonly step: number;
+  /** The fields as they are between two calls; written to by tests and edits, read by everyone. */
+  readonly fields: EngineFields;
+  /** a and b of one row as the engine uses them, in its precision. */
+  readCoefficients(row: number, out: RowCoefficients): void;
+
+  /**
+   * Takes `steps` steps.
+   *
+   * @param signals step-major: steps × signals numbers, the drives at (n+½)Δt
+   * @param records step-major: steps × records numbers, overwritten with what the taps read
+   */
+  advance(steps: number, signals: Float64Array, records: Float64Array): void;
+  /** New coefficients for rows first … last, from the next step on. Fields stay as they are. */
+  setRows(first: number, last: number, source: CoefficientSource): void;
+  setDrives(drives: readonly DrivePoint[], signals: number): void;
+  /** Fields, layers' memory and step: with the same coefficients the run goes on bit for bit. */
+  save(): Uint8Array;
+  /** Throws a RangeError where the bytes do not fit this engine. */
+  load(bytes: Uint8Array): void;
+  dispose(): void;
+}
+
+export const rowCoefficients = (stride: number): RowCoefficients => ({
+  aF: new Float64Array(stride),
+  bF: new Float64Array(stride),
+  aGx: new Float64Array(stride),
+  bGx: new Float64Array(stride),
+  aGy: new Float64Array(stride),
+  bGy: new Float64Array(stride),
+});

@@ -1,0 +1,212 @@
+/**
+ * The reference engine: plain loops, short enough to check by eye, in float64 or float32. Every faster engine is compared
+ * with it field by field.
+ *
+ * One sweep over the rows per step. Row j of G needs F's rows j and j + 1 of the old time; row j of F needs G's rows j and
+ * j − 1 of the new one; so after row j of G comes row j of F, and each array is read and written once.
+ */
+import type { FieldArray, Lattice } from "../lattice/index.js";
+import type {
+  CoefficientSource,
+  DrivePoint,
+  Engine,
+  EngineFields,
+  EngineSetup,
+  RowCoefficients,
+  Tap,
+} from "./engine.js";
+import { rowCoefficients } from "./engine.js";
+import { LayerMemory } from "./layer-memory.js";
+import { packArrays, unpackArrays } from "./packing.js";
+
+type Precision = "f64" | "f32";
+
+const groupByRow = <T extends { row: number }>(
+  items: readonly T[],
+  rows: number,
+): readonly (readonly T[])[] => {
+  const groups: T[][] = Array.from({ length: rows + 2 }, () => []);
+  for (const item of items) {
+    if (item.row < 0 || item.row > rows + 1) {
+      throw new RangeError(`Row ${item.row} lies outside the lattice of ${rows} rows.`);
+    }
+    groups[item.row].push(item);
+  }
+  return groups;
+};
+
+/** gx and gy of columns 0 … last of one row; `base` is the index of the row's column 0. */
+function stepG(
+  f: FieldArray,
+  gx: FieldArray,
+  gy: FieldArray,
+  aGx: FieldArray,
+  bGx: FieldArray,
+  aGy: FieldArray,
+  bGy: FieldArray,
+  base: number,
+  last: number,
+  stride: number,
+): void {
+  const end = base + last;
+  let here = f[base];
+  for (let k = base; k <= end; k += 1) {
+    const right = f[k + 1];
+    const above = f[k + stride];
+    gx[k] = aGx[k] * gx[k] - bGx[k] * (above - here);
+    gy[k] = aGy[k] * gy[k] + bGy[k] * (right - here);
+    here = right;
+  }
+}
+
+/** F of columns 1 … last of one row. */
+function stepF(
+  f: FieldArray,
+  gx: FieldArray,
+  gy: FieldArray,
+  aF: FieldArray,
+  bF: FieldArray,
+  base: number,
+  last: number,
+  stride: number,
+): void {
+  const end = base + last;
+  let left = gy[base];
+  for (let k = base + 1; k <= end; k += 1) {
+    const here = gy[k];
+    f[k] = aF[k] * f[k] + bF[k] * (here - left - (gx[k] - gx[k - stride]));
+    left = here;
+  }
+}
+
+export class ReferenceEngine implements Engine {
+  readonly name = "reference";
+  readonly threads = 1;
+  readonly precision: Precision;
+  readonly lattice: Lattice;
+  readonly fields: EngineFields;
+  private readonly aF: FieldArray;
+  private readonly bF: FieldArray;
+  private readonly aGx: FieldArray;
+  private readonly bGx: FieldArray;
+  private readonly aGy: FieldArray;
+  private readonly bGy: FieldArray;
+  private readonly memory: LayerMemory;
+  private readonly tapsByRow: readonly (readonly Tap[])[];
+  private readonly records: number;
+  private drivesByRow: readonly (readonly DrivePoint[])[];
+  private signals: number;
+  private stepsTaken = 0;
+
+  constructor(setup: EngineSetup, precision: Precision = "f64") {
+    const { lattice } = setup;
+    this.precision = precision;
+    this.lattice = lattice;
+    const array = (size: number): FieldArray =>
+      precision === "f64" ? new Float64Array(size) : new Float32Array(size);
+    this.fields = { f: array(lattice.size), gx: array(lattice.size), gy: array(lattice.size) };
+    this.aF = array(lattice.size);
+    this.bF = array(lattice.size);
+    this.aGx = array(lattice.size);
+    this.bGx = array(lattice.size);
+    this.aGy = array(lattice.size);
+    this.bGy = array(lattice.size);
+    this.memory = new LayerMemory(lattice, setup.layers, array);
+    this.tapsByRow = groupByRow(setup.taps, lattice.rows);
+    this.records = setup.records;
+    this.drivesByRow = groupByRow(setup.drives, lattice.rows);
+    this.signals = setup.signals;
+    this.setRows(0, lattice.rows + 1, setup.coefficients);
+  }
+
+  get step(): number {
+    return this.stepsTaken;
+  }
+
+  setRows(first: number, last: number, source: CoefficientSource): void {
+    const row = rowCoefficients(this.lattice.stride);
+    for (let j = first; j <= last; j += 1) {
+      source(j, row);
+      const base = j * this.lattice.stride;
+      this.aF.set(row.aF, base);
+      this.bF.set(row.bF, base);
+      this.aGx.set(row.aGx, base);
+      this.bGx.set(row.bGx, base);
+      this.aGy.set(row.aGy, base);
+      this.bGy.set(row.bGy, base);
+    }
+  }
+
+  readCoefficients(row: number, out: RowCoefficients): void {
+    const base = row * this.lattice.stride;
+    const end = base + this.lattice.stride;
+    out.aF.set(this.aF.subarray(base, end));
+    out.bF.set(this.bF.subarray(base, end));
+    out.aGx.set(this.aGx.subarray(base, end));
+    out.bGx.set(this.bGx.subarray(base, end));
+    out.aGy.set(this.aGy.subarray(base, end));
+    out.bGy.set(this.bGy.subarray(base, end));
+  }
+
+  setDrives(drives: readonly DrivePoint[], signals: number): void {
+    this.drivesByRow = groupByRow(drives, this.lattice.rows);
+    this.signals = signals;
+  }
+
+  advance(steps: number, signals: Float64Array, records: Float64Array): void {
+    if (signals.length < steps * this.signals || records.length < steps * this.records) {
+      throw new RangeError(
+        `advance(${steps}) needs ${steps * this.signals} signals and room for ${steps * this.records} records.`,
+      );
+    }
+    records.fill(0, 0, steps * this.records);
+    for (let t = 0; t < steps; t += 1) this.takeStep(signals, t * this.signals, records, t * this.records);
+  }
+
+  private takeStep(
+    signals: Float64Array,
+    signalBase: number,
+    records: Float64Array,
+    recordBase: number,
+  ): void {
+    const { f, gx, gy } = this.fields;
+    const { aF, bF, aGx, bGx, aGy, bGy, memory } = this;
+    const { stride, columns, rows } = this.lattice;
+    for (let j = 0; j <= rows; j += 1) {
+      const base = j * stride;
+      stepG(f, gx, gy, aGx, bGx, aGy, bGy, base, columns, stride);
+      memory.correctG(j, this.fields, bGx, bGy);
+      if (j > 0) {
+        stepF(f, gx, gy, aF, bF, base, columns, stride);
+        memory.correctF(j, this.fields, bF);
+        for (const drive of this.drivesByRow[j]) {
+          const k = base + drive.column;
+          const signal = signals[signalBase + drive.signal];
+          f[k] = f[k] - bF[k] * drive.weight * signal;
+        }
+      }
+      for (const tap of this.tapsByRow[j]) {
+        const index = recordBase + tap.record;
+        const value = this.fields[tap.field][base + tap.column];
+        records[index] = records[index] + tap.weight * value;
+      }
+    }
+    this.stepsTaken += 1;
+  }
+
+  save(): Uint8Array {
+    const { f, gx, gy } = this.fields;
+    return packArrays([Float64Array.of(this.stepsTaken), f, gx, gy, ...this.memory.arrays]);
+  }
+
+  load(bytes: Uint8Array): void {
+    const { f, gx, gy } = this.fields;
+    const step = new Float64Array(1);
+    unpackArrays(bytes, [step, f, gx, gy, ...this.memory.arrays]);
+    this.stepsTaken = step[0];
+  }
+
+  dispose(): void {
+    // Plain arrays: the garbage collector frees them with the engine.
+  }
+}
