@@ -1,0 +1,78 @@
+import type { Medium, SolveResult } from "@heddle/kernels/scene";
+import { decibels, figure, THIN_SPACE } from "../../lib/figures";
+
+export interface TrustPanelProps {
+  result: SolveResult | null;
+  mediaById: ReadonlyMap<string, Medium>;
+  /** The result belongs to an earlier revision than the one drawn. */
+  outdated: boolean;
+  /** What was left out by drawing a section. */
+  caution: string;
+}
+
+const SHOWN_WARNINGS = 4;
+
+/** How good the answer is, in a few figures, and what the section leaves out. */
+export function TrustPanel({ result, mediaById, outdated, caution }: TrustPanelProps) {
+  return (
+    <section className="side-part" aria-label="Trust">
+      <h2 className="label">Trust</h2>
+      {result === null ? (
+        <p className="quiet">Run the scene to see how good its answer is.</p>
+      ) : (
+        <>
+          {outdated && <p className="quiet">Of the last run; the drawing has changed since.</p>}
+          <Figures result={result} mediaById={mediaById} />
+          {result.quality.warnings.length > 0 && (
+            <ul className="warnings">
+              {result.quality.warnings.slice(0, SHOWN_WARNINGS).map((warning) => (
+                <li key={warning}>{warning}</li>
+              ))}
+              {result.quality.warnings.length > SHOWN_WARNINGS && (
+                <li>and {result.quality.warnings.length - SHOWN_WARNINGS} more.</li>
+              )}
+            </ul>
+          )}
+        </>
+      )}
+      <p className="caution">{caution}</p>
+    </section>
+  );
+}
+
+function Figures({ result, mediaById }: { result: SolveResult; mediaById: ReadonlyMap<string, Medium> }) {
+  const { quality } = result;
+  const media = Object.entries(quality.cellsPerWavelength).sort(([, a], [, b]) => a - b);
+  const { energyLeft, boundaryReflectionDb } = quality;
+  return (
+    <dl className="figures">
+      {media.slice(0, 3).map(([id, cells]) => (
+        <div key={id}>
+          <dt>Cells per wavelength</dt>
+          <dd>
+            {figure(cells, 3)} in {mediaById.get(id)?.name ?? id}
+          </dd>
+        </div>
+      ))}
+      <div>
+        <dt>Dispersion error</dt>
+        <dd>
+          {figure(quality.dispersionError * 100, 2)}
+          {THIN_SPACE}%
+        </dd>
+      </div>
+      {energyLeft !== null && (
+        <div>
+          <dt>Energy left</dt>
+          <dd>{energyLeft > 0 ? decibels(10 * Math.log10(energyLeft)) : "none"}</dd>
+        </div>
+      )}
+      {boundaryReflectionDb !== null && (
+        <div>
+          <dt>Edge reflection</dt>
+          <dd>{decibels(boundaryReflectionDb, 0)}</dd>
+        </div>
+      )}
+    </dl>
+  );
+}
