@@ -2,18 +2,16 @@
 import type { LoggerService, LogLevel } from "@nestjs/common";
 import { NestFactory } from "@nestjs/core";
 import type { NestExpressApplication } from "@nestjs/platform-express";
-import { json } from "express";
 import { AppModule } from "./app.module.js";
 import { authRoutes } from "./auth/auth.routes.js";
 import { makeBetterAuth } from "./auth/better-auth.js";
+import { jsonBody } from "./common/body.js";
+import { serveDescription } from "./common/openapi.js";
 import { OriginPolicy } from "./common/origin-policy.js";
 import { servePages, securityHeaders } from "./common/pages.js";
 import type { Config } from "./config/config.js";
 import { openDataFolder, readSecret } from "./config/data-folder.js";
 import { openDatabase } from "./database/database.js";
-
-/** Largest body of a request: the maximum of a scene document, and room for what wraps it. */
-const BODY_LIMIT_BYTES = 2 * 1024 * 1024 + 16 * 1024;
 
 export interface AppOptions {
   logger?: LoggerService | LogLevel[] | false;
@@ -44,7 +42,8 @@ export async function createApp(config: Config, options: AppOptions = {}): Promi
       app.use(securityHeaders);
       app.use("/api", app.get(OriginPolicy).middleware);
       app.use("/api/auth", authRoutes(betterAuth));
-      app.use("/api", json({ limit: BODY_LIMIT_BYTES, strict: true }));
+      app.use("/api", jsonBody);
+      app.use("/api/openapi.json", serveDescription(app));
       servePages(app);
       closeWith(app, async () => {
         await database.close();

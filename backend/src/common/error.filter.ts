@@ -1,4 +1,11 @@
-import { Catch, HttpException, Logger, type ArgumentsHost, type ExceptionFilter } from "@nestjs/common";
+import {
+  Catch,
+  HttpException,
+  Logger,
+  NotFoundException,
+  type ArgumentsHost,
+  type ExceptionFilter,
+} from "@nestjs/common";
 import type { Request, Response } from "express";
 import { ErrorDto, type ErrorCode } from "../contract/errors.js";
 import { Refusal } from "./refusal.js";
@@ -47,6 +54,7 @@ export function describeError(error: unknown): Told {
   }
   if (error instanceof HttpException && error.getStatus() < 500) {
     const status = error.getStatus();
+    if (error instanceof NotFoundException) return told(new Refusal("not-found", "There is no such route."));
     const code = CODE_BY_STATUS[status] ?? "bad-request";
     return { status, body: { code, message: error.message } };
   }

@@ -29,28 +29,46 @@ export function securityHeaders(_request: Request, response: Response, next: Nex
   next();
 }
 
-/** Paths that are never a page of the application. */
-const NO_PAGE = /^\/(api|socket\.io|assets)(\/|$)/;
+/** Paths that the server's other parts answer. */
+const NOT_OURS = /^\/(api|socket\.io)(\/|$)/;
 
 /** Serves `frontend/dist`; hashed assets for a year, the page itself never from a cache without asking. */
 export function servePages(app: NestExpressApplication, folder: string = PATHS.pages): void {
   const page = join(folder, "index.html");
+  const assets = join(folder, "assets") + sep;
   app.useStaticAssets(folder, {
     index: false,
     setHeaders: (response, path) => {
-      const hashed = path.startsWith(join(folder, "assets") + sep);
+      const hashed = path.startsWith(assets);
       response.setHeader("cache-control", hashed ? "public, max-age=31536000, immutable" : "no-cache");
     },
   });
   app.use((request: Request, response: Response, next: NextFunction) => {
-    const wanted = (request.method === "GET" || request.method === "HEAD") && !NO_PAGE.test(request.path);
-    if (!wanted || !existsSync(page)) {
+    if (NOT_OURS.test(request.path)) {
       next();
+      return;
+    }
+    if (request.method !== "GET" && request.method !== "HEAD") {
+      response.status(405).type("text/plain").send("Only pages are here: the API is below /api.\n");
+      return;
+    }
+    if (request.path.startsWith("/assets/")) {
+      response
+        .status(404)
+        .type("text/plain")
+        .send("There is no such file; reload the page for the current ones.\n");
+      return;
+    }
+    if (!existsSync(page)) {
+      response
+        .status(503)
+        .type("text/plain")
+        .send("The pages are not built: run npm run build, then reload.\n");
       return;
     }
     response.setHeader("cache-control", "no-cache");
     response.sendFile(page, (error?: Error) => {
-      if (error !== undefined) next(error);
+      if (error !== undefined && !response.headersSent) next(error);
     });
   });
 }
