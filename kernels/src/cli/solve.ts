@@ -46,21 +46,23 @@ const readFile = (path: string): { text: string } | { problem: Problem } => {
   }
 };
 
-/** Runs to the end. Null: interrupted. Throws what the session says when the run fails. */
-const runToEnd = async (io: SolveIo, session: SolveSession): Promise<"ended" | "interrupted" | string> => {
+type RunEnd = { kind: "ended" } | { kind: "interrupted" } | { kind: "failed"; sentence: string };
+
+/** Runs to the end, to the first interrupt or to a failure. */
+const runToEnd = async (io: SolveIo, session: SolveSession): Promise<RunEnd> => {
   const progress = new Progress(io.stderr, session.grid.maxSteps, session.grid.nx * session.grid.ny);
   let steps = FIRST_STEPS;
   try {
     for (;;) {
       const before = performance.now();
       const outcome = session.advance(steps);
-      if (outcome.kind === "failed") return outcome.failure.sentence;
-      if (outcome.kind === "ended") return "ended";
+      if (outcome.kind === "failed") return { kind: "failed", sentence: outcome.failure.sentence };
+      if (outcome.kind === "ended") return { kind: "ended" };
       const took = performance.now() - before;
       steps = Math.max(1, Math.round(steps * Math.min(4, TURN_MS / Math.max(took, 1))));
       progress.update(session.step);
       await nextTurn();
-      if (io.interrupt.aborted) return "interrupted";
+      if (io.interrupt.aborted) return { kind: "interrupted" };
     }
   } finally {
     progress.clear();
@@ -81,9 +83,9 @@ const solveScene = async (
   });
   try {
     const end = await runToEnd(io, session);
-    if (end === "interrupted") return EXIT.interrupted;
-    if (end !== "ended") {
-      say(io, end);
+    if (end.kind === "interrupted") return EXIT.interrupted;
+    if (end.kind === "failed") {
+      say(io, end.sentence);
       return EXIT.failed;
     }
     const text = `${JSON.stringify(session.result())}\n`;
