@@ -9,7 +9,7 @@ export default defineConfig({
     // Each file opens embedded databases of its own; two at a time fit small machines.
     pool: "forks",
     maxWorkers: 2,
-    testTimeout: 30_000,
-    hookTimeout: 60_000,
+    testTimeout: 60_000,
+    hookTimeout: 180_000,
   },
 });
