@@ -1,3 +1,4 @@
+import type { SceneSummaryDto } from "@heddle/backend/contract";
 import { useState } from "react";
 import { useNavigate, useParams } from "react-router-dom";
 import { MayButton } from "../components/may-button";
@@ -9,6 +10,7 @@ import { useExamples } from "../features/gallery";
 import {
   Activity,
   DeleteProjectDialog,
+  DeleteSceneDialog,
   ImportSceneDialog,
   Members,
   NewSceneDialog,
@@ -18,7 +20,7 @@ import {
   useScenes,
 } from "../features/projects";
 import { useMay, useSession } from "../hooks/session";
-import { ApiError } from "../lib/api";
+import { statusOf } from "../lib/api";
 import { whyNot } from "../lib/why-not";
 import { counted } from "../lib/words";
 import { NotFoundPage } from "./not-found-page";
@@ -34,10 +36,12 @@ export function ProjectPage() {
   const scenes = useScenes(projectId);
   const examples = useExamples();
   const mayEdit = useMay("scene.edit");
-  const [open, setOpen] = useState<"new" | "import" | "rename" | "delete" | null>(null);
+  const [open, setOpen] = useState<
+    "new" | "import" | "rename" | "delete" | { scene: SceneSummaryDto } | null
+  >(null);
   const close = (): void => setOpen(null);
   const openScene = (sceneId: string): void => void navigate(`/scenes/${sceneId}`);
-  if (project.error instanceof ApiError && project.error.status === 404) return <NotFoundPage />;
+  if (statusOf(project.error) === 404) return <NotFoundPage />;
   const name = project.data?.name ?? "…";
   return (
     <Page
@@ -94,7 +98,7 @@ export function ProjectPage() {
               </p>
             </div>
           ) : (
-            <SceneCards scenes={scenes.data} thumb={thumb} />
+            <SceneCards scenes={scenes.data} thumb={thumb} onDelete={(scene) => setOpen({ scene })} />
           )}
         </div>
         <aside>
@@ -102,6 +106,9 @@ export function ProjectPage() {
           <Activity projectId={projectId} />
         </aside>
       </div>
+      {typeof open === "object" && open !== null ? (
+        <DeleteSceneDialog scene={open.scene} onClose={close} />
+      ) : null}
       {open === "new" ? (
         <NewSceneDialog
           projectId={projectId}

@@ -14,7 +14,8 @@ interface ConfirmDialogProps {
   /** Names the act: "Delete the project". */
   confirm: string;
   pending: boolean;
-  error: Error | null;
+  /** What the server refused; null before. */
+  error: unknown;
   onConfirm: () => void;
   onClose: () => void;
 }

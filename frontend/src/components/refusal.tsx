@@ -1,10 +1,10 @@
 import Button from "@mui/material/Button";
-import { ApiError, sentenceOf } from "../lib/api";
+import { problemsOf, sentenceOf } from "../lib/api";
 import { Notice } from "./notice";
 
 /** A refused request: its sentence, and every problem with its place where the server listed them. */
 export function Refusal({ error, onRetry }: { error: unknown; onRetry?: () => void }) {
-  const problems = error instanceof ApiError ? error.problems : [];
+  const problems = problemsOf(error);
   return (
     <Notice tone="limit">
       <div style={{ display: "flex", gap: 12, alignItems: "center", justifyContent: "space-between" }}>

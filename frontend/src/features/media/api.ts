@@ -1,11 +1,8 @@
-import { MediumDto } from "@heddle/backend/contract";
+import type { MediumDto } from "@heddle/backend/contract";
 import type { Medium } from "@heddle/kernels/scene";
 import { mediumSchema } from "@heddle/kernels/scene";
-import { useMutation, useQuery, useQueryClient } from "@tanstack/react-query";
-import { z } from "zod";
-import { request } from "../../lib/api";
-
-const MEDIA = ["media"] as const;
+import { useQueryClient } from "@tanstack/react-query";
+import { $api } from "../../lib/api";
 
 /** A medium of the library as this page uses it. */
 export interface LibraryMedium {
@@ -25,34 +22,17 @@ const read = (dto: MediumDto): LibraryMedium => ({
 
 /** The workspace's library of media. */
 export const useMedia = () =>
-  useQuery({
-    queryKey: MEDIA,
-    queryFn: ({ signal }) => request("GET", "/api/media", { answer: z.array(MediumDto), signal }),
-    select: (media) => media.map(read),
-  });
+  $api.useQuery("get", "/api/media", undefined, { select: (media) => media.map(read) });
 
-export interface SaveMedium {
-  /** Left out for a new entry. */
-  entryId?: string;
-  medium: Medium;
-  source: string;
-}
-
-export function useSaveMedium() {
+const useRefresh = () => {
   const queryClient = useQueryClient();
-  return useMutation({
-    mutationFn: ({ entryId, ...body }: SaveMedium) =>
-      entryId === undefined
-        ? request("POST", "/api/media", { body, answer: MediumDto })
-        : request("PUT", `/api/media/${entryId}`, { body, answer: MediumDto }),
-    onSuccess: () => queryClient.invalidateQueries({ queryKey: MEDIA }),
-  });
-}
+  return () => queryClient.invalidateQueries({ queryKey: ["get", "/api/media"] });
+};
 
-export function useDeleteMedium() {
-  const queryClient = useQueryClient();
-  return useMutation({
-    mutationFn: (entryId: string) => request("DELETE", `/api/media/${entryId}`),
-    onSuccess: () => queryClient.invalidateQueries({ queryKey: MEDIA }),
-  });
-}
+export const useCreateMedium = () => $api.useMutation("post", "/api/media", { onSuccess: useRefresh() });
+
+export const useUpdateMedium = () =>
+  $api.useMutation("put", "/api/media/{mediumId}", { onSuccess: useRefresh() });
+
+export const useDeleteMedium = () =>
+  $api.useMutation("delete", "/api/media/{mediumId}", { onSuccess: useRefresh() });

@@ -12,7 +12,7 @@ import { Refusal } from "../../components/refusal";
 import { useSession } from "../../hooks/session";
 import { whyNot } from "../../lib/why-not";
 import type { LibraryMedium } from "./api";
-import { useSaveMedium } from "./api";
+import { useCreateMedium, useUpdateMedium } from "./api";
 import { FigureField } from "./figure-field";
 import { FigureList } from "./figure-list";
 import "./medium-dialog.css";
@@ -34,7 +34,9 @@ const isKind = (value: string): value is DraftKind => ["fill", "electric", "magn
 export function MediumDialog({ entry, takenIds, gigahertz, onClose }: MediumDialogProps) {
   const refused = whyNot(useSession().role, "scene.edit");
   const readOnly = refused !== null;
-  const save = useSaveMedium();
+  const create = useCreateMedium();
+  const update = useUpdateMedium();
+  const error: unknown = create.error ?? update.error;
   const [draft, setDraft] = useState(() => draftOf(entry));
   const [tried, setTried] = useState(false);
   const change = (part: Partial<MediumDraft>): void => setDraft({ ...draft, ...part });
@@ -70,7 +72,8 @@ export function MediumDialog({ entry, takenIds, gigahertz, onClose }: MediumDial
           setTried(true);
           if (medium === null || Object.keys(faults).length > 0 || readOnly) return;
           const body = { medium, source: draft.source.trim() };
-          save.mutate(entry === null ? body : { ...body, entryId: entry.entryId }, { onSuccess: onClose });
+          if (entry === null) create.mutate({ body }, { onSuccess: onClose });
+          else update.mutate({ params: { path: { mediumId: entry.entryId } }, body }, { onSuccess: onClose });
         }}
       >
         <DialogTitle id="medium-title" sx={{ display: "flex", alignItems: "center", gap: "12px" }}>
@@ -160,7 +163,7 @@ export function MediumDialog({ entry, takenIds, gigahertz, onClose }: MediumDial
               onChange={(event) => change({ source: event.target.value })}
             />
             {refused === null ? null : <p className="medium-refused">{refused}</p>}
-            {save.isError ? <Refusal error={save.error} /> : null}
+            {error === null ? null : <Refusal error={error} />}
           </div>
           <FigureList medium={medium} gigahertz={gigahertz} />
         </DialogContent>
@@ -169,7 +172,12 @@ export function MediumDialog({ entry, takenIds, gigahertz, onClose }: MediumDial
             {readOnly ? "Close" : "Cancel"}
           </Button>
           {readOnly ? null : (
-            <Button type="submit" variant="contained" color="primary" disabled={save.isPending}>
+            <Button
+              type="submit"
+              variant="contained"
+              color="primary"
+              disabled={create.isPending || update.isPending}
+            >
               {entry === null ? "Add to the library" : "Save"}
             </Button>
           )}

@@ -20,7 +20,7 @@ interface AddToProjectDialogProps {
 export function AddToProjectDialog({ example, onCreated, onClose }: AddToProjectDialogProps) {
   const projects = useProjects();
   const [chosen, setChosen] = useState("");
-  const create = useCreateScene(chosen);
+  const create = useCreateScene();
   return (
     <Dialog open onClose={onClose} maxWidth="xs" fullWidth aria-labelledby="add-title">
       <DialogTitle id="add-title">Add “{example.title}”</DialogTitle>
@@ -57,7 +57,10 @@ export function AddToProjectDialog({ example, onCreated, onClose }: AddToProject
           color="primary"
           disabled={chosen === "" || create.isPending}
           onClick={() =>
-            create.mutate({ example: example.name }, { onSuccess: (scene) => onCreated(scene.id) })
+            create.mutate(
+              { params: { path: { projectId: chosen } }, body: { example: example.name } },
+              { onSuccess: (scene) => onCreated(scene.id) },
+            )
           }
         >
           Add and open

@@ -1,87 +1,61 @@
-import { ActivityDto, MemberDto, ProjectDto, SceneDto, SceneSummaryDto } from "@heddle/backend/contract";
-import { useMutation, useQuery, useQueryClient } from "@tanstack/react-query";
-import { z } from "zod";
-import { request } from "../../lib/api";
+import type { RunState } from "@heddle/backend/contract";
+import { isOver } from "@heddle/backend/contract";
+import { useQueryClient } from "@tanstack/react-query";
+import { $api } from "../../lib/api";
 
-const PROJECTS = ["projects"] as const;
-const scenesKey = (projectId: string) => ["projects", projectId, "scenes"] as const;
+/** While something runs, the page asks again this often. */
+const WHILE_RUNNING_MS = 4_000;
+
+const underWay = (state: RunState | null | undefined): boolean =>
+  state !== null && state !== undefined && !isOver(state);
+
+const path = (projectId: string) => ({ params: { path: { projectId } } });
 
 export const useProjects = () =>
-  useQuery({
-    queryKey: PROJECTS,
-    queryFn: ({ signal }) => request("GET", "/api/projects", { answer: z.array(ProjectDto), signal }),
+  $api.useQuery("get", "/api/projects", undefined, {
+    refetchInterval: ({ state }) =>
+      state.data?.some((project) => underWay(project.lastRunState)) === true ? WHILE_RUNNING_MS : false,
   });
 
 export const useProject = (projectId: string) =>
-  useQuery({
-    queryKey: ["projects", projectId],
-    queryFn: ({ signal }) => request("GET", `/api/projects/${projectId}`, { answer: ProjectDto, signal }),
-  });
+  $api.useQuery("get", "/api/projects/{projectId}", path(projectId));
 
 export const useScenes = (projectId: string) =>
-  useQuery({
-    queryKey: scenesKey(projectId),
-    queryFn: ({ signal }) =>
-      request("GET", `/api/projects/${projectId}/scenes`, { answer: z.array(SceneSummaryDto), signal }),
+  $api.useQuery("get", "/api/projects/{projectId}/scenes", path(projectId), {
+    refetchInterval: ({ state }) =>
+      state.data?.some((scene) => underWay(scene.lastRun?.state)) === true ? WHILE_RUNNING_MS : false,
   });
 
 export const useActivity = (projectId: string) =>
-  useQuery({
-    queryKey: ["projects", projectId, "activity"],
-    queryFn: ({ signal }) =>
-      request("GET", `/api/projects/${projectId}/activity`, { answer: z.array(ActivityDto), signal }),
-  });
+  $api.useQuery("get", "/api/projects/{projectId}/activity", path(projectId));
 
 export const useMembers = () =>
-  useQuery({
-    queryKey: ["members"],
-    queryFn: ({ signal }) => request("GET", "/api/workspace/members", { answer: z.array(MemberDto), signal }),
-    staleTime: 60_000,
-  });
+  $api.useQuery("get", "/api/workspace/members", undefined, { staleTime: 60_000 });
 
-/** Everything under "projects" is asked anew after a change. */
+/** Everything about projects and their scenes is asked anew after a change. */
 const useRefresh = () => {
   const queryClient = useQueryClient();
-  return () => queryClient.invalidateQueries({ queryKey: PROJECTS });
+  return () =>
+    queryClient.invalidateQueries({
+      predicate: ({ queryKey }) => typeof queryKey[1] === "string" && queryKey[1].startsWith("/api/projects"),
+    });
 };
 
-export function useCreateProject() {
-  const refresh = useRefresh();
-  return useMutation({
-    mutationFn: (body: { name: string; example?: string }) =>
-      request("POST", "/api/projects", { body, answer: ProjectDto }),
-    onSuccess: refresh,
+export const useCreateProject = () => $api.useMutation("post", "/api/projects", { onSuccess: useRefresh() });
+
+export const useUpdateProject = () =>
+  $api.useMutation("patch", "/api/projects/{projectId}", { onSuccess: useRefresh() });
+
+/** The deleted project itself is not asked for again: the page that shows it leaves. */
+export function useDeleteProject() {
+  const queryClient = useQueryClient();
+  return $api.useMutation("delete", "/api/projects/{projectId}", {
+    onSuccess: () => queryClient.invalidateQueries({ queryKey: ["get", "/api/projects"] }),
   });
 }
 
-export function useUpdateProject(projectId: string) {
-  const refresh = useRefresh();
-  return useMutation({
-    mutationFn: (body: { name?: string; notes?: string }) =>
-      request("PATCH", `/api/projects/${projectId}`, { body, answer: ProjectDto }),
-    onSuccess: refresh,
-  });
-}
+export const useCreateScene = () =>
+  $api.useMutation("post", "/api/projects/{projectId}/scenes", { onSuccess: useRefresh() });
 
-export function useDeleteProject(projectId: string) {
-  const refresh = useRefresh();
-  return useMutation({
-    mutationFn: () => request("DELETE", `/api/projects/${projectId}`),
-    onSuccess: refresh,
-  });
-}
-
-export interface NewScene {
-  name?: string;
-  document?: Record<string, unknown>;
-  example?: string;
-}
-
-export function useCreateScene(projectId: string) {
-  const refresh = useRefresh();
-  return useMutation({
-    mutationFn: (body: NewScene) =>
-      request("POST", `/api/projects/${projectId}/scenes`, { body, answer: SceneDto }),
-    onSuccess: refresh,
-  });
-}
+export const useDeleteScene = () =>
+  $api.useMutation("delete", "/api/scenes/{sceneId}", { onSuccess: useRefresh() });

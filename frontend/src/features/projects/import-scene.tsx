@@ -7,7 +7,7 @@ import { useRef, useState } from "react";
 import { Notice } from "../../components/notice";
 import { Refusal } from "../../components/refusal";
 import { counted } from "../../lib/words";
-import { ApiError } from "../../lib/api";
+import { problemsOf } from "../../lib/api";
 import { useCreateScene } from "./api";
 import { readSceneFile } from "./scene-file";
 
@@ -19,7 +19,7 @@ interface ImportSceneDialogProps {
 
 /** Takes a scene file into the project; a refused one is shown with every problem it has. */
 export function ImportSceneDialog({ projectId, onCreated, onClose }: ImportSceneDialogProps) {
-  const create = useCreateScene(projectId);
+  const create = useCreateScene();
   const input = useRef<HTMLInputElement>(null);
   const [fileName, setFileName] = useState<string | null>(null);
   const [sentence, setSentence] = useState<string | null>(null);
@@ -31,10 +31,13 @@ export function ImportSceneDialog({ projectId, onCreated, onClose }: ImportScene
     const read = readSceneFile(await file.text());
     setSentence("sentence" in read ? read.sentence : null);
     if ("document" in read) {
-      create.mutate({ document: read.document }, { onSuccess: (scene) => onCreated(scene.id) });
+      create.mutate(
+        { params: { path: { projectId } }, body: { document: read.document } },
+        { onSuccess: (scene) => onCreated(scene.id) },
+      );
     }
   };
-  const problems = create.error instanceof ApiError ? create.error.problems.length : 0;
+  const problems = problemsOf(create.error).length;
   return (
     <Dialog open onClose={onClose} maxWidth="sm" fullWidth aria-labelledby="import-title">
       <DialogTitle id="import-title">Import a scene file</DialogTitle>

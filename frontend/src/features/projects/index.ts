@@ -3,6 +3,7 @@ export { useProject, useProjects, useScenes } from "./api";
 export { ImportSceneDialog } from "./import-scene";
 export {
   DeleteProjectDialog,
+  DeleteSceneDialog,
   NewProjectDialog,
   NewSceneDialog,
   RenameProjectDialog,

@@ -14,7 +14,8 @@ interface NameDialogProps {
   initialName: string;
   confirm: string;
   pending: boolean;
-  error: Error | null;
+  /** What the server refused; null before. */
+  error: unknown;
   /** The name may be left empty, and something else then names it. */
   optional?: boolean;
   wide?: boolean;

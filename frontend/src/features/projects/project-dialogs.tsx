@@ -1,9 +1,9 @@
-import type { ExampleDto, ProjectDto } from "@heddle/backend/contract";
+import type { ExampleDto, ProjectDto, SceneSummaryDto } from "@heddle/backend/contract";
 import type { ReactNode } from "react";
 import { useState } from "react";
 import { ConfirmDialog } from "../../components/confirm-dialog";
 import { counted } from "../../lib/words";
-import { useCreateProject, useCreateScene, useDeleteProject, useUpdateProject } from "./api";
+import { useCreateProject, useCreateScene, useDeleteProject, useDeleteScene, useUpdateProject } from "./api";
 import { NameDialog } from "./name-dialog";
 import { StartFrom } from "./start-from";
 
@@ -28,7 +28,10 @@ export function NewProjectDialog(
       pending={create.isPending}
       error={create.error}
       onConfirm={(name) =>
-        create.mutate(example === null ? { name } : { name, example }, { onSuccess: props.onCreated })
+        create.mutate(
+          { body: { name, notes: "", ...(example === null ? {} : { example }) } },
+          { onSuccess: props.onCreated },
+        )
       }
       onClose={props.onClose}
     >
@@ -38,7 +41,7 @@ export function NewProjectDialog(
 }
 
 export function RenameProjectDialog({ project, onClose }: { project: ProjectDto; onClose: () => void }) {
-  const update = useUpdateProject(project.id);
+  const update = useUpdateProject();
   return (
     <NameDialog
       title="Rename the project"
@@ -47,7 +50,9 @@ export function RenameProjectDialog({ project, onClose }: { project: ProjectDto;
       confirm="Rename"
       pending={update.isPending}
       error={update.error}
-      onConfirm={(name) => update.mutate({ name }, { onSuccess: onClose })}
+      onConfirm={(name) =>
+        update.mutate({ params: { path: { projectId: project.id } }, body: { name } }, { onSuccess: onClose })
+      }
       onClose={onClose}
     />
   );
@@ -60,14 +65,16 @@ interface DeleteProps {
 }
 
 export function DeleteProjectDialog({ project, onDeleted, onClose }: DeleteProps) {
-  const remove = useDeleteProject(project.id);
+  const remove = useDeleteProject();
   return (
     <ConfirmDialog
       title={`Delete “${project.name}”?`}
       confirm="Delete the project"
       pending={remove.isPending}
       error={remove.error}
-      onConfirm={() => remove.mutate(undefined, { onSuccess: onDeleted ?? onClose })}
+      onConfirm={() =>
+        remove.mutate({ params: { path: { projectId: project.id } } }, { onSuccess: onDeleted ?? onClose })
+      }
       onClose={onClose}
     >
       Its {counted(project.sceneCount, "section")}, their revisions and all their runs go with it, for
@@ -83,7 +90,7 @@ export function NewSceneDialog(
     initialExample: string | null;
   },
 ) {
-  const create = useCreateScene(props.projectId);
+  const create = useCreateScene();
   const [example, setExample] = useState(props.initialExample);
   return (
     <NameDialog
@@ -97,7 +104,10 @@ export function NewSceneDialog(
       error={create.error}
       onConfirm={(name) =>
         create.mutate(
-          { ...(name === "" ? {} : { name }), ...(example === null ? {} : { example }) },
+          {
+            params: { path: { projectId: props.projectId } },
+            body: { ...(name === "" ? {} : { name }), ...(example === null ? {} : { example }) },
+          },
           { onSuccess: (scene) => props.onCreated(scene.id) },
         )
       }
@@ -105,5 +115,22 @@ export function NewSceneDialog(
     >
       <StartFrom examples={props.examples} chosen={example} onChoose={setExample} thumb={props.thumb} />
     </NameDialog>
+  );
+}
+
+export function DeleteSceneDialog({ scene, onClose }: { scene: SceneSummaryDto; onClose: () => void }) {
+  const remove = useDeleteScene();
+  return (
+    <ConfirmDialog
+      title={`Delete “${scene.name}”?`}
+      confirm="Delete the scene"
+      pending={remove.isPending}
+      error={remove.error}
+      onConfirm={() => remove.mutate({ params: { path: { sceneId: scene.id } } }, { onSuccess: onClose })}
+      onClose={onClose}
+    >
+      All its revisions and runs go with it, for everyone in the workspace. This cannot be undone; export the
+      scene file first if the drawing should be kept.
+    </ConfirmDialog>
   );
 }

@@ -5,17 +5,21 @@ import { Link } from "react-router-dom";
 import { Moment } from "../../components/moment";
 import { MoreMenu } from "../../components/more-menu";
 import { RunStateWord } from "../../components/run-state-word";
+import { useSession } from "../../hooks/session";
 import { sizeMm } from "../../lib/figures";
+import { whyNot } from "../../lib/why-not";
 import "./scene-cards.css";
 import { saveSceneFile, sceneFileName } from "./scene-file";
 
 interface SceneCardsProps {
   scenes: readonly SceneSummaryDto[] | undefined;
   thumb: (document: Record<string, unknown>) => ReactNode;
+  onDelete: (scene: SceneSummaryDto) => void;
 }
 
 /** A project's scenes as small drawings, each with its own title block. */
-export function SceneCards({ scenes, thumb }: SceneCardsProps) {
+export function SceneCards({ scenes, thumb, onDelete }: SceneCardsProps) {
+  const { role } = useSession();
   if (scenes === undefined) {
     return (
       <div className="scene-cards" aria-busy="true">
@@ -40,6 +44,11 @@ export function SceneCards({ scenes, thumb }: SceneCardsProps) {
                 {
                   label: "Export the scene file",
                   onClick: () => saveSceneFile(scene.document, sceneFileName(scene.name, scene.revision)),
+                },
+                {
+                  label: "Delete…",
+                  onClick: () => onDelete(scene),
+                  refused: whyNot(role, "workspace.administer"),
                 },
               ]}
             />

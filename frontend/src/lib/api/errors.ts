@@ -22,6 +22,13 @@ export const sentenceOf = (error: unknown): string =>
     ? error.message
     : "This page failed in a way it did not expect. Reload it; if that does not help, tell the owner of the workspace.";
 
+/** Every problem that a refusal lists. */
+export const problemsOf = (error: unknown): readonly ProblemDto[] =>
+  error instanceof ApiError ? error.problems : [];
+
+/** HTTP status of a refusal; null for anything else. */
+export const statusOf = (error: unknown): number | null => (error instanceof ApiError ? error.status : null);
+
 const BY_STATUS: Record<number, [ErrorCode, string]> = {
   401: ["not-signed-in", "You are not signed in, or your session has ended. Sign in again."],
   403: ["not-allowed", "Your role does not allow this."],
