@@ -16,7 +16,9 @@ import { buildEdgeTable, edgeX } from "./edge-table.js";
 export interface PaintedRow {
   /** By cell: index of the only medium, or −1 where several meet. */
   readonly medium: Int32Array;
-  /** Shares of the media of a cell that is −1 above; they sum to 1. Empty elsewhere. */
+  /** The cells that are −1 above, from left to right. */
+  readonly cut: readonly number[];
+  /** Shares of the media of such a cell; they sum to 1. Empty elsewhere. */
   shares(cell: number): readonly MediumShare[];
 }
 
@@ -78,7 +80,7 @@ export class CoverageSweep {
       this.collectShares();
     }
     const shares = this.mixedShares;
-    return { medium: this.medium, shares: (cell) => shares.get(cell) ?? NO_SHARES };
+    return { medium: this.medium, cut: [...shares.keys()], shares: (cell) => shares.get(cell) ?? NO_SHARES };
   }
 
   private rewind(r: number): void {
@@ -251,15 +253,16 @@ export class CoverageSweep {
   }
 
   private collectShares(): void {
-    const { mixed, medium, columns, mixedShares } = this;
-    for (let cell = 0; cell < columns; cell += 1) if (mixed[cell] === 1) mixedShares.set(cell, []);
+    const { mixed, medium, mixedShares } = this;
+    for (let cell = mixed.indexOf(1); cell >= 0; cell = mixed.indexOf(1, cell + 1)) mixedShares.set(cell, []);
     if (mixedShares.size === 0) return;
     for (const index of this.seen) {
       const sum = this.sumOf(index);
       let share = 0;
-      for (let cell = 0; cell < columns; cell += 1) {
-        share += sum[cell];
-        if (mixed[cell] === 1 && share > 1e-9) mixedShares.get(cell)?.push({ medium: index, share });
+      let reached = 0;
+      for (const [cell, shares] of mixedShares) {
+        for (; reached <= cell; reached += 1) share += sum[reached];
+        if (share > 1e-9) shares.push({ medium: index, share });
       }
     }
     for (const [cell, shares] of mixedShares) {

@@ -39,12 +39,16 @@ export class LineCutter {
       this.nextEdge = 0;
     }
     this.last = position;
-    while (this.nextEdge < table.count && table.y0[this.nextEdge] <= position) {
+    const row = Math.floor(position);
+    while (this.nextEdge < table.count && Math.floor(table.y0[this.nextEdge]) <= row) {
       this.active.push(this.nextEdge);
       this.nextEdge += 1;
     }
     this.active = this.active.filter((edge) => table.y1[edge] > position);
-    const crossings = this.active.map((edge) => ({ edge, x: edgeX(table, edge, position) }));
+    const crossings: { edge: number; x: number }[] = [];
+    for (const edge of this.active) {
+      if (table.y0[edge] <= position) crossings.push({ edge, x: edgeX(table, edge, position) });
+    }
     crossings.sort((p, q) => p.x - q.x || p.edge - q.edge);
     const intervals: Interval[] = [];
     this.stack.reset();

@@ -1,6 +1,6 @@
 /**
  * The edges of all painted shapes in raster units (one unit is one raster cell), ready for a sweep along y: struct of arrays,
- * sorted by lower end, each with its patch and the change of winding number on crossing it rightward.
+ * in the order of the raster rows of their lower ends, each with its patch and the change of winding number on crossing it rightward.
  */
 import type { AreaShape, Point } from "./outline.js";
 import { outlineOf } from "./outline.js";
@@ -38,12 +38,27 @@ export interface EdgeTable {
 /** Corners closer than this to a raster line (in cells) are taken to lie on it. */
 const SNAP = 1e-7;
 /** Chords leave curves by at most this share of a raster cell. */
-export const CHORD_TOLERANCE = 1e-3;
+export const CHORD_TOLERANCE = 4e-3;
 
 const snapped = (value: number): number => {
   const nearest = Math.round(value);
   return Math.abs(value - nearest) < SNAP ? nearest : value;
 };
+
+/** Counting sort of the edges by the raster row of their lower end; all below the raster count as one row, all above too. */
+function orderByRow(raw: readonly number[], count: number, rows: number): Uint32Array {
+  const rowOf = (n: number): number => Math.min(rows, Math.max(-1, Math.floor(raw[n * 6 + 1]))) + 1;
+  const order = new Uint32Array(count);
+  const starts = new Uint32Array(rows + 3);
+  for (let n = 0; n < count; n += 1) starts[rowOf(n) + 1] += 1;
+  for (let row = 1; row < starts.length; row += 1) starts[row] += starts[row - 1];
+  for (let n = 0; n < count; n += 1) {
+    const row = rowOf(n);
+    order[starts[row]] = n;
+    starts[row] += 1;
+  }
+  return order;
+}
 
 /** Builds the table. `swapAxes` exchanges x and y, for cuts along vertical lines. */
 export function buildEdgeTable(areas: readonly PaintedArea[], raster: Raster, swapAxes = false): EdgeTable {
@@ -77,17 +92,19 @@ export function buildEdgeTable(areas: readonly PaintedArea[], raster: Raster, sw
     }
   });
   const count = raw.length / 6;
-  const order = Array.from({ length: count }, (_, index) => index * 6).sort(
-    (p, q) => raw[p + 1] - raw[q + 1],
-  );
-  const pick = (slot: number): number[] => order.map((index) => raw[index + slot]);
+  const order = orderByRow(raw, count, swapAxes ? raster.columns : raster.rows);
+  const pick = (slot: number): Float64Array => {
+    const values = new Float64Array(count);
+    for (let n = 0; n < count; n += 1) values[n] = raw[order[n] * 6 + slot];
+    return values;
+  };
   level.sort((p, q) => p.y - q.y);
   return {
     count,
-    x0: Float64Array.from(pick(0)),
-    y0: Float64Array.from(pick(1)),
-    x1: Float64Array.from(pick(2)),
-    y1: Float64Array.from(pick(3)),
+    x0: pick(0),
+    y0: pick(1),
+    x1: pick(2),
+    y1: pick(3),
     turn: Int8Array.from(pick(4)),
     patch: Int32Array.from(pick(5)),
     level,

@@ -13,7 +13,7 @@ import { cellOfColumn, cellOfRow, columnShare, rowShare } from "../lattice/index
 import type { RowCoefficients } from "../stepping/index.js";
 import type { PairKind, Quarter } from "./averaging.js";
 import { arithmeticMean, inPlaneMean } from "./averaging.js";
-import type { ConductorInput } from "./conductors.js";
+import type { ConductorInput, LatticeBox } from "./conductors.js";
 import { ConductorMap, FIXED_F, FIXED_GX, FIXED_GY } from "./conductors.js";
 import type { Pair, Properties, SolverMedium } from "./properties.js";
 import type { QuarterRow } from "./quarters.js";
@@ -45,9 +45,14 @@ export class SectionCoefficients {
   private readonly geometryGx: number;
   private readonly geometryGy: number;
 
+  private readonly columnShares: Float64Array;
+  private readonly hasShares: boolean;
+
+  /** @param previous the section before an edit that changed nothing outside `box` */
   constructor(
     private readonly lattice: Lattice,
     private readonly section: SectionMedia,
+    previous?: { coefficients: SectionCoefficients; box: LatticeBox },
   ) {
     const { dx, dy, nx, ny, polarization } = lattice;
     const { areas, background, media, widthMm, heightMm } = section;
@@ -58,7 +63,13 @@ export class SectionCoefficients {
     this.geometryGy = dy / dx;
     this.quarters = new QuarterRaster(areas, background, media, { widthMm, heightMm, nx, ny });
     const kinds = media.map(({ kind }) => (kind === "fill" ? "none" : kind === this.kindF ? "f" : "g"));
-    this.conductors = new ConductorMap(lattice, { ...section, kinds });
+    this.conductors = new ConductorMap(
+      lattice,
+      { ...section, kinds },
+      previous && { map: previous.coefficients.conductors, box: previous.box },
+    );
+    this.columnShares = Float64Array.from({ length: lattice.columns + 2 }, (_, i) => columnShare(lattice, i));
+    this.hasShares = this.columnShares.some((share) => share !== 1);
     this.updates = media.map((medium) =>
       medium.kind === "fill"
         ? this.updatesOf(medium.properties)
@@ -209,8 +220,9 @@ export class SectionCoefficients {
       const wholeRowFixed = (j === 1 && !isMagnetic("bottom")) || (j === rows && !isMagnetic("top"));
       if (wholeRowFixed) for (const values of [out.aF, out.bF]) values.fill(0);
       const vertical = rowShare(lattice, j);
+      if (vertical === 1 && !this.hasShares) return;
       for (let i = 1; i <= columns; i += 1) {
-        const horizontal = columnShare(lattice, i);
+        const horizontal = this.columnShares[i];
         out.bF[i] /= horizontal * vertical;
         out.bGx[i] *= horizontal;
         out.bGy[i] *= vertical;
@@ -231,7 +243,8 @@ export class SectionCoefficients {
 
   private applyConductors(j: number, out: RowCoefficients): void {
     const { stride, columns } = this.lattice;
-    const { flags } = this.conductors;
+    const { flags, touched } = this.conductors;
+    if (touched[j] === 0) return;
     const base = j * stride;
     for (let i = 0; i <= columns; i += 1) {
       const k = base + i;

@@ -45,22 +45,64 @@ export interface ConductorInput {
   heightMm: number;
 }
 
+/** Rows and columns of F, inclusive. */
+export interface LatticeBox {
+  firstColumn: number;
+  lastColumn: number;
+  firstRow: number;
+  lastRow: number;
+}
+
+export const wholeLattice = (lattice: Lattice): LatticeBox => ({
+  firstColumn: 0,
+  lastColumn: lattice.columns + 1,
+  firstRow: 0,
+  lastRow: lattice.rows + 1,
+});
+
 /** Flags of the whole lattice, by array index: which of F, gx, gy stay zero on conductors. */
 export class ConductorMap {
   readonly flags: Uint8Array;
+  /** By row: whether any flag stands in it. */
+  readonly touched: Uint8Array;
   private readonly wallFixesF: boolean;
+  private readonly box: LatticeBox;
 
+  /** @param previous the map of the section before an edit that changed nothing outside `box` */
   constructor(
     private readonly lattice: Lattice,
     private readonly input: ConductorInput,
+    previous?: { map: ConductorMap; box: LatticeBox },
   ) {
-    this.flags = new Uint8Array(lattice.size);
+    this.box = previous?.box ?? wholeLattice(lattice);
+    this.flags = previous ? previous.map.flags.slice() : new Uint8Array(lattice.size);
+    this.touched = new Uint8Array(lattice.rows + 2);
+    if (previous) this.clearBox();
     this.wallFixesF = lattice.polarization === "TMz";
     if (input.kinds.some((kind) => kind !== "none")) {
       this.cutAlong("x");
       this.cutAlong("y");
     }
     for (const wall of input.walls) this.drawWall(wall);
+    for (let j = 0; j < this.touched.length; j += 1) {
+      const base = j * lattice.stride;
+      const row = this.flags.subarray(base, base + lattice.stride);
+      this.touched[j] = row.some((flag) => flag !== 0) ? 1 : 0;
+    }
+  }
+
+  private clearBox(): void {
+    const { firstColumn, lastColumn, firstRow, lastRow } = this.box;
+    for (let j = firstRow; j <= lastRow; j += 1) {
+      const base = j * this.lattice.stride;
+      this.flags.fill(0, base + firstColumn, base + lastColumn + 1);
+    }
+  }
+
+  private flag(row: number, column: number, flag: number): void {
+    const { firstColumn, lastColumn, firstRow, lastRow } = this.box;
+    if (row < firstRow || row > lastRow || column < firstColumn || column > lastColumn) return;
+    this.flags[row * this.lattice.stride + column] |= flag;
   }
 
   private lineOf(axis: "x" | "y"): Line {
@@ -95,7 +137,10 @@ export class ConductorMap {
     const along = this.lineOf(axis);
     const across = this.lineOf(axis === "x" ? "y" : "x");
     const highest = across.cells - SIDE_STEP;
-    for (let n = 1; n <= across.count; n += 1) {
+    const { box } = this;
+    const lowest = Math.max(1, axis === "x" ? box.firstRow : box.firstColumn);
+    const last = Math.min(across.count, axis === "x" ? box.lastRow : box.lastColumn);
+    for (let n = lowest; n <= last; n += 1) {
       const position = Math.min(highest, Math.max(SIDE_STEP, across.position(n)));
       for (const side of this.sidesOf(position, across.cells)) {
         for (const interval of cutter.cut(side)) this.fix(axis, n, interval, along);
@@ -121,11 +166,10 @@ export class ConductorMap {
     const round = kind === "f" ? Math.round : Math.floor;
     const first = Math.max(kind === "f" ? 1 : 0, round(from - origin + TIE));
     const last = Math.min(along.count, round(to - origin + TIE));
-    const { stride } = this.lattice;
     const flag = kind === "f" ? FIXED_F : axis === "x" ? FIXED_GY : FIXED_GX;
     for (let i = first; i <= last; i += 1) {
-      const k = axis === "x" ? n * stride + i : i * stride + n;
-      this.flags[k] |= flag;
+      if (axis === "x") this.flag(n, i, flag);
+      else this.flag(i, n, flag);
     }
   }
 
@@ -164,7 +208,6 @@ export class ConductorMap {
     const low = Math.min(a[0], b[0]) - TIE;
     const high = Math.max(a[0], b[0]) + TIE;
     if (Math.abs(b[0] - a[0]) < TIE) return;
-    const { stride } = this.lattice;
     const acrossOrigin = across.position(0);
     const alongOrigin = along.position(0);
     const first = Math.max(1, Math.ceil(low - acrossOrigin));
@@ -174,8 +217,8 @@ export class ConductorMap {
       const at = a[1] + (b[1] - a[1]) * share - alongOrigin + TIE;
       const i = this.wallFixesF ? Math.round(at) : Math.floor(at);
       if (i < (this.wallFixesF ? 1 : 0) || i > along.count) continue;
-      const k = axis === "y" ? i * stride + n : n * stride + i;
-      this.flags[k] |= this.wallFixesF ? FIXED_F : axis === "y" ? FIXED_GX : FIXED_GY;
+      if (axis === "y") this.flag(i, n, this.wallFixesF ? FIXED_F : FIXED_GX);
+      else this.flag(n, i, this.wallFixesF ? FIXED_F : FIXED_GY);
     }
   }
 }

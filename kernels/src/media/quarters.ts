@@ -46,14 +46,13 @@ export class QuarterRaster {
     const painted = this.sweep.row(r);
     const medium = painted.medium.slice();
     const mixed = new Map<number, Quarter>();
-    medium.forEach((index, cell) => {
-      if (index >= 0) return;
+    for (const cell of painted.cut) {
       const shares = painted.shares(cell).flatMap((entry) => {
         const kind = this.media[entry.medium];
         return kind.kind === "fill" ? [{ share: entry.share, properties: kind.properties }] : [];
       });
       mixed.set(cell, { shares });
-    });
+    }
     const row = { medium, mixed };
     this.kept.set(r, row);
     if (this.kept.size > KEPT_ROWS) this.kept.delete(this.kept.keys().next().value ?? r);

@@ -1,13 +1,14 @@
 /** The session: one engine, its scene, what it records, and when it ends. */
 import type { FieldQuantity, FieldSample, ViewRequest } from "../frames/index.js";
-import type { Lattice } from "../lattice/index.js";
+import type { FieldArray, Lattice } from "../lattice/index.js";
+import type { SectionCoefficients } from "../media/index.js";
 import { storedEnergy } from "../observers/index.js";
 import type { ResolvedScene, Scene, SolveResult } from "../scene/index.js";
 import { documentSha256, readScene, resolveScene, sceneSha256 } from "../scene/index.js";
-import type { Engine } from "../stepping/index.js";
+import type { CoefficientSource, Engine } from "../stepping/index.js";
 import { rowCoefficients } from "../stepping/index.js";
 import { packBlocks, unpackBlocks } from "./blocks.js";
-import { editProblems } from "./editing.js";
+import { changedBox, editProblems } from "./editing.js";
 import { nonFiniteFailure } from "./failure.js";
 import type { DrivePlan, ProbePlan } from "./plan.js";
 import { coefficientsOf, drivesOf } from "./plan.js";
@@ -35,6 +36,7 @@ export interface SessionParts {
   warnings: readonly string[];
   grid: GridSummary;
   engine: Engine;
+  coefficients: SectionCoefficients;
   drives: DrivePlan;
   probes: ProbePlan;
   frequenciesGHz: readonly number[];
@@ -66,6 +68,7 @@ export class EngineSession implements SolveSession {
   private scene: Scene;
   private resolved: ResolvedScene;
   private drives: DrivePlan;
+  private coefficients: SectionCoefficients;
   private editLog: EditLogEntry[] = [];
   private energy = 0;
   private energyMax = 0;
@@ -84,6 +87,7 @@ export class EngineSession implements SolveSession {
     this.scene = parts.scene;
     this.resolved = parts.resolved;
     this.drives = parts.drives;
+    this.coefficients = parts.coefficients;
     this.quantities = quantitiesOf(parts.resolved.polarization);
     this.traces = new TraceStore(parts.probes.probes.length, parts.grid.maxSteps);
   }
@@ -190,35 +194,42 @@ export class EngineSession implements SolveSession {
 
   /** Coefficients and drives of an edited scene from the next step on. */
   private apply(scene: Scene, resolved: ResolvedScene): void {
-    const coefficients = coefficientsOf(resolved, this.lattice);
-    const drives = drivesOf(resolved, this.lattice);
-    this.clearOverdamped(coefficients.row);
-    this.engine.setRows(0, this.lattice.rows + 1, coefficients.row);
-    this.engine.setDrives(drives.points, drives.sources.length);
+    const { lattice, engine } = this;
+    const box = changedBox(this.resolved, resolved, lattice);
+    if (box) {
+      const previous = { coefficients: this.coefficients, box };
+      this.coefficients = coefficientsOf(resolved, lattice, previous);
+      const clearing = this.clearOverdamped(this.coefficients.row);
+      engine.setRows(box.firstRow, box.lastRow, clearing);
+    }
+    this.drives = drivesOf(resolved, lattice);
+    engine.setDrives(this.drives.points, this.drives.sources.length);
     this.scene = scene;
     this.resolved = resolved;
-    this.drives = drives;
   }
 
   /**
-   * A field point that becomes a conductor, or so lossy that its own field dies within a step (a < 0), loses its field now: a
-   * conductor would keep it frozen, and the semi-implicit loss would let it ring at the step rate.
+   * A source of coefficients that, row by row before they take effect, clears fields which could not leave by themselves: a point
+   * that becomes a conductor would keep its field frozen; one so lossy that its field dies within a step (a < 0) would let it
+   * ring at the step rate in the semi-implicit form.
    */
-  private clearOverdamped(source: (row: number, out: ReturnType<typeof rowCoefficients>) => void): void {
-    const { stride, rows } = this.lattice;
+  private clearOverdamped(source: CoefficientSource): CoefficientSource {
+    const { stride } = this.lattice;
     const { f, gx, gy } = this.engine.fields;
     const before = rowCoefficients(stride);
-    const after = rowCoefficients(stride);
-    for (let j = 0; j <= rows + 1; j += 1) {
-      this.engine.readCoefficients(j, before);
+    return (j, after) => {
       source(j, after);
+      this.engine.readCoefficients(j, before);
       const base = j * stride;
-      for (let i = 0; i < stride; i += 1) {
-        if (after.bF[i] === 0 || (after.aF[i] < 0 && before.aF[i] >= 0)) f[base + i] = 0;
-        if (after.bGx[i] === 0 || (after.aGx[i] < 0 && before.aGx[i] >= 0)) gx[base + i] = 0;
-        if (after.bGy[i] === 0 || (after.aGy[i] < 0 && before.aGy[i] >= 0)) gy[base + i] = 0;
-      }
-    }
+      const clear = (field: FieldArray, aOld: Float64Array, aNew: Float64Array, bNew: Float64Array): void => {
+        for (let i = 0; i < stride; i += 1) {
+          if (bNew[i] === 0 || (aNew[i] < 0 && aOld[i] >= 0)) field[base + i] = 0;
+        }
+      };
+      clear(f, before.aF, after.aF, after.bF);
+      clear(gx, before.aGx, after.aGx, after.bGx);
+      clear(gy, before.aGy, after.aGy, after.bGy);
+    };
   }
 
   /** What must agree for a snapshot to fit: everything that shapes the engine's arrays. */

@@ -38,10 +38,11 @@ function open(scene: Scene, options: SessionOptions): SolveSession {
   const { grid, lattice } = latticeOf(resolved);
   const drives = drivesOf(resolved, lattice);
   const probes = probesOf(resolved, lattice);
+  const coefficients = coefficientsOf(resolved, lattice);
   const engine = new ReferenceEngine(
     {
       lattice,
-      coefficients: coefficientsOf(resolved, lattice).row,
+      coefficients: coefficients.row,
       layers: layersOf(resolved, lattice),
       drives: drives.points,
       signals: drives.sources.length,
@@ -57,6 +58,7 @@ function open(scene: Scene, options: SessionOptions): SolveSession {
     warnings: read.warnings.map(({ sentence }) => sentence),
     grid,
     engine,
+    coefficients,
     drives,
     probes,
     frequenciesGHz: options.frequenciesGHz ?? evenly(fromGHz, toGHz, DEFAULT_FREQUENCIES),

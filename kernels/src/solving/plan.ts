@@ -6,7 +6,7 @@ import { compileWaveform, lineSourcePoints } from "../drives/index.js";
 import type { PaintedArea } from "../geometry/index.js";
 import type { Lattice, Side } from "../lattice/index.js";
 import { buildLattice } from "../lattice/index.js";
-import type { SolverMedium } from "../media/index.js";
+import type { LatticeBox, SectionMedia, SolverMedium } from "../media/index.js";
 import { propertiesOf, SectionCoefficients } from "../media/index.js";
 import type { Component } from "../observers/index.js";
 import { engineFieldOf, firstSampleStep, pointProbeTaps, unitOf } from "../observers/index.js";
@@ -61,7 +61,11 @@ export function latticeOf(scene: ResolvedScene): { grid: Grid; lattice: Lattice 
 }
 
 /** The update coefficients of a resolved scene's paint and media. */
-export function coefficientsOf(scene: ResolvedScene, lattice: Lattice): SectionCoefficients {
+export function coefficientsOf(
+  scene: ResolvedScene,
+  lattice: Lattice,
+  previous?: { coefficients: SectionCoefficients; box: LatticeBox },
+): SectionCoefficients {
   const ids = [...scene.mediaById.keys()];
   const indexOf = (id: string): number => {
     const index = ids.indexOf(id);
@@ -74,7 +78,7 @@ export function coefficientsOf(scene: ResolvedScene, lattice: Lattice): SectionC
     if (patch.kind === "wall") walls.push(patch.points.map(([x, y]) => [x, y] as const));
     else if (patch.kind !== "film") areas.push({ shape: patch, medium: indexOf(patch.medium) });
   }
-  return new SectionCoefficients(lattice, {
+  const section: SectionMedia = {
     media: [...scene.mediaById.values()].map(solverMedium),
     areas,
     background: indexOf(scene.background),
@@ -82,7 +86,8 @@ export function coefficientsOf(scene: ResolvedScene, lattice: Lattice): SectionC
     widthMm: scene.section.widthMm,
     heightMm: scene.section.heightMm,
     omega: Math.PI * (scene.band.fromGHz + scene.band.toGHz) * 1e9,
-  });
+  };
+  return new SectionCoefficients(lattice, section, previous);
 }
 
 /** The layers behind absorbing edges, matched in grading to the background. */

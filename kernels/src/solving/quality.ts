@@ -1,8 +1,10 @@
 /** How far the numbers of a run can be trusted: computed from its mesh and its end, never assumed. */
-import { C0, worstDispersionError } from "../lattice/index.js";
+import { layerReflectionDb } from "../boundaries/index.js";
+import { C0, SIDES, worstDispersionError } from "../lattice/index.js";
 import type { ResolvedScene, SolveResult } from "../scene/index.js";
-import { cellsPerWavelength, shortestWavelengthMm } from "../scene/index.js";
+import { cellsPerWavelength, isPerfect, shortestWavelengthMm } from "../scene/index.js";
 import type { Engine } from "../stepping/index.js";
+import { layersOf } from "./plan.js";
 import type { GridSummary } from "./session.js";
 
 export interface QualityInput {
@@ -14,6 +16,34 @@ export interface QualityInput {
   warnings: readonly string[];
 }
 
+/** Waves are taken to meet the edges at up to this angle from their normal. */
+const REFLECTION_DEGREES = [0, 15, 30, 45];
+
+/**
+ * The worst reflection of the absorbing edges for plane waves of the background up to 45° from normal, at the band's edges and
+ * middle, from the layers' own coefficients; null where there is no such edge or the background is not lossless.
+ */
+function boundaryReflectionDb(input: QualityInput): number | null {
+  const { resolved, engine } = input;
+  const { lattice } = engine;
+  const sides = SIDES.filter((side) => lattice.edges[side] === "absorbing");
+  const background = resolved.mediaById.get(resolved.background);
+  if (sides.length === 0 || !background || isPerfect(background)) return null;
+  if (background.conductivity > 0 || background.magneticLoss > 0) return null;
+  const index = Math.sqrt(background.relativePermittivity * background.relativePermeability);
+  const layers = layersOf(resolved, lattice);
+  const { fromGHz, toGHz } = resolved.band;
+  const values = sides.flatMap((side) =>
+    [fromGHz, (fromGHz + toGHz) / 2, toGHz].flatMap((frequency) =>
+      REFLECTION_DEGREES.map((degrees) =>
+        layerReflectionDb(lattice, layers, { side, hz: frequency * 1e9, degrees, index }),
+      ),
+    ),
+  );
+  const worst = Math.max(...values);
+  return Number.isFinite(worst) ? worst : null;
+}
+
 export function qualityOf(input: QualityInput): SolveResult["quality"] {
   const { resolved, engine, grid, energy, energyMax } = input;
   const { lattice } = engine;
@@ -22,10 +52,9 @@ export function qualityOf(input: QualityInput): SolveResult["quality"] {
   const speed = Math.min(C0, (shortestWavelengthMm(resolved) / 1000) * hz);
   const dispersion = worstDispersionError(lattice, speed, 2 * Math.PI * hz);
   const warnings = [...input.warnings];
-  const absorbing = Object.values(resolved.edges).includes("absorbing");
-  if (absorbing) {
-    warnings.push(
-      "The reflection of the absorbing edges was not measured in this run; kernels/ACCURACY.md states it for this layer.",
+  const reflection = boundaryReflectionDb(input);
+  if (reflection === null && SIDES.some((side) => lattice.edges[side] === "absorbing")) {
+    warnings.push("The reflection of the absorbing edges is not stated: it is computed for a lossless background only."); kernels/ACCURACY.md states it for this layer.",
     );
   }
   if (Number.isNaN(dispersion)) {
@@ -36,7 +65,7 @@ export function qualityOf(input: QualityInput): SolveResult["quality"] {
   return {
     cellsPerWavelength: cellsPerWavelength(resolved, grid),
     dispersionError: Number.isNaN(dispersion) ? 1 : dispersion,
-    boundaryReflectionDb: null,
+    boundaryReflectionDb: reflection,
     energyLeft: energyMax > 0 ? energy / energyMax : null,
     warnings,
   };
