@@ -54,7 +54,8 @@ export function qualityOf(input: QualityInput): SolveResult["quality"] {
   const warnings = [...input.warnings];
   const reflection = boundaryReflectionDb(input);
   if (reflection === null && SIDES.some((side) => lattice.edges[side] === "absorbing")) {
-    warnings.push("The reflection of the absorbing edges is not stated: it is computed for a lossless background only."); kernels/ACCURACY.md states it for this layer.",
+    warnings.push(
+      "The reflection of the absorbing edges is not stated: it is computed for a lossless background only.",
     );
   }
   if (Number.isNaN(dispersion)) {
