@@ -212,7 +212,9 @@ export class RunsService {
       return;
     }
     live.record.pacePsPerSecond = pace;
+    const change = live.nextChange(ANSWER_AFTER_MS);
     live.post({ kind: "pace", picosecondsPerSecond: pace });
+    await change;
     await live.inOrder(() => this.repository.change(record.id, { pacePsPerSecond: pace }));
     this.dispatcher.tell(live);
   }

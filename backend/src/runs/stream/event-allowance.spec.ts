@@ -16,4 +16,24 @@ describe("EventAllowance", () => {
     nowMs += 1_000;
     expect(allowance.take()).toBe("taken");
   });
+
+  it("gives up on who keeps sending five times too much, though some of it passes", () => {
+    let nowMs = 0;
+    const allowance = new EventAllowance(() => nowMs);
+    const taken = Array.from({ length: 20 * EVENTS_PER_SECOND }, () => {
+      nowMs += 1000 / (5 * EVENTS_PER_SECOND);
+      return allowance.take();
+    });
+    expect(taken).toContain("hopeless");
+  });
+
+  it("forgets what was refused once the socket has kept quiet", () => {
+    let nowMs = 0;
+    const allowance = new EventAllowance(() => nowMs);
+    for (let round = 0; round < 10; round++) {
+      const flood = Array.from({ length: 900 }, () => allowance.take());
+      expect(flood).not.toContain("hopeless");
+      nowMs += 60_000;
+    }
+  });
 });

@@ -2,12 +2,12 @@
 
 export const EVENTS_PER_SECOND = 200;
 const BURST = 400;
-/** Refused events in a row after which the socket is closed. */
+/** Events refused after which the socket is closed, unless it kept quiet long enough to have its burst back. */
 const PATIENCE = 1_000;
 
 export class EventAllowance {
   private left = BURST;
-  private refusedInARow = 0;
+  private refused = 0;
   private atMs: number;
 
   constructor(private readonly now: () => number = () => performance.now()) {
@@ -19,12 +19,12 @@ export class EventAllowance {
     const nowMs = this.now();
     this.left = Math.min(BURST, this.left + ((nowMs - this.atMs) / 1000) * EVENTS_PER_SECOND);
     this.atMs = nowMs;
+    if (this.left === BURST) this.refused = 0;
     if (this.left >= 1) {
       this.left -= 1;
-      this.refusedInARow = 0;
       return "taken";
     }
-    this.refusedInARow += 1;
-    return this.refusedInARow > PATIENCE ? "hopeless" : "over";
+    this.refused += 1;
+    return this.refused > PATIENCE ? "hopeless" : "over";
   }
 }

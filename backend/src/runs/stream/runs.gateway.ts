@@ -52,7 +52,7 @@ export class RunsGateway
   implements OnGatewayInit, OnGatewayConnection, OnGatewayDisconnect, BeforeApplicationShutdown
 {
   @WebSocketServer()
-  private readonly namespace!: RunNamespace;
+  readonly namespace!: RunNamespace;
   private recheck: NodeJS.Timeout | undefined;
 
   constructor(

@@ -19,6 +19,8 @@ export interface FakeOptions {
   throws?: Error;
   /** What an edit is refused for. */
   refusesEdits?: string;
+  /** The result's trace has this many samples, sample i being sin(i). */
+  resultSamples?: number;
 }
 
 export class FakeSession implements SolveSession {
@@ -94,6 +96,11 @@ export class FakeSession implements SolveSession {
   result(): SolveResult {
     const [trace] = this.tracesSince(0);
     const { nx, ny, dxMm, dyMm, stepPs, courant } = this.grid;
+    const { resultSamples } = this.options;
+    const values =
+      resultSamples === undefined
+        ? Array.from(trace?.values ?? [])
+        : Array.from({ length: resultSamples }, (_, index) => Math.sin(index));
     return {
       format: "heddle-result",
       version: 1,
@@ -108,7 +115,7 @@ export class FakeSession implements SolveSession {
           kind: "point",
           quantity: "Ez",
           unit: "V/m",
-          trace: { startNs: 0, stepNs: stepPs * 1e-3, values: Array.from(trace?.values ?? []) },
+          trace: { startNs: 0, stepNs: stepPs * 1e-3, values },
           spectrum: null,
         },
       ],

@@ -80,6 +80,7 @@ export class SolverLoop {
         break;
       case "pace":
         this.pace.set(message.picosecondsPerSecond, this.doors.now());
+        if (!this.over) this.postActivity();
         break;
       case "edit":
         this.edit(message.requestId, message.document);

@@ -12,35 +12,45 @@ const LONGEST_SLEEP_MS = 200;
 /** On Linux a priority belongs to a thread: solving then gives way to the server's own work. */
 const NICENESS = 5;
 
-function main(): void {
+type Post = (message: FromThread, transfer?: ArrayBuffer[]) => void;
+
+async function main(): Promise<void> {
   const port = parentPort;
   if (port === null) throw new Error("The solver's thread was started as a program of its own.");
-  const task = workerData as SolverTask;
-  const post = (message: FromThread, transfer: ArrayBuffer[] = []): void =>
-    port.postMessage(message, transfer);
+  const post: Post = (message, transfer = []) => port.postMessage(message, transfer);
   if (process.platform === "linux") setPriority(NICENESS);
 
-  const loop = guarded(post, () => open(task, post));
-  if (loop === null) return;
+  // What comes while the section is being opened waits its turn.
+  const early: ToThread[] = [];
+  let hear = (message: ToThread): void => void early.push(message);
+  port.on("message", (message: ToThread) => hear(message));
 
+  const loop = await open(workerData as SolverTask, post);
+  if (loop === null) return;
+  const wake = turning(loop, post);
+  hear = (message) => {
+    guarded(post, () => loop.receive(message));
+    wake();
+  };
+  for (const message of early) hear(message);
+  wake();
+}
+
+/** Turns the loop for as long as it has work; the function given back wakes it from its sleep. */
+function turning(loop: SolverLoop, post: Post): () => void {
   let immediate: NodeJS.Immediate | undefined;
   let timer: NodeJS.Timeout | undefined;
   const turn = (): void => {
     immediate = undefined;
-    const waitMs = guarded(post, () => ({ waitMs: loop.turn() }))?.waitMs ?? null;
+    const waitMs = guarded(post, () => loop.turn());
     if (waitMs === null) return;
     if (waitMs === 0) immediate = setImmediate(turn);
     else timer = setTimeout(turn, Math.min(waitMs, LONGEST_SLEEP_MS));
   };
-  const wake = (): void => {
+  return () => {
     clearTimeout(timer);
     immediate ??= setImmediate(turn);
   };
-  port.on("message", (message: ToThread) => {
-    guarded(post, () => loop.receive(message));
-    wake();
-  });
-  wake();
 }
 
 function read(document: unknown): { scene: Scene; sha256: string } | { problems: Problem[] } {
@@ -49,20 +59,22 @@ function read(document: unknown): { scene: Scene; sha256: string } | { problems:
   return { scene: outcome.scene, sha256: sceneSha256(outcome.scene) };
 }
 
-function open(
-  task: SolverTask,
-  post: (message: FromThread, transfer?: ArrayBuffer[]) => void,
-): SolverLoop | null {
-  const scene = read(task.document);
-  if ("problems" in scene) {
-    post({ kind: "refused", problems: scene.problems });
+/** Null where the run could not be opened; the server has been told why. */
+async function open(task: SolverTask, post: Post): Promise<SolverLoop | null> {
+  try {
+    const found = read(task.document);
+    if ("problems" in found) {
+      post({ kind: "refused", problems: found.problems });
+      return null;
+    }
+    const { scene } = found;
+    const session = await openSession(scene);
+    const now = (): number => performance.now();
+    return new SolverLoop({ session, scene, post, read, encode, now }, task);
+  } catch (error) {
+    post({ kind: "failed", sentence: sentenceFor(error), progress: null });
     return null;
   }
-  const session = openSession(scene.scene);
-  return new SolverLoop(
-    { session, scene: scene.scene, post, read, encode, now: () => performance.now() },
-    task,
-  );
 }
 
 /** Into memory of its own, which travels to the server without a copy. */
@@ -72,8 +84,8 @@ function encode(sample: FieldSample, range: number | null, sequence: number): Ui
   return target;
 }
 
-/** What nobody foresaw ends the run with a sentence and leaves the thread in order. */
-function guarded<T>(post: (message: FromThread) => void, work: () => T): T | null {
+/** What nobody foresaw ends the run with a sentence; the server then ends the thread. */
+function guarded<T>(post: Post, work: () => T): T | null {
   try {
     return work();
   } catch (error) {
@@ -86,7 +98,8 @@ function sentenceFor(error: unknown): string {
   if (error instanceof RangeError && /allocation|array length/i.test(error.message)) {
     return "The server ran out of memory for this run: use larger cells or a smaller section.";
   }
-  return `The solver stopped on a fault of its own (${error instanceof Error ? error.message : String(error)}): please report it with the scene.`;
+  const what = error instanceof Error ? error.message : String(error);
+  return `The solver stopped on a fault of its own (${what}): please report it with the scene.`;
 }
 
-main();
+await main();
