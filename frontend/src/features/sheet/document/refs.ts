@@ -1,0 +1,42 @@
+import type { Patch, Port, Probe, Scene, Source } from "@heddle/kernels/scene";
+
+/** The lists of a scene whose items can be picked on the sheet. Ids are unique within one list only. */
+export const PICKABLE_LISTS = ["paint", "sources", "ports", "probes"] as const;
+export type PickableList = (typeof PICKABLE_LISTS)[number];
+
+/** Names one item on the sheet: its list and its id. */
+export type ItemRef = `${PickableList}:${string}`;
+
+export interface ItemOf {
+  paint: Patch;
+  sources: Source;
+  ports: Port;
+  probes: Probe;
+}
+export type Item = ItemOf[PickableList];
+
+export const makeRef = (list: PickableList, id: string): ItemRef => `${list}:${id}`;
+
+export function splitRef(ref: ItemRef): { list: PickableList; id: string } {
+  const colon = ref.indexOf(":");
+  const name = ref.slice(0, colon);
+  const list = PICKABLE_LISTS.find((candidate) => candidate === name);
+  if (list === undefined) throw new RangeError(`"${ref}" names no list of the scene.`);
+  return { list, id: ref.slice(colon + 1) };
+}
+
+/** The item that `ref` names, or undefined where the scene no longer has it. */
+export function findItem(scene: Scene, ref: ItemRef): Item | undefined {
+  const { list, id } = splitRef(ref);
+  const items: readonly Item[] = scene[list];
+  return items.find((item) => item.id === id);
+}
+
+export const findPatch = (scene: Scene, ref: ItemRef): Patch | undefined => {
+  const { list, id } = splitRef(ref);
+  return list === "paint" ? scene.paint.find((patch) => patch.id === id) : undefined;
+};
+
+/** Every item of the scene, in painting order and then sources, ports, probes. */
+export const allRefs = (scene: Scene): ItemRef[] =>
+  PICKABLE_LISTS.flatMap((list) => scene[list].map((item) => makeRef(list, item.id)));
