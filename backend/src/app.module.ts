@@ -5,7 +5,8 @@ import { BetterAuthModule } from "./auth/better-auth.module.js";
 import { CommonModule } from "./common/common.module.js";
 import type { Config } from "./config/config.js";
 import { ConfigModule } from "./config/config.module.js";
-import type { Database } from "./database/database.js";
+import type { DataFolder } from "./config/data-folder.js";
+import type { OpenDatabase } from "./database/database.js";
 import { DatabaseModule } from "./database/database.module.js";
 import { DemoModule } from "./demo/demo.module.js";
 import { ExamplesModule } from "./examples/examples.module.js";
@@ -19,18 +20,19 @@ import { WorkspacesModule } from "./workspaces/workspaces.module.js";
 /** What is opened before the modules are put together. */
 export interface Foundations {
   config: Config;
-  db: Database;
+  folder: DataFolder;
+  database: OpenDatabase;
   betterAuth: BetterAuth;
 }
 
 @Module({})
 export class AppModule {
-  static of({ config, db, betterAuth }: Foundations): DynamicModule {
+  static of({ config, folder, database, betterAuth }: Foundations): DynamicModule {
     return {
       module: AppModule,
       imports: [
         ConfigModule.of(config),
-        DatabaseModule.of(db),
+        DatabaseModule.of(database, folder),
         BetterAuthModule.of(betterAuth),
         CommonModule,
         AuthModule,

@@ -29,7 +29,7 @@ export async function createApp(config: Config, options: AppOptions = {}): Promi
     try {
       const betterAuth = makeBetterAuth(config, database.db, await readSecret(folder));
       const app = await NestFactory.create<NestExpressApplication>(
-        AppModule.of({ config, db: database.db, betterAuth }),
+        AppModule.of({ config, folder, database, betterAuth }),
         {
           bodyParser: false,
           abortOnError: false,
@@ -45,10 +45,6 @@ export async function createApp(config: Config, options: AppOptions = {}): Promi
       app.use("/api", jsonBody);
       app.use("/api/openapi.json", serveDescription(app));
       servePages(app);
-      closeWith(app, async () => {
-        await database.close();
-        await folder.release();
-      });
       return app;
     } catch (error) {
       await database.close();
@@ -58,16 +54,4 @@ export async function createApp(config: Config, options: AppOptions = {}): Promi
     await folder.release();
     throw error;
   }
-}
-
-/** Stops accepting first, lets every module end its work, then runs `last`; once, however often it is asked. */
-function closeWith(app: NestExpressApplication, last: () => Promise<void>): void {
-  const close = app.close.bind(app);
-  let closing: Promise<void> | undefined;
-  app.close = () => {
-    const server = app.getHttpServer();
-    if (server.listening) server.close();
-    closing ??= close().finally(last);
-    return closing;
-  };
 }

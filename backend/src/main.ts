@@ -33,6 +33,8 @@ async function start(config: Config): Promise<void> {
     // A second signal ends the process at once.
     if (ending) process.exit(EXIT.cannotStart);
     ending = true;
+    // Nothing new comes in while what goes on is brought to its end.
+    app.getHttpServer().close();
     app
       .close()
       .then(() => process.exit(0))

@@ -31,8 +31,14 @@ export async function testConfig(changes: Partial<Config> = {}): Promise<Config>
   };
 }
 
-/** @param changes of the settings; everything else is the default of an installation on this machine */
-export async function startTestApp(changes: Partial<Config> = {}): Promise<TestApp> {
+/**
+ * @param changes of the settings; everything else is the default of an installation on this machine
+ * @param options keepData: leave the data folder when it closes, to start on it again
+ */
+export async function startTestApp(
+  changes: Partial<Config> = {},
+  { keepData = false }: { keepData?: boolean } = {},
+): Promise<TestApp> {
   const config = await testConfig(changes);
   const app = await createApp(config, { logger: false });
   await app.listen(config.port, config.host);
@@ -49,7 +55,7 @@ export async function startTestApp(changes: Partial<Config> = {}): Promise<TestA
     },
     close: async () => {
       await app.close();
-      await rm(config.dataDir, { recursive: true, force: true });
+      if (!keepData) await rm(config.dataDir, { recursive: true, force: true });
     },
   };
 }
