@@ -1,21 +1,25 @@
-import { SceneDto, StaleRevisionDto } from "@heddle/backend/contract";
+import type { SceneDto } from "@heddle/backend/contract";
+import { StaleRevisionDto } from "@heddle/backend/contract";
 import type { Scene } from "@heddle/kernels/scene";
-import { useQuery } from "@tanstack/react-query";
-import { ApiError, request, sentenceOf } from "../../lib/api";
+import { $api, api, ApiError, sentenceOf } from "../../lib/api";
 import type { SaveOutcome } from "./autosave";
-
-export const sceneKey = (sceneId: string) => ["scene", sceneId] as const;
 
 /** The scene as it stood when the page was opened; the editor and autosave carry on from there. */
 export const useScene = (sceneId: string) =>
-  useQuery({
-    queryKey: sceneKey(sceneId),
-    queryFn: ({ signal }) => request("GET", `/api/scenes/${sceneId}`, { answer: SceneDto, signal }),
-    staleTime: Number.POSITIVE_INFINITY,
-    gcTime: 0,
-    refetchOnWindowFocus: false,
-    refetchOnReconnect: false,
-  });
+  $api.useQuery(
+    "get",
+    "/api/scenes/{sceneId}",
+    { params: { path: { sceneId } } },
+    {
+      staleTime: Number.POSITIVE_INFINITY,
+      gcTime: 0,
+      refetchOnWindowFocus: false,
+      refetchOnReconnect: false,
+    },
+  );
+
+const at = (sceneId: string) => ({ params: { path: { sceneId } } });
+const NO_BODY = "The server answered without a body.";
 
 /** Never rejects: every way a save can end is an outcome. */
 export async function saveScene(
@@ -24,11 +28,11 @@ export async function saveScene(
   baseRevision: number,
 ): Promise<SaveOutcome> {
   try {
-    const body = { baseRevision, document };
-    return {
-      kind: "saved",
-      scene: await request("PUT", `/api/scenes/${sceneId}`, { body, answer: SceneDto }),
-    };
+    const { data } = await api.PUT("/api/scenes/{sceneId}", {
+      ...at(sceneId),
+      body: { baseRevision, document },
+    });
+    return data === undefined ? { kind: "offline", sentence: NO_BODY } : { kind: "saved", scene: data };
   } catch (error) {
     if (error instanceof ApiError && error.status === 409) {
       const stale = StaleRevisionDto.safeParse(error.body);
@@ -41,5 +45,12 @@ export async function saveScene(
   }
 }
 
-export const copyScene = (sceneId: string, name: string, document: Scene): Promise<SceneDto> =>
-  request("POST", `/api/scenes/${sceneId}/copies`, { body: { name, document }, answer: SceneDto });
+/** @throws {ApiError} */
+export async function copyScene(sceneId: string, name: string, document: Scene): Promise<SceneDto> {
+  const { data } = await api.POST("/api/scenes/{sceneId}/copies", {
+    ...at(sceneId),
+    body: { name, document },
+  });
+  if (data === undefined) throw new Error(NO_BODY);
+  return data;
+}

@@ -103,31 +103,31 @@ export function FieldKey(props: FieldKeyProps) {
         >
           {locked ? "locked" : "auto"}
         </button>
-        {locked && (
-          <>
-            <button
-              type="button"
-              className={styles.small}
-              aria-label="Smaller range: weaker fields become visible"
-              onClick={() => {
-                onRange(nextRange(range, -1));
-              }}
-            >
-              −
-            </button>
-            <button
-              type="button"
-              className={styles.small}
-              aria-label="Larger range"
-              onClick={() => {
-                onRange(nextRange(range, 1));
-              }}
-            >
-              +
-            </button>
-          </>
-        )}
       </div>
+      {locked && (
+        <div className={styles.row}>
+          <button
+            type="button"
+            className={styles.small}
+            aria-label="Smaller range: weaker fields become visible"
+            onClick={() => {
+              onRange(nextRange(range, -1));
+            }}
+          >
+            −
+          </button>
+          <button
+            type="button"
+            className={styles.small}
+            aria-label="Larger range"
+            onClick={() => {
+              onRange(nextRange(range, 1));
+            }}
+          >
+            +
+          </button>
+        </div>
+      )}
       <button
         type="button"
         className={styles.small}

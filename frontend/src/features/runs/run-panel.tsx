@@ -4,17 +4,20 @@ import Slider from "@mui/material/Slider";
 import { useEffect, useState } from "react";
 import { PACE_POSITIONS, paceAt, paceWords, positionOf } from "./pace";
 import styles from "./runs.module.css";
-import { figuresOf, stateWords } from "./run-words";
+import type { RunCost } from "./run-words";
+import { costFigures, figuresOf, stateWords } from "./run-words";
 import type { RunHandle } from "./use-run";
 
 export interface RunPanelProps {
   handle: RunHandle;
   /** Null where the person may run; else why not, as a sentence. */
   refusal: string | null;
+  /** What a run of the drawing would cost; null while it cannot be told. */
+  cost: RunCost | null;
 }
 
 /** Run, pause, step, stop, pace, and how far the run is. */
-export function RunPanel({ handle, refusal }: RunPanelProps) {
+export function RunPanel({ handle, refusal, cost }: RunPanelProps) {
   const { run, busy, connection, notice } = handle;
   return (
     <section className={styles.panel} aria-label="Run">
@@ -66,7 +69,19 @@ export function RunPanel({ handle, refusal }: RunPanelProps) {
         </div>
       )}
       {run === null ? (
-        <p className={styles.quiet}>{handle.loading ? "Looking for the last run…" : "Not run yet."}</p>
+        <>
+          <p className={styles.quiet}>{handle.loading ? "Looking for the last run…" : "Not run yet."}</p>
+          {cost !== null && (
+            <dl className={styles.figures}>
+              {costFigures(cost).map(({ name, value }) => (
+                <div key={name}>
+                  <dt>{name}</dt>
+                  <dd>{value}</dd>
+                </div>
+              ))}
+            </dl>
+          )}
+        </>
       ) : (
         <dl className={styles.figures}>
           <div>
@@ -96,6 +111,7 @@ function Buttons({ handle }: { handle: RunHandle }) {
       {!live && (
         <Button
           variant="contained"
+          color="primary"
           size="small"
           disabled={busy}
           title="Saves, then runs (Ctrl+Enter)"
@@ -110,6 +126,7 @@ function Buttons({ handle }: { handle: RunHandle }) {
       {live && (
         <Button
           variant="contained"
+          color="primary"
           size="small"
           disabled={busy || run.state === "queued"}
           aria-keyshortcuts="Control+Enter"

@@ -39,7 +39,8 @@ export interface StreamListeners {
   onTraces: (runId: string, traces: TraceChunks) => boolean;
   onState: (run: RunDto) => void;
   onConnection: (connection: Connection) => void;
-  onRefused: (error: ErrorDto) => void;
+  /** `during` tells what was refused: an ended run has no field any more, but still traces and a result. */
+  onRefused: (error: ErrorDto, during: "join" | "view" | "frame") => void;
 }
 
 export interface RunStream {
@@ -51,6 +52,10 @@ export interface RunStream {
 }
 
 const LOST = "The live stream is lost; trying to reach the server again. The run goes on without this page.";
+const UNREADABLE: ErrorDto = {
+  code: "bad-request",
+  message: "The server sends frames that this page cannot read. Reload the page to get its newer version.",
+};
 /** After the server itself hung up or refused, socket.io does not try again by itself. */
 const RETRY_MS = 2_000;
 
@@ -77,7 +82,7 @@ export function createRunStream(
   const sendView = (): void => {
     if (!joined || watched === null || wantedView === null || !socket.connected) return;
     socket.emit("view", { ...wantedView, runId: watched }, (answer) => {
-      if (!answer.ok) listeners.onRefused(answer.error);
+      if (!answer.ok) listeners.onRefused(answer.error, "view");
     });
   };
 
@@ -94,7 +99,7 @@ export function createRunStream(
         return;
       }
       if (!answer.ok) {
-        listeners.onRefused(answer.error);
+        listeners.onRefused(answer.error, "join");
         return;
       }
       joined = true;
@@ -129,11 +134,7 @@ export function createRunStream(
       // A browser receives binary as an ArrayBuffer, whatever the other end sent.
       frame = decode(message instanceof Uint8Array ? message : new Uint8Array(message));
     } catch {
-      listeners.onRefused({
-        code: "bad-request",
-        message:
-          "The server sends frames that this page cannot read. Reload the page to get its newer version.",
-      });
+      listeners.onRefused(UNREADABLE, "frame");
       return;
     }
     listeners.onFrame(frame, () => {

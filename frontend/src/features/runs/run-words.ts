@@ -69,3 +69,18 @@ export function figuresOf(run: RunDto): Figure[] {
     figures.push({ name: "Decay", value: `${formatFixed(-Math.abs(run.decayDb), 1)}${THIN_SPACE}dB` });
   return figures;
 }
+
+/** What a run costs, known before it starts. */
+export interface RunCost {
+  nx: number;
+  ny: number;
+  steps: number;
+  memoryBytes: number;
+}
+
+/** Cells, steps and memory of a run to come. */
+export const costFigures = (cost: RunCost): Figure[] => [
+  { name: "Cells", value: `${count(cost.nx)} × ${count(cost.ny)}` },
+  { name: "Steps, at most", value: count(cost.steps) },
+  { name: "Memory", value: formatSi(cost.memoryBytes, "B", 2) },
+];

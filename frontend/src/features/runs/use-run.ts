@@ -44,6 +44,8 @@ export interface RunHandle {
   runs: readonly RunDto[];
   loading: boolean;
   connection: Connection;
+  /** The run is over and its field is no longer in the server's memory. */
+  fieldGone: boolean;
   /** A command is on its way. */
   busy: boolean;
   notice: RunNotice | null;
@@ -54,7 +56,7 @@ export interface RunHandle {
   command: (command: RunCommand) => void;
   setPace: (pace: number | null) => void;
   /** Gives the drawing as it stands to the run, if one is under way. The latest wins. */
-  edit: (document: unknown) => void;
+  edit: (document: Record<string, unknown>) => void;
 }
 
 const noticeOf = (error: unknown): RunNotice => ({
@@ -72,6 +74,7 @@ export function useRun({ sceneId, sinks, view, save }: UseRunOptions): RunHandle
   const [connection, setConnection] = useState<Connection>({ kind: "connecting" });
   const [notice, setNotice] = useState<RunNotice | null>(null);
   const [busy, setBusy] = useState(false);
+  const [fieldGone, setFieldGone] = useState(false);
   const [chosenPace, setChosenPace] = useState<number | null>(null);
   const stream = useRef<RunStream | null>(null);
   const wanted = useRef({ runId, view });
@@ -87,7 +90,12 @@ export function useRun({ sceneId, sinks, view, save }: UseRunOptions): RunHandle
         tellRun(client, told);
       },
       onConnection: setConnection,
-      onRefused: (error) => {
+      onRefused: (error, during) => {
+        // An ended run keeps no field for long; the sheet then says so itself.
+        if (during === "view" && error.code === "wrong-state") {
+          setFieldGone(true);
+          return;
+        }
         setNotice({ sentence: error.message, problems: error.problems ?? [] });
       },
     });
@@ -102,6 +110,7 @@ export function useRun({ sceneId, sinks, view, save }: UseRunOptions): RunHandle
 
   useEffect(() => {
     wanted.current = { runId, view };
+    setFieldGone(false);
     stream.current?.view(view);
     stream.current?.watch(runId);
   }, [runId, view]);
@@ -156,7 +165,7 @@ export function useRun({ sceneId, sinks, view, save }: UseRunOptions): RunHandle
 
   const edits = useMemo(
     () =>
-      createLatestWins<{ runId: string; document: unknown }>(async (edit) => {
+      createLatestWins<{ runId: string; document: Record<string, unknown> }>(async (edit) => {
         try {
           await editRun(edit.runId, edit.document);
           setNotice(null);
@@ -171,7 +180,7 @@ export function useRun({ sceneId, sinks, view, save }: UseRunOptions): RunHandle
   useEffect(() => edits.cancel, [edits]);
 
   const edit = useCallback(
-    (document: unknown) => {
+    (document: Record<string, unknown>) => {
       if (live && runId !== null) edits.push({ runId, document });
     },
     [live, runId, edits],
@@ -182,6 +191,7 @@ export function useRun({ sceneId, sinks, view, save }: UseRunOptions): RunHandle
     runs,
     loading: query.isPending,
     connection,
+    fieldGone,
     busy,
     notice: notice ?? (query.isError ? noticeOf(query.error) : null),
     dismissNotice: useCallback(() => {

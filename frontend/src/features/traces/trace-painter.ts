@@ -136,10 +136,11 @@ export function paintTraces(context: CanvasRenderingContext2D, picture: TracePic
   const { traces, widthPx, heightPx, momentNs, hoverNs, tokens } = picture;
   context.clearRect(0, 0, widthPx, heightPx);
   paintAxis(context, picture);
+  // Under the rows, whose labels carry a halo.
+  if (momentNs !== null) paintCursor(context, picture, momentNs, tokens.accent, 1.5);
+  if (hoverNs !== null) paintCursor(context, picture, hoverNs, tokens.soft, 0.8);
   const rowHeight = (heightPx - TRACE_LAYOUT.axisHeight - TRACE_LAYOUT.top) / Math.max(1, traces.length);
   traces.forEach((trace, index) => {
     paintRow(context, trace, picture, TRACE_LAYOUT.top + index * rowHeight, rowHeight);
   });
-  if (momentNs !== null) paintCursor(context, picture, momentNs, tokens.accent, 1.5);
-  if (hoverNs !== null) paintCursor(context, picture, hoverNs, tokens.soft, 0.8);
 }

@@ -1,21 +1,21 @@
-import type { RunCommand } from "@heddle/backend/contract";
-import { isOver, LiveEditDto, RunDto } from "@heddle/backend/contract";
+import type { RunCommand, RunDto } from "@heddle/backend/contract";
+import { isOver } from "@heddle/backend/contract";
 import type { SolveResult } from "@heddle/kernels/scene";
 import { resultSchema } from "@heddle/kernels/scene";
 import type { QueryClient } from "@tanstack/react-query";
 import { useQuery } from "@tanstack/react-query";
-import { z } from "zod";
-import { request } from "../../../lib/api";
+import { api, request } from "../../../lib/api";
 
 export const runsKey = (sceneId: string) => ["runs", sceneId] as const;
 
-const RunList = z.array(RunDto);
-
 /** The scene's runs, newest first; the stream keeps the watched one fresh. */
 export const useRuns = (sceneId: string) =>
-  useQuery({
+  useQuery<RunDto[]>({
     queryKey: runsKey(sceneId),
-    queryFn: ({ signal }) => request("GET", `/api/scenes/${sceneId}/runs`, { answer: RunList, signal }),
+    queryFn: async ({ signal }) => {
+      const { data } = await api.GET("/api/scenes/{sceneId}/runs", { params: { path: { sceneId } }, signal });
+      return data ?? [];
+    },
   });
 
 /** The result document of a run that has one. It never changes, so it is asked for once. */
@@ -30,16 +30,38 @@ export const useResult = (run: RunDto | null) => {
   });
 };
 
-export const startRun = (sceneId: string, body: { revision: number; paused: boolean }): Promise<RunDto> =>
-  request("POST", `/api/scenes/${sceneId}/runs`, { body, answer: RunDto });
+/** @throws {ApiError} */
+export async function startRun(
+  sceneId: string,
+  body: { revision: number; paused: boolean },
+): Promise<RunDto> {
+  const { data } = await api.POST("/api/scenes/{sceneId}/runs", { params: { path: { sceneId } }, body });
+  return present(data);
+}
 
-export const commandRun = (runId: string, command: RunCommand): Promise<RunDto> =>
-  request("POST", `/api/runs/${runId}/commands`, { body: command, answer: RunDto });
+/** @throws {ApiError} */
+export async function commandRun(runId: string, command: RunCommand): Promise<RunDto> {
+  const { data } = await api.POST("/api/runs/{runId}/commands", {
+    params: { path: { runId } },
+    body: command,
+  });
+  return present(data);
+}
 
-export const editRun = (runId: string, document: unknown): Promise<LiveEditDto> =>
-  request("POST", `/api/runs/${runId}/edits`, { body: { document }, answer: LiveEditDto });
+/** @throws {ApiError} */
+export async function editRun(runId: string, document: Record<string, unknown>): Promise<{ step: number }> {
+  const { data } = await api.POST("/api/runs/{runId}/edits", {
+    params: { path: { runId } },
+    body: { document },
+  });
+  return present(data);
+}
 
-type LiveEditDto = z.infer<typeof LiveEditDto>;
+/** The client throws for every refusal, so an answer without a body is the server's fault. */
+function present<T>(data: T | undefined): T {
+  if (data === undefined) throw new Error("The server answered without a body.");
+  return data;
+}
 
 /**
  * Which of two accounts of one run is newer: answers to commands and events of the stream overtake each other, and a
