@@ -7,7 +7,7 @@ import { PageHeader } from "../components/page-header";
 import { Refusal } from "../components/refusal";
 import { ExampleCards, useExamples } from "../features/gallery";
 import { AddToProjectDialog, NewProjectDialog } from "../features/projects";
-import { thumb } from "./thumb";
+import { thumb } from "./drawings";
 
 /** The examples that come with the product. */
 export function GalleryPage() {

@@ -10,6 +10,8 @@ import { useMay } from "../hooks/session";
 import { frequency, readNumber } from "../lib/figures";
 import { counted } from "../lib/words";
 
+import { swatch } from "./drawings";
+
 type Open = { what: "new" } | { what: "edit" | "delete"; entry: LibraryMedium } | null;
 
 /** The workspace's library of media and what they mean at a frequency. */
@@ -67,6 +69,7 @@ export function MediaPage() {
           media={media.data}
           gigahertz={gigahertz}
           search={search}
+          swatch={swatch}
           empty={
             mayEdit
               ? "No media yet. Scenes always have air and a perfect conductor; add what else you paint with."
@@ -81,6 +84,7 @@ export function MediaPage() {
           entry={open.what === "edit" ? open.entry : null}
           takenIds={new Set(["air", "pec", ...(media.data ?? []).map(({ medium }) => medium.id)])}
           gigahertz={gigahertz}
+          swatch={swatch}
           onClose={close}
         />
       ) : null}

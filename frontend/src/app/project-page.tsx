@@ -25,7 +25,7 @@ import { whyNot } from "../lib/why-not";
 import { counted } from "../lib/words";
 import { NotFoundPage } from "./not-found-page";
 import "./project-page.css";
-import { thumb } from "./thumb";
+import { thumb } from "./drawings";
 
 /** One project: its scenes as small drawings, its people, what happened. */
 export function ProjectPage() {

@@ -16,7 +16,7 @@ import {
 } from "../features/projects";
 import { useMay } from "../hooks/session";
 import { counted } from "../lib/words";
-import { thumb } from "./thumb";
+import { thumb } from "./drawings";
 
 type Open = { what: "new" } | { what: "rename" | "delete"; project: ProjectDto } | null;
 

@@ -40,8 +40,8 @@ export function SignInPage() {
         <footer>
           <dl>
             <div>
-              <dt>Drawing</dt>
-              <dd>sign-in sheet</dd>
+              <dt>Server</dt>
+              <dd>{window.location.host}</dd>
             </div>
             <div>
               <dt>Version</dt>

@@ -13,7 +13,7 @@ export const components: Components<Theme> = {
     styleOverrides: {
       root: {
         minWidth: 0,
-        minHeight: 30,
+        minHeight: 32,
         padding: "4px 12px",
         borderRadius: "var(--corner)",
         "&.Mui-disabled": { color: "var(--soft)" },
@@ -109,7 +109,11 @@ export const components: Components<Theme> = {
         "&.Mui-focused .MuiOutlinedInput-notchedOutline": { borderWidth: 2 },
       },
       notchedOutline: { borderColor: "var(--control)" },
-      input: { "&.MuiInputBase-inputSizeSmall": { paddingTop: 7, paddingBottom: 7 } },
+      input: {
+        height: 18,
+        "&.MuiInputBase-inputSizeSmall": { paddingTop: 7, paddingBottom: 7 },
+        "&::placeholder": { color: "var(--soft)", opacity: 1 },
+      },
     },
   },
   MuiInputLabel: {
@@ -123,6 +127,8 @@ export const components: Components<Theme> = {
       },
     },
   },
+  // Nearly every field here is required: what may be left empty says so instead.
+  MuiFormLabel: { styleOverrides: { asterisk: { display: "none" } } },
   MuiFormHelperText: { styleOverrides: { root: { fontSize: 12, marginLeft: 0, lineHeight: 1.35 } } },
   MuiLink: {
     defaultProps: { underline: "hover", color: "inherit" },

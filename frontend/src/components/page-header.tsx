@@ -17,7 +17,7 @@ export interface Crumb {
 }
 
 interface PageHeaderProps {
-  /** From the outermost to the open page. */
+  /** From the outermost to the open page; a page that stands in the header's list needs only its own. */
   crumbs: readonly Crumb[];
   /** What follows the last crumb after a middle dot: "rev 3, saved 14:02". */
   note?: ReactNode;
@@ -32,7 +32,7 @@ export function PageHeader({ crumbs, note, actions }: PageHeaderProps) {
   return (
     <>
       <title>{last === undefined ? "Heddle" : `${last.label} · Heddle`}</title>
-      {slots.crumbs === null
+      {slots.crumbs === null || crumbs.length < 2
         ? null
         : createPortal(
             <>

@@ -1,5 +1,5 @@
 import { useMemo, useState } from "react";
-import { Link, NavLink, Outlet } from "react-router-dom";
+import { Link, NavLink, Outlet, useLocation } from "react-router-dom";
 import { Mark } from "../../components/mark";
 import type { HeaderSlots } from "../../components/page-header";
 import { HeaderSlotsContext } from "../../components/page-header";
@@ -11,6 +11,8 @@ import { SchemeSwitch } from "./scheme-switch";
 export function AppFrame() {
   const [crumbs, setCrumbs] = useState<HTMLElement | null>(null);
   const [actions, setActions] = useState<HTMLElement | null>(null);
+  const { pathname } = useLocation();
+  const isAtProjects = pathname === "/" || /^\/(projects|scenes)\//.test(pathname);
   const slots = useMemo<HeaderSlots>(() => ({ crumbs, actions }), [crumbs, actions]);
   return (
     <div className="frame">
@@ -25,9 +27,13 @@ export function AppFrame() {
         <nav className="frame-crumbs" aria-label="You are here" ref={setCrumbs} />
         <div className="frame-actions" ref={setActions} />
         <nav className="frame-nav" aria-label="Pages">
-          <NavLink to="/" end>
+          <Link
+            to="/"
+            className={isAtProjects ? "active" : undefined}
+            aria-current={pathname === "/" ? "page" : undefined}
+          >
             Projects
-          </NavLink>
+          </Link>
           <NavLink to="/examples">Examples</NavLink>
           <NavLink to="/media">Media</NavLink>
         </nav>

@@ -17,21 +17,24 @@ export function DemoSignIn({ demo, onDone }: { demo: WelcomeDto["demo"]; onDone:
   const signIn = useSignIn();
   const people = [...demo].sort((a, b) => ORDER.indexOf(a.role) - ORDER.indexOf(b.role));
   return (
-    <div style={{ display: "grid", gap: 8 }}>
+    <div style={{ display: "grid", gridTemplateColumns: "1fr 1fr", gap: 8 }}>
       {people.map(({ role, name }) => (
         <Button
           key={role}
           disabled={signIn.isPending}
           onClick={() => signIn.mutate({ demo: role }, { onSuccess: onDone })}
-          sx={{ justifyContent: "flex-start", textAlign: "left", gap: "10px", py: "7px" }}
+          aria-label={`Sign in as the ${role}, ${name}`}
+          sx={{ display: "grid", justifyItems: "start", textAlign: "left", gap: "1px", py: "7px" }}
         >
-          <span style={{ width: 68, flex: "none", textTransform: "capitalize" }}>{role}</span>
-          <span style={{ fontWeight: 400, color: "var(--soft)" }}>
-            {name}, {DOES[role]}
-          </span>
+          <span style={{ textTransform: "capitalize" }}>{role}</span>
+          <span style={{ fontWeight: 400, fontSize: 12, color: "var(--soft)" }}>{DOES[role]}</span>
         </Button>
       ))}
-      {signIn.isError ? <Notice tone="limit">{signInSentence(signIn.error)}</Notice> : null}
+      {signIn.isError ? (
+        <Notice tone="limit" style={{ gridColumn: "1 / -1" }}>
+          {signInSentence(signIn.error)}
+        </Notice>
+      ) : null}
     </div>
   );
 }

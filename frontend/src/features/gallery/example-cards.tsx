@@ -6,7 +6,7 @@ import "./example-cards.css";
 
 interface ExampleCardsProps {
   examples: readonly ExampleDto[] | undefined;
-  thumb: (document: Record<string, unknown>) => ReactNode;
+  thumb: (document: Record<string, unknown>, widthPx: number, heightPx: number) => ReactNode;
   /** Buttons of one example. */
   actions: (example: ExampleDto) => ReactNode;
 }
@@ -26,7 +26,7 @@ export function ExampleCards({ examples, thumb, actions }: ExampleCardsProps) {
     <ul className="example-cards" aria-label="Examples">
       {examples.map((example) => (
         <li key={example.name} className="example-card">
-          <div className="example-picture">{thumb(example.document)}</div>
+          <div className="example-picture">{thumb(example.document, 184, 136)}</div>
           <div className="example-words">
             <h2>{example.title}</h2>
             <p className="example-facts">{exampleFacts(example.document)}</p>

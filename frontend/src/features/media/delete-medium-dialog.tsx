@@ -12,7 +12,7 @@ export function DeleteMediumDialog({ entry, onClose }: { entry: LibraryMedium; o
       pending={remove.isPending}
       error={remove.error}
       onConfirm={() =>
-        remove.mutate({ params: { path: { mediumId: entry.entryId } } }, { onSuccess: onClose })
+        remove.mutate({ params: { path: { mediumId: entry.id } } }, { onSuccess: onClose })
       }
       onClose={onClose}
     >

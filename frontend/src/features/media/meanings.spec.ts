@@ -31,6 +31,9 @@ describe("meanings", () => {
       "0.5\u2009× match",
     );
   });
+  it("puts a metal's impedance under a prefix", () => {
+    expect(impedanceWords(at1GHz({ conductivity: 5.8e7 }))).toBe("8.25 + 8.25j\u2009mΩ");
+  });
   it("writes impedance with its phase where it has one", () => {
     expect(impedanceWords(at1GHz({}))).toBe("377\u2009Ω");
     expect(impedanceWords(at1GHz({ conductivity: 100 }))).toMatch(/^6\.28 \+ 6\.28j\u2009Ω$/);

@@ -3,7 +3,7 @@ import type { MediumFigures } from "@heddle/kernels/media";
 import { mediumFigures } from "@heddle/kernels/media";
 import type { Medium } from "@heddle/kernels/scene";
 import { isPerfect } from "@heddle/kernels/scene";
-import { decibels, figure, formatSi, MINUS, THIN_SPACE } from "../../lib/figures";
+import { decibels, figure, formatSi, MINUS, prefixOf, THIN_SPACE } from "../../lib/figures";
 
 /** The figures at a frequency; null for a perfect conductor, which has no inside. */
 export const figuresOf = (medium: Medium, gigahertz: number): MediumFigures | null =>
@@ -15,8 +15,10 @@ export const attenuationWords = (figures: MediumFigures): string => figure(figur
 
 /** "377 Ω", "12.3 + 12.3j Ω". */
 export function impedanceWords({ impedanceOhm: { re, im } }: MediumFigures): string {
-  if (Math.abs(im) < 5e-4 * Math.abs(re)) return `${figure(re)}${THIN_SPACE}Ω`;
-  return `${figure(re)} ${im < 0 ? MINUS : "+"} ${figure(Math.abs(im))}j${THIN_SPACE}Ω`;
+  if (Math.abs(im) < 5e-4 * Math.abs(re)) return formatSi(re, "Ω");
+  const { prefix, factor } = prefixOf(Math.max(Math.abs(re), Math.abs(im)));
+  const [real, imaginary] = [figure(re / factor), figure(Math.abs(im) / factor)];
+  return `${real} ${im < 0 ? MINUS : "+"} ${imaginary}j${THIN_SPACE}${prefix}Ω`;
 }
 
 export const reflectionWords = (figures: MediumFigures): string =>

@@ -5,14 +5,13 @@ import type { ReactNode } from "react";
 import { useMemo } from "react";
 import type { Column } from "../../components/data-table";
 import { DataTable } from "../../components/data-table";
-import { MediumSwatch } from "../../components/medium-swatch";
 import { MoreMenu } from "../../components/more-menu";
 import { useSession } from "../../hooks/session";
 import { figure } from "../../lib/figures";
 import { whyNot } from "../../lib/why-not";
 import type { MediumFigures } from "@heddle/kernels/media";
 import { counted } from "../../lib/words";
-import type { LibraryMedium } from "./api";
+import type { LibraryMedium, Swatch } from "./api";
 import {
   attenuationWords,
   figuresOf,
@@ -27,6 +26,8 @@ interface MediaTableProps {
   media: readonly LibraryMedium[] | undefined;
   gigahertz: number;
   search: string;
+  /** A small cut of the medium, hatched as on the sheet. */
+  swatch: Swatch;
   empty: ReactNode;
   onOpen: (entry: LibraryMedium) => void;
   onDelete: (entry: LibraryMedium) => void;
@@ -87,7 +88,7 @@ const meaningColumn = (
 });
 
 /** The library with what each medium means at a frequency. */
-export function MediaTable({ media, gigahertz, search, empty, onOpen, onDelete }: MediaTableProps) {
+export function MediaTable({ media, gigahertz, search, swatch, empty, onOpen, onDelete }: MediaTableProps) {
   const { role } = useSession();
   const rows = useMemo(
     () => media?.map((entry): Row => ({ ...entry, figures: figuresOf(entry.medium, gigahertz) })),
@@ -108,7 +109,7 @@ export function MediaTable({ media, gigahertz, search, empty, onOpen, onDelete }
             alignItems: "center",
           }}
         >
-          <MediumSwatch medium={row.medium} />
+          {swatch(row.medium, gigahertz)}
           <div style={{ minWidth: 140 }}>
             <Link
               component="button"
@@ -154,7 +155,7 @@ export function MediaTable({ media, gigahertz, search, empty, onOpen, onDelete }
     <DataTable
       caption="Media"
       rows={rows}
-      rowKey={(row) => row.entryId}
+      rowKey={(row) => row.id}
       columns={columns}
       initialSort={{ key: "name", descending: false }}
       search={search}

@@ -7,11 +7,10 @@ import TextField from "@mui/material/TextField";
 import { isPerfect } from "@heddle/kernels/scene";
 import { mediumFigures } from "@heddle/kernels/media";
 import { useState } from "react";
-import { MediumSwatch } from "../../components/medium-swatch";
 import { Refusal } from "../../components/refusal";
 import { useSession } from "../../hooks/session";
 import { whyNot } from "../../lib/why-not";
-import type { LibraryMedium } from "./api";
+import type { LibraryMedium, Swatch } from "./api";
 import { useCreateMedium, useUpdateMedium } from "./api";
 import { FigureField } from "./figure-field";
 import { FigureList } from "./figure-list";
@@ -25,13 +24,14 @@ interface MediumDialogProps {
   entry: LibraryMedium | null;
   takenIds: ReadonlySet<string>;
   gigahertz: number;
+  swatch: Swatch;
   onClose: () => void;
 }
 
 const isKind = (value: string): value is DraftKind => ["fill", "electric", "magnetic"].includes(value);
 
 /** A medium's figures, with what they mean beside them while they are typed. */
-export function MediumDialog({ entry, takenIds, gigahertz, onClose }: MediumDialogProps) {
+export function MediumDialog({ entry, takenIds, gigahertz, swatch, onClose }: MediumDialogProps) {
   const refused = whyNot(useSession().role, "scene.edit");
   const readOnly = refused !== null;
   const create = useCreateMedium();
@@ -73,11 +73,11 @@ export function MediumDialog({ entry, takenIds, gigahertz, onClose }: MediumDial
           if (medium === null || Object.keys(faults).length > 0 || readOnly) return;
           const body = { medium, source: draft.source.trim() };
           if (entry === null) create.mutate({ body }, { onSuccess: onClose });
-          else update.mutate({ params: { path: { mediumId: entry.entryId } }, body }, { onSuccess: onClose });
+          else update.mutate({ params: { path: { mediumId: entry.id } }, body }, { onSuccess: onClose });
         }}
       >
         <DialogTitle id="medium-title" sx={{ display: "flex", alignItems: "center", gap: "12px" }}>
-          {medium === null ? null : <MediumSwatch medium={medium} width={44} height={26} />}
+          {medium === null ? null : swatch(medium, gigahertz)}
           {entry === null ? "New medium" : entry.medium.name}
         </DialogTitle>
         <DialogContent className="medium-dialog">

@@ -9,7 +9,7 @@ import { StartFrom } from "./start-from";
 
 interface StartProps {
   examples: readonly ExampleDto[] | undefined;
-  thumb: (document: Record<string, unknown>) => ReactNode;
+  thumb: (document: Record<string, unknown>, widthPx: number, heightPx: number) => ReactNode;
   onClose: () => void;
 }
 

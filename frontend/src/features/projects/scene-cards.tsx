@@ -13,7 +13,7 @@ import { saveSceneFile, sceneFileName } from "./scene-file";
 
 interface SceneCardsProps {
   scenes: readonly SceneSummaryDto[] | undefined;
-  thumb: (document: Record<string, unknown>) => ReactNode;
+  thumb: (document: Record<string, unknown>, widthPx: number, heightPx: number) => ReactNode;
   onDelete: (scene: SceneSummaryDto) => void;
 }
 
@@ -33,7 +33,7 @@ export function SceneCards({ scenes, thumb, onDelete }: SceneCardsProps) {
     <ul className="scene-cards" aria-label="Scenes">
       {scenes.map((scene) => (
         <li key={scene.id} className="scene-card">
-          <div className="scene-picture">{thumb(scene.document)}</div>
+          <div className="scene-picture">{thumb(scene.document, 264, 160)}</div>
           <div className="scene-block">
             <h3>
               <Link to={`/scenes/${scene.id}`}>{scene.name}</Link>

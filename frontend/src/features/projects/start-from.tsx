@@ -10,7 +10,7 @@ interface StartFromProps {
   /** Name of the chosen example; null for an empty sheet. */
   chosen: string | null;
   onChoose: (example: string | null) => void;
-  thumb: (document: Record<string, unknown>) => ReactNode;
+  thumb: (document: Record<string, unknown>, widthPx: number, heightPx: number) => ReactNode;
 }
 
 /** What something new starts with: an empty sheet or one of the examples, each as a small drawing. */
@@ -28,7 +28,7 @@ export function StartFrom({ examples, chosen, onChoose, thumb }: StartFromProps)
       <legend className="label">Starts with</legend>
       <div className="start-choices">
         {choice(null, "An empty sheet", null)}
-        {examples?.map((example) => choice(example.name, example.title, thumb(example.document)))}
+        {examples?.map((example) => choice(example.name, example.title, thumb(example.document, 132, 80)))}
         {examples === undefined
           ? [0, 1, 2].map((key) => <Skeleton key={key} variant="rectangular" sx={{ height: 132 }} />)
           : null}
