@@ -7,6 +7,9 @@ import { PATHS } from "../config/paths.js";
 
 const CONTENT_SECURITY_POLICY = [
   "default-src 'self'",
+  // Scripts come from this origin alone. The field's drawing (regl) and array views (ndarray) compile small functions
+  // of their own from text, which a browser counts as evaluation.
+  "script-src 'self' 'unsafe-eval'",
   // The style engine of the pages writes its rules into style elements.
   "style-src 'self' 'unsafe-inline'",
   "img-src 'self' data: blob:",
