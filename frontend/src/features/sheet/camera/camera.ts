@@ -26,7 +26,9 @@ export function fitBox(box: BoxMm, size: { widthPx: number; heightPx: number }, 
     pxPerMm,
     originXPx: insets.left + free.width / 2 - ((box.left + box.right) / 2) * pxPerMm,
     originYPx: insets.top + free.height / 2 + ((box.bottom + box.top) / 2) * pxPerMm,
-    ...size,
+    // Named one by one: a caller may give a whole view as the size.
+    widthPx: size.widthPx,
+    heightPx: size.heightPx,
   };
 }
 
