@@ -1,13 +1,7 @@
-import {
-  isPerfect,
-  MAXIMA,
-  type Medium,
-  type Scene,
-  VACUUM_PERMEABILITY,
-  VACUUM_PERMITTIVITY,
-} from "@heddle/kernels/scene";
+import { isPerfect, MAXIMA, type Medium, type Scene } from "@heddle/kernels/scene";
 import { useState } from "react";
 import { idFromName } from "../document/edits";
+import { matchingMagneticLoss } from "./matching";
 import { ChoiceField, FieldGrid, NumberField, TextEntry } from "./fields";
 
 type Kind = "fill" | "electric" | "magnetic";
@@ -37,15 +31,6 @@ const draftOf = (medium: Medium | null): Draft => ({
       }
     : {}),
 });
-
-/** σ* that matches σ: σ* /μ = σ/ε, so that waves enter without reflection at normal incidence. */
-export const matchingMagneticLoss = (draft: {
-  conductivity: number;
-  relativePermittivity: number;
-  relativePermeability: number;
-}): number =>
-  (draft.conductivity * draft.relativePermeability * VACUUM_PERMEABILITY) /
-  (draft.relativePermittivity * VACUUM_PERMITTIVITY);
 
 const atLeastOne = (value: number): string | null =>
   value >= 1 && value <= 1e6 ? null : "Give a number from 1 to 1 000 000.";

@@ -38,11 +38,13 @@ const PROBE: MarkKind = {
   moveLabel: "Move the probe",
   refusal: () => null,
   add: (scene, [x, y]) => {
-    const id = freeId(scene.probes, "p").replace("p-", "p");
-    const free = scene.probes.some((probe) => probe.id === id) ? freeId(scene.probes, "probe") : id;
+    const taken = new Set(scene.probes.map((probe) => probe.id));
+    let number = scene.probes.length + 1;
+    while (taken.has(`p${String(number)}`)) number += 1;
+    const id = `p${String(number)}`;
     const field = mainComponent(scene.polarization);
-    const probe = { kind: "point", id: free, name: free.toUpperCase(), x, y, field } as const;
-    return { scene: addProbe(scene, probe), ref: makeRef("probes", free) };
+    const probe = { kind: "point", id, name: id.toUpperCase(), x, y, field } as const;
+    return { scene: addProbe(scene, probe), ref: makeRef("probes", id) };
   },
 };
 
