@@ -6,4 +6,5 @@ export type { Interval } from "./cuts.js";
 export { CHORD_TOLERANCE } from "./edge-table.js";
 export type { PaintedArea, Raster } from "./edge-table.js";
 export { materialFraction } from "./fractions.js";
+export { outlineOf } from "./outline.js";
 export type { AreaShape, Point } from "./outline.js";
