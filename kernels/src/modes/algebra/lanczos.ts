@@ -1,0 +1,225 @@
+/**
+ * Shift-and-invert Lanczos in pairs, with full reorthogonalization, for K x = λ M x with K and M symmetric, M positive definite
+ * (T. Ericsson, A. Ruhe, Math. Comput. 35 (1980) 1251; in blocks: G. H. Golub, R. Underwood, in Mathematical Software III, 1977).
+ */
+import { symmetricEigen } from "./symmetric-eigen.js";
+
+export interface ShiftedOperator {
+  unknowns: number;
+  /** out = M x. */
+  multiplyMass: (x: Float64Array, out: Float64Array) => void;
+  /** Solves (K − shift·M) y = x for two interleaved vectors, in place. */
+  solvePair: (x: Float64Array) => void;
+  shift: number;
+}
+
+export interface Eigenpair {
+  value: number;
+  /** x with xᵀ M x = 1. */
+  vector: Float64Array;
+}
+
+/** A pair has settled when its residual is this share of its own 1/(λ − shift). */
+const SETTLED = 1e-8;
+const LARGEST_BASIS = 400;
+const CHECK_EVERY = 4;
+/** What is left of a vector, after taking out the basis, when it lay in it. */
+const DEPENDENT = 1e-10;
+
+function dot(a: Float64Array, b: Float64Array): number {
+  let s0 = 0;
+  let s1 = 0;
+  let s2 = 0;
+  let s3 = 0;
+  const n = a.length & ~3;
+  for (let i = 0; i < n; i += 4) {
+    s0 += a[i] * b[i];
+    s1 += a[i + 1] * b[i + 1];
+    s2 += a[i + 2] * b[i + 2];
+    s3 += a[i + 3] * b[i + 3];
+  }
+  for (let i = n; i < a.length; i += 1) s0 += a[i] * b[i];
+  return s0 + s1 + s2 + s3;
+}
+
+function subtract(x: Float64Array, c: number, q: Float64Array): void {
+  for (let i = 0; i < x.length; i += 1) x[i] -= c * q[i];
+}
+
+/** Numbers between −½ and ½ that are the same in every run (a linear congruential generator). */
+function fillAtRandom(x: Float64Array, seed: number): void {
+  let state = seed >>> 0;
+  for (let i = 0; i < x.length; i += 1) {
+    state = (Math.imul(state, 1664525) + 1013904223) >>> 0;
+    x[i] = state / 2 ** 32 - 0.5;
+  }
+}
+
+class Basis {
+  readonly vectors: Float64Array[] = [];
+  private readonly massTimes: Float64Array;
+  private seed: number;
+
+  constructor(
+    private readonly operator: ShiftedOperator,
+    private readonly locked: readonly Float64Array[],
+    seed: number,
+  ) {
+    this.massTimes = new Float64Array(operator.unknowns);
+    this.seed = seed;
+  }
+
+  /** Takes locked and basis vectors out of x, twice; returns the coefficients on the basis and what is left of x's norm. */
+  orthogonalize(x: Float64Array): { coefficients: Float64Array; norm: number; before: number } {
+    const { operator, massTimes, vectors, locked } = this;
+    const coefficients = new Float64Array(vectors.length);
+    operator.multiplyMass(x, massTimes);
+    const before = Math.sqrt(Math.max(0, dot(x, massTimes)));
+    for (let pass = 0; pass < 2; pass += 1) {
+      if (pass > 0) operator.multiplyMass(x, massTimes);
+      for (const q of locked) subtract(x, dot(q, massTimes), q);
+      vectors.forEach((q, n) => {
+        const c = dot(q, massTimes);
+        coefficients[n] += c;
+        subtract(x, c, q);
+      });
+    }
+    operator.multiplyMass(x, massTimes);
+    return { coefficients, norm: Math.sqrt(Math.max(0, dot(x, massTimes))), before };
+  }
+
+  /** Adds x, of the given norm and orthogonal to all others. */
+  push(x: Float64Array, norm: number): void {
+    for (let i = 0; i < x.length; i += 1) x[i] /= norm;
+    this.vectors.push(x);
+  }
+
+  /** Adds a vector at random; false where the space is used up. */
+  pushRandom(): boolean {
+    for (let attempt = 0; attempt < 3; attempt += 1) {
+      const x = new Float64Array(this.operator.unknowns);
+      this.seed += 1;
+      fillAtRandom(x, this.seed * 2654435761);
+      const { norm, before } = this.orthogonalize(x);
+      if (norm > DEPENDENT * before) {
+        this.push(x, norm);
+        return true;
+      }
+    }
+    return false;
+  }
+}
+
+/**
+ * The `wanted` eigenvalues above and nearest to the shift, rising, in the M-orthogonal complement of `locked`; fewer where the
+ * space has fewer. A generator: it yields after every block, so that the caller may show progress or stop.
+ */
+export function* lowestEigenpairs(
+  operator: ShiftedOperator,
+  wanted: number,
+  locked: readonly Float64Array[],
+  seed: number,
+): Generator<number, Eigenpair[]> {
+  const { unknowns, shift } = operator;
+  const room = Math.min(unknowns - locked.length, LARGEST_BASIS);
+  if (room <= 0 || wanted <= 0) return [];
+  const basis = new Basis(operator, locked, seed);
+  const projected: Float64Array[] = [];
+  const pair = new Float64Array(2 * unknowns);
+  const image = new Float64Array(unknowns);
+  const q0 = basis.pushRandom();
+  if (!q0) return [];
+  if (room > 1) basis.pushRandom();
+  let done = 0;
+  for (let block = 1; ; block += 1) {
+    const { vectors } = basis;
+    // The newest vectors that the operator has not met yet: two, or one at the end of a small space.
+    const fresh = vectors.slice(done, done + 2);
+    for (let n = 0; n < 2; n += 1) {
+      const q = fresh.at(n);
+      if (q) {
+        operator.multiplyMass(q, image);
+        for (let i = 0; i < unknowns; i += 1) pair[2 * i + n] = image[i];
+      } else for (let i = 0; i < unknowns; i += 1) pair[2 * i + n] = 0;
+    }
+    operator.solvePair(pair);
+    const coupling: Float64Array[] = [];
+    const known = vectors.length;
+    fresh.forEach((_, n) => {
+      const x = new Float64Array(unknowns);
+      for (let i = 0; i < unknowns; i += 1) x[i] = pair[2 * i + n];
+      const { coefficients, norm, before } = basis.orthogonalize(x);
+      const row = new Float64Array(known + 2);
+      row.set(coefficients);
+      coupling.push(row);
+      if (vectors.length < room && norm > DEPENDENT * before) {
+        row[vectors.length] = norm;
+        basis.push(x, norm);
+      }
+    });
+    done += fresh.length;
+    projected.push(...coupling);
+    const spent = done >= vectors.length;
+    if (spent && vectors.length < room && vectors.length < unknowns - locked.length) {
+      // An invariant subspace: what is left is looked for from a new start.
+      basis.pushRandom();
+    }
+    const last = done >= room || done >= vectors.length;
+    if (last || block % CHECK_EVERY === 0) {
+      const found = settled(projected, done, vectors, wanted, last);
+      if (found !== null) {
+        return found
+          .map(({ theta, weights }) => ({
+            value: shift + 1 / theta,
+            vector: combine(vectors, weights, unknowns),
+          }))
+          .sort((p, q) => p.value - q.value);
+      }
+      if (last) throw new Error("The eigenvalues did not settle.");
+    }
+    yield done;
+  }
+}
+
+/** Ritz pairs of the first `done` vectors, where the wanted ones have settled. */
+function settled(
+  projected: readonly Float64Array[],
+  done: number,
+  vectors: readonly Float64Array[],
+  wanted: number,
+  last: boolean,
+): { theta: number; weights: Float64Array }[] | null {
+  const matrix = new Float64Array(done * done);
+  for (let i = 0; i < done; i += 1) {
+    for (let j = 0; j <= i; j += 1) {
+      // Row i holds the components of A q_i on the vectors known then; the matrix is symmetric.
+      const value = projected[i][j] ?? 0;
+      matrix[i * done + j] = value;
+      matrix[j * done + i] = value;
+    }
+  }
+  const { values, vectors: ritz } = symmetricEigen(matrix, done);
+  const found: { theta: number; weights: Float64Array }[] = [];
+  for (let n = 0; n < done && found.length < wanted && values[n] > 0; n += 1) {
+    // A q_i reaches beyond the first `done` vectors by its components on the newest ones.
+    let residual = 0;
+    for (let beyond = done; beyond < vectors.length; beyond += 1) {
+      let component = 0;
+      for (let i = Math.max(0, done - 2); i < done; i += 1)
+        component += (projected[i][beyond] ?? 0) * ritz[n][i];
+      residual += component * component;
+    }
+    if (!last && Math.sqrt(residual) > SETTLED * values[n]) return null;
+    if (Math.sqrt(residual) > 1e3 * SETTLED * values[n]) return null;
+    found.push({ theta: values[n], weights: ritz[n] });
+  }
+  return last || found.length === wanted ? found : null;
+}
+
+function combine(vectors: readonly Float64Array[], weights: Float64Array, unknowns: number): Float64Array {
+  const x = new Float64Array(unknowns);
+  weights.forEach((weight, n) => {
+    subtract(x, -weight, vectors[n]);
+  });
+  return x;
+}
