@@ -5,11 +5,11 @@ import { PATHS } from "./paths.js";
 
 export const DEFAULT_PORT = 4680;
 
-/** Where the tables live. `memory` is for tests: it is gone with the process. */
+/** Where the tables live. `memory` is for tests and gone with the process; it may start from a dump in a file. */
 export type DatabaseChoice =
   | { kind: "embedded"; folder: string }
   | { kind: "postgres"; url: string }
-  | { kind: "memory" };
+  | { kind: "memory"; snapshot?: string };
 
 export interface Config {
   /** Address to listen on. */

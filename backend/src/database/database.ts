@@ -1,5 +1,5 @@
 /** Opens the tables, embedded in the data folder or on a PostgreSQL server, and brings them up to date. */
-import { mkdir } from "node:fs/promises";
+import { mkdir, readFile } from "node:fs/promises";
 import { PGlite } from "@electric-sql/pglite";
 import { sql } from "drizzle-orm";
 import { drizzle as drizzleNodePostgres } from "drizzle-orm/node-postgres";
@@ -29,12 +29,23 @@ const MIGRATIONS = { migrationsFolder: PATHS.migrations };
 /** Any fixed number of ours: servers that start together migrate one after the other. */
 const MIGRATION_LOCK = 4_680_001;
 
-async function openEmbedded(folder: string | null): Promise<OpenDatabase> {
-  if (folder !== null) await mkdir(folder, { recursive: true, mode: 0o700 });
-  const client = await PGlite.create(folder ?? "memory://");
-  const db = drizzlePglite(client, OPTIONS);
-  await migratePglite(db, MIGRATIONS);
-  return { db, kind: folder === null ? "memory" : "embedded", close: () => client.close() };
+/** Brings an embedded database up to date. */
+export const migrateEmbedded = (client: PGlite): Promise<void> =>
+  migratePglite(drizzlePglite(client, OPTIONS), MIGRATIONS);
+
+async function embedded(kind: OpenDatabase["kind"], client: PGlite): Promise<OpenDatabase> {
+  await migrateEmbedded(client);
+  return { db: drizzlePglite(client, OPTIONS), kind, close: () => client.close() };
+}
+
+async function openFolder(folder: string): Promise<OpenDatabase> {
+  await mkdir(folder, { recursive: true, mode: 0o700 });
+  return await embedded("embedded", await PGlite.create(folder));
+}
+
+async function openMemory(snapshot: string | undefined): Promise<OpenDatabase> {
+  const options = snapshot === undefined ? {} : { loadDataDir: new Blob([await readFile(snapshot)]) };
+  return await embedded("memory", await PGlite.create("memory://", options));
 }
 
 async function openPostgres(url: string): Promise<OpenDatabase> {
@@ -64,6 +75,12 @@ async function openPostgres(url: string): Promise<OpenDatabase> {
  * @throws whatever the driver throws, when the server is out of reach or a migration fails.
  */
 export function openDatabase(choice: DatabaseChoice): Promise<OpenDatabase> {
-  if (choice.kind === "postgres") return openPostgres(choice.url);
-  return openEmbedded(choice.kind === "embedded" ? choice.folder : null);
+  switch (choice.kind) {
+    case "postgres":
+      return openPostgres(choice.url);
+    case "embedded":
+      return openFolder(choice.folder);
+    case "memory":
+      return openMemory(choice.snapshot);
+  }
 }

@@ -7,6 +7,7 @@ import request from "supertest";
 import { createApp } from "../../app.js";
 import type { Config } from "../../config/config.js";
 import type { MemberRole } from "../../contract/permissions.js";
+import { migratedSnapshot } from "../../database/testing/snapshot.js";
 
 export interface TestApp {
   app: NestExpressApplication;
@@ -24,7 +25,7 @@ export async function testConfig(changes: Partial<Config> = {}): Promise<Config>
     host: "127.0.0.1",
     port: 0,
     appUrl: null,
-    database: { kind: "memory" },
+    database: { kind: "memory", snapshot: await migratedSnapshot() },
     demo: true,
     ...changes,
     dataDir,
