@@ -13,10 +13,19 @@ export class AuthService {
     private readonly members: MembersRepository,
   ) {}
 
-  /** The signed-in member behind these headers (the cookie counts); null without a session or a membership. */
-  async actorOf(headers: IncomingHttpHeaders): Promise<Actor | null> {
+  /**
+   * The signed-in member behind these headers (the cookie counts); null without a session or a membership.
+   * @param look only looks: does not count as a use that makes the session last longer
+   */
+  async actorOf(
+    headers: IncomingHttpHeaders,
+    look: { only: boolean } = { only: false },
+  ): Promise<Actor | null> {
     if (headers.cookie === undefined) return null;
-    const found = await this.betterAuth.api.getSession({ headers: fromNodeHeaders(headers) });
+    const found = await this.betterAuth.api.getSession({
+      headers: fromNodeHeaders(headers),
+      query: { disableRefresh: look.only },
+    });
     if (found === null) return null;
     const membership = await this.members.firstOf(found.user.id);
     if (membership === null) return null;

@@ -21,7 +21,7 @@ export type RunNamespace = Namespace<
   SocketData
 >;
 
-/** Runs that one socket may watch at a time, and sockets that one person may hold. */
+/** Sockets that one person may hold. */
 export const MAX_SOCKETS_PER_PERSON = 40;
 /** An ended session or a lost membership closes its sockets within this time. */
 export const RECHECK_MS = 20_000;
@@ -77,7 +77,7 @@ export class StreamDoor {
       sockets.map(async (socket) => {
         const { headers } = socket.handshake;
         const cookie = headers.cookie ?? "";
-        const known = actors.get(cookie) ?? this.auth.actorOf(headers);
+        const known = actors.get(cookie) ?? this.auth.actorOf(headers, { only: true });
         actors.set(cookie, known);
         const actor = await known;
         if (actor?.workspace.id !== socket.data.actor.workspace.id) socket.disconnect(true);
