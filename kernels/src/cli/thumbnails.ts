@@ -16,6 +16,8 @@ const MOMENT_NS: Readonly<Record<string, number>> = {
   "ridge-gap": 1.5,
   "round-guide": 1.2,
   "slotted-box-tone": 12,
+  "vent-along": 1.05,
+  "vent-across": 1.2,
 };
 const DEFAULT_NS = 2.5;
 
