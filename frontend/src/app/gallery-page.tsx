@@ -4,7 +4,7 @@ import { useNavigate } from "react-router-dom";
 import { MayButton } from "../components/may-button";
 import { Page } from "../components/page";
 import { PageHeader } from "../components/page-header";
-import { Refusal } from "../components/refusal";
+import { hasNothing, QueryProblem } from "../components/query-problem";
 import { ExampleCards, useExamples } from "../features/gallery";
 import { AddToProjectDialog, NewProjectDialog } from "../features/projects";
 import { thumb } from "./drawings";
@@ -22,9 +22,8 @@ export function GalleryPage() {
       foot="Each example is also a folder of the program with its scene file, and can be solved from the command line."
     >
       <PageHeader crumbs={[{ label: "Examples" }]} />
-      {examples.isError ? (
-        <Refusal error={examples.error} onRetry={() => void examples.refetch()} />
-      ) : (
+      <QueryProblem query={examples} />
+      {hasNothing(examples) ? null : (
         <ExampleCards
           examples={examples.data}
           thumb={thumb}

@@ -2,7 +2,7 @@ import { useState } from "react";
 import { MayButton } from "../components/may-button";
 import { Page } from "../components/page";
 import { PageHeader } from "../components/page-header";
-import { Refusal } from "../components/refusal";
+import { hasNothing, QueryProblem } from "../components/query-problem";
 import { SearchField } from "../components/search-field";
 import type { LibraryMedium } from "../features/media";
 import { DeleteMediumDialog, FigureField, MediaTable, MediumDialog, useMedia } from "../features/media";
@@ -62,9 +62,8 @@ export function MediaPage() {
       foot="For a plane wave in the unbounded medium: skin depth is the depth at which the field has fallen to 1/e; reflection is at right angles from air onto a half-space; matched means σ/ε = σ*/μ, where loss alone reflects nothing. Strokes falling to the right mark electric loss, rising ones magnetic loss, closer ones more of it."
     >
       <PageHeader crumbs={[{ label: "Media" }]} />
-      {media.isError ? (
-        <Refusal error={media.error} onRetry={() => void media.refetch()} />
-      ) : (
+      <QueryProblem query={media} />
+      {hasNothing(media) ? null : (
         <MediaTable
           media={media.data}
           gigahertz={gigahertz}

@@ -5,7 +5,7 @@ import { MayButton } from "../components/may-button";
 import { MoreMenu } from "../components/more-menu";
 import { Page } from "../components/page";
 import { PageHeader } from "../components/page-header";
-import { Refusal } from "../components/refusal";
+import { hasNothing, QueryProblem } from "../components/query-problem";
 import { useExamples } from "../features/gallery";
 import {
   Activity,
@@ -20,9 +20,10 @@ import {
   useScenes,
 } from "../features/projects";
 import { useMay, useSession } from "../hooks/session";
-import { statusOf } from "../lib/api";
+import { sentenceOf, statusOf } from "../lib/api";
 import { whyNot } from "../lib/why-not";
 import { counted } from "../lib/words";
+import { NotAllowedPage } from "./not-allowed-page";
 import { NotFoundPage } from "./not-found-page";
 import "./project-page.css";
 import { thumb } from "./drawings";
@@ -42,6 +43,9 @@ export function ProjectPage() {
   const close = (): void => setOpen(null);
   const openScene = (sceneId: string): void => void navigate(`/scenes/${sceneId}`);
   if (statusOf(project.error) === 404) return <NotFoundPage />;
+  if (statusOf(project.error) === 403) {
+    return <NotAllowedPage permission="watch" sentence={sentenceOf(project.error)} />;
+  }
   const name = project.data?.name ?? "…";
   return (
     <Page
@@ -83,12 +87,11 @@ export function ProjectPage() {
       {project.data !== undefined && project.data.notes !== "" ? (
         <p className="project-notes">{project.data.notes}</p>
       ) : null}
-      {project.isError ? <Refusal error={project.error} onRetry={() => void project.refetch()} /> : null}
+      <QueryProblem query={project} />
       <div className="project-columns">
         <div>
-          {scenes.isError ? (
-            <Refusal error={scenes.error} onRetry={() => void scenes.refetch()} />
-          ) : scenes.data?.length === 0 ? (
+          <QueryProblem query={scenes} />
+          {hasNothing(scenes) ? null : scenes.data?.length === 0 ? (
             <div className="project-empty">
               <h2>No scenes yet</h2>
               <p>

@@ -4,7 +4,7 @@ import { useNavigate } from "react-router-dom";
 import { MayButton } from "../components/may-button";
 import { Page } from "../components/page";
 import { PageHeader } from "../components/page-header";
-import { Refusal } from "../components/refusal";
+import { hasNothing, QueryProblem } from "../components/query-problem";
 import { SearchField } from "../components/search-field";
 import { useExamples } from "../features/gallery";
 import {
@@ -54,9 +54,8 @@ export function ProjectsPage() {
       foot="A section says nothing of what varies along z. Its figures support a design decision; they replace neither a measurement by an accredited laboratory nor the limits of the standard that applies."
     >
       <PageHeader crumbs={[{ label: "Projects" }]} />
-      {projects.isError ? (
-        <Refusal error={projects.error} onRetry={() => void projects.refetch()} />
-      ) : (
+      <QueryProblem query={projects} />
+      {hasNothing(projects) ? null : (
         <ProjectsTable
           projects={projects.data}
           search={search}

@@ -127,8 +127,6 @@ export const components: Components<Theme> = {
       },
     },
   },
-  // Nearly every field here is required: what may be left empty says so instead.
-  MuiFormLabel: { styleOverrides: { asterisk: { display: "none" } } },
   MuiFormHelperText: { styleOverrides: { root: { fontSize: 12, marginLeft: 0, lineHeight: 1.35 } } },
   MuiLink: {
     defaultProps: { underline: "hover", color: "inherit" },

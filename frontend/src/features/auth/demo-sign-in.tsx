@@ -17,14 +17,21 @@ export function DemoSignIn({ demo, onDone }: { demo: WelcomeDto["demo"]; onDone:
   const signIn = useSignIn();
   const people = [...demo].sort((a, b) => ORDER.indexOf(a.role) - ORDER.indexOf(b.role));
   return (
-    <div style={{ display: "grid", gridTemplateColumns: "1fr 1fr", gap: 8 }}>
+    <div style={{ display: "grid", gridTemplateColumns: people.length > 1 ? "1fr 1fr" : "1fr", gap: 8 }}>
       {people.map(({ role, name }) => (
         <Button
           key={role}
           disabled={signIn.isPending}
           onClick={() => signIn.mutate({ demo: role }, { onSuccess: onDone })}
           aria-label={`Sign in as the ${role}, ${name}`}
-          sx={{ display: "grid", justifyItems: "start", textAlign: "left", gap: "1px", py: "7px" }}
+          sx={{
+            display: "grid",
+            justifyContent: "start",
+            alignContent: "start",
+            textAlign: "left",
+            gap: "1px",
+            py: "7px",
+          }}
         >
           <span style={{ textTransform: "capitalize" }}>{role}</span>
           <span style={{ fontWeight: 400, fontSize: 12, color: "var(--soft)" }}>{DOES[role]}</span>

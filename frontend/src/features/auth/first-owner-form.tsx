@@ -56,7 +56,7 @@ export function FirstOwnerForm({ onDone }: { onDone: () => void }) {
             label={field.label}
             type={field.type}
             autoComplete={field.autoComplete}
-            required
+            slotProps={{ htmlInput: { required: true } }}
             value={values[field.key]}
             onChange={(event) => setValues({ ...values, [field.key]: event.target.value })}
             error={fault}

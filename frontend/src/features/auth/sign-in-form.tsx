@@ -29,7 +29,7 @@ export function SignInForm({ email: fixedEmail, onDone }: SignInFormProps) {
         type="email"
         name="email"
         autoComplete="username"
-        required
+        slotProps={{ htmlInput: { required: true } }}
         value={email}
         disabled={fixedEmail !== undefined}
         onChange={(event) => setEmail(event.target.value)}
@@ -39,7 +39,7 @@ export function SignInForm({ email: fixedEmail, onDone }: SignInFormProps) {
         type="password"
         name="password"
         autoComplete="current-password"
-        required
+        slotProps={{ htmlInput: { required: true } }}
         autoFocus={fixedEmail !== undefined}
         value={password}
         onChange={(event) => setPassword(event.target.value)}

@@ -30,7 +30,7 @@ export function ExampleCards({ examples, thumb, actions }: ExampleCardsProps) {
           <div className="example-words">
             <h2>{example.title}</h2>
             <p className="example-facts">{exampleFacts(example.document)}</p>
-            <p>{example.paragraph}</p>
+            <p>{withNames(example.paragraph)}</p>
             <div className="example-actions">{actions(example)}</div>
           </div>
         </li>
@@ -38,3 +38,15 @@ export function ExampleCards({ examples, thumb, actions }: ExampleCardsProps) {
     </ul>
   );
 }
+
+/** A paragraph whose `names` of parameters stand between backticks. */
+const withNames = (paragraph: string): ReactNode[] =>
+  paragraph.split("`").map((part, index) =>
+    index % 2 === 0 ? (
+      part
+    ) : (
+      <code key={index} className="figure">
+        {part}
+      </code>
+    ),
+  );

@@ -11,9 +11,7 @@ export function DeleteMediumDialog({ entry, onClose }: { entry: LibraryMedium; o
       confirm="Delete the medium"
       pending={remove.isPending}
       error={remove.error}
-      onConfirm={() =>
-        remove.mutate({ params: { path: { mediumId: entry.id } } }, { onSuccess: onClose })
-      }
+      onConfirm={() => remove.mutate({ params: { path: { mediumId: entry.id } } }, { onSuccess: onClose })}
       onClose={onClose}
     >
       It leaves the library. Scenes painted with it keep their own copy of its figures.

@@ -86,11 +86,10 @@ export function MediumDialog({ entry, takenIds, gigahertz, swatch, onClose }: Me
               <TextField
                 label="Name"
                 value={draft.name}
-                required
                 autoFocus={!readOnly}
                 error={shown.name !== undefined}
                 helperText={shown.name}
-                slotProps={{ input: { readOnly }, htmlInput: { maxLength: 200 } }}
+                slotProps={{ input: { readOnly }, htmlInput: { maxLength: 200, required: true } }}
                 onChange={(event) => change({ name: event.target.value })}
               />
               <TextField
@@ -154,12 +153,11 @@ export function MediumDialog({ entry, takenIds, gigahertz, swatch, onClose }: Me
             <TextField
               label="Source of the figures"
               value={draft.source}
-              required
               multiline
               maxRows={4}
               error={shown.source !== undefined}
               helperText={shown.source ?? "A data sheet, a handbook, a measurement."}
-              slotProps={{ input: { readOnly }, htmlInput: { maxLength: 2000 } }}
+              slotProps={{ input: { readOnly }, htmlInput: { maxLength: 2000, required: true } }}
               onChange={(event) => change({ source: event.target.value })}
             />
             {refused === null ? null : <p className="medium-refused">{refused}</p>}

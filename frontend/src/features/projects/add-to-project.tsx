@@ -7,6 +7,7 @@ import DialogTitle from "@mui/material/DialogTitle";
 import MenuItem from "@mui/material/MenuItem";
 import TextField from "@mui/material/TextField";
 import { useState } from "react";
+import { QueryProblem } from "../../components/query-problem";
 import { Refusal } from "../../components/refusal";
 import { useCreateScene, useProjects } from "./api";
 
@@ -25,7 +26,7 @@ export function AddToProjectDialog({ example, onCreated, onClose }: AddToProject
     <Dialog open onClose={onClose} maxWidth="xs" fullWidth aria-labelledby="add-title">
       <DialogTitle id="add-title">Add “{example.title}”</DialogTitle>
       <DialogContent>
-        {projects.isError ? <Refusal error={projects.error} onRetry={() => void projects.refetch()} /> : null}
+        <QueryProblem query={projects} />
         {projects.data?.length === 0 ? "There is no project yet; start one with this example instead." : null}
         {projects.data !== undefined && projects.data.length > 0 ? (
           <TextField

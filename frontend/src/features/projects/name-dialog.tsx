@@ -57,11 +57,10 @@ export function NameDialog(props: NameDialogProps) {
             label={label}
             value={name}
             autoFocus
-            required={!optional}
             sx={{ mt: "6px" }}
             error={tried && missing}
             helperText={tried && missing ? "Give it a name." : undefined}
-            slotProps={{ htmlInput: { maxLength: 200 } }}
+            slotProps={{ htmlInput: { maxLength: 200, required: !optional } }}
             onChange={(event) => setName(event.target.value)}
           />
           {children}

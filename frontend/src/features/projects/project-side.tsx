@@ -2,7 +2,7 @@ import Link from "@mui/material/Link";
 import Skeleton from "@mui/material/Skeleton";
 import { Link as RouterLink } from "react-router-dom";
 import { Moment } from "../../components/moment";
-import { Refusal } from "../../components/refusal";
+import { QueryProblem } from "../../components/query-problem";
 import { initialsOf } from "../../lib/words";
 import { useActivity, useMembers } from "./api";
 import "./project-side.css";
@@ -13,7 +13,7 @@ export function Members() {
   return (
     <section className="side-section">
       <h2 className="label">Members</h2>
-      {members.isError ? <Refusal error={members.error} onRetry={() => void members.refetch()} /> : null}
+      <QueryProblem query={members} />
       {members.isPending ? <Skeleton /> : null}
       <ul>
         {members.data?.map((member) => (
@@ -36,7 +36,7 @@ export function Activity({ projectId }: { projectId: string }) {
   return (
     <section className="side-section">
       <h2 className="label">Activity</h2>
-      {activity.isError ? <Refusal error={activity.error} onRetry={() => void activity.refetch()} /> : null}
+      <QueryProblem query={activity} />
       {activity.isPending ? <Skeleton /> : null}
       {activity.data?.length === 0 ? <p className="side-soft">Nothing has happened here yet.</p> : null}
       <ol>
