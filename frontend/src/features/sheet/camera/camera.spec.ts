@@ -1,5 +1,7 @@
 import { describe, expect, it } from "vitest";
 import { toMm, toPx } from "../../../hooks/viewport";
+import { SheetEditor } from "../document/editor";
+import { emptyScene } from "../driver/sheet-driver";
 import { fitBox, fitClearOf, zoomAt } from "./camera";
 import { gridStepMm, isMultiple, roundStep, scaleBarMm, tickSteps } from "./ticks";
 
@@ -46,6 +48,22 @@ describe("view", () => {
     expect(near.pxPerMm).toBeCloseTo(view.pxPerMm * 7.03, 9);
     expect(toPx(near, fixed).xPx).toBeCloseTo(333, 8);
     expect(toPx(near, fixed).yPx).toBeCloseTo(222, 8);
+  });
+});
+
+describe("a sheet that is opened", () => {
+  it("fits the section at once and again when the surface changes size, until the user zooms", () => {
+    const editor = new SheetEditor(emptyScene());
+    editor.resize(1000, 600);
+    const first = editor.view;
+    expect(first.pxPerMm).toBeCloseTo((1000 - 48) / 200, 10);
+    editor.resize(500, 600);
+    expect(editor.view.pxPerMm).toBeCloseTo((500 - 48) / 200, 10);
+    editor.zoom(2);
+    editor.resize(1000, 600);
+    expect(editor.view.pxPerMm).toBeCloseTo((2 * (500 - 48)) / 200, 10);
+    editor.fit();
+    expect(editor.view).toEqual(first);
   });
 });
 

@@ -3,7 +3,7 @@ import { drawnItem } from "../document/drawing";
 import { findItem } from "../document/refs";
 import type { SheetState } from "../document/store";
 import { handlesOf } from "../geometry/handles";
-import { measureInWords } from "../tools/measure/measuring";
+import { measureParts } from "../tools/measure/measuring";
 import type { ToolPicture } from "../tools/tool";
 import { dimensionsOf } from "./dimensions";
 import { drawDimension } from "./draw-dimensions";
@@ -118,7 +118,10 @@ export function drawToolPicture(pen: Pen, picture: ToolPicture, state: SheetStat
   }
   if (picture.measure !== undefined) {
     const { from, to } = picture.measure;
-    drawDimension(pen, { from, to, away: [0, 1], text: measureInWords(picture.measure) }, 0);
+    const { length, parts } = measureParts(picture.measure);
+    drawDimension(pen, { from, to, away: [0, 1], text: length }, 0);
+    const [x, y] = px(to);
+    drawText(pen, parts, x + 12, y + 16, { sizePx: 11 });
   }
   if (picture.snap !== undefined && picture.snap.reason !== "grid")
     drawSnap(pen, px(picture.snap.at), picture.snap.reason);

@@ -116,7 +116,8 @@ export function hatchingOf(medium: Medium | undefined, GHz: number): Hatching {
   return {
     opaque: false,
     tint: lossless ? tintOf(medium.relativePermittivity) : 0,
-    wash: lossless ? 0 : 0.45,
+    // Enough paper over the field that a tint shows on its darkest lobes too.
+    wash: lossless ? (medium.relativePermittivity > 1 ? 0.22 : 0) : 0.45,
     strokes,
     outlinePx: HATCH.outlinePx,
   };

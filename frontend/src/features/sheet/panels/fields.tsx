@@ -48,8 +48,8 @@ export function TextEntry<T>(props: TextEntryProps<T>) {
   };
   return (
     <div className="field" data-wide={wide}>
-      <label htmlFor={id}>{label}</label>
       <span className="field-entry">
+        <label htmlFor={id}>{label}</label>
         <input
           id={id}
           type="text"
@@ -151,22 +151,24 @@ export function ChoiceField<T extends string>(props: {
   const id = useId();
   return (
     <div className="field" data-wide={wide}>
-      <label htmlFor={id}>{label}</label>
-      <select
-        id={id}
-        value={value}
-        disabled={disabled}
-        onChange={(event) => {
-          const chosen = choices.find(([choice]) => choice === event.target.value);
-          if (chosen !== undefined) onCommit(chosen[0]);
-        }}
-      >
-        {choices.map(([choice, words]) => (
-          <option key={choice} value={choice}>
-            {words}
-          </option>
-        ))}
-      </select>
+      <span className="field-entry">
+        <label htmlFor={id}>{label}</label>
+        <select
+          id={id}
+          value={value}
+          disabled={disabled}
+          onChange={(event) => {
+            const chosen = choices.find(([choice]) => choice === event.target.value);
+            if (chosen !== undefined) onCommit(chosen[0]);
+          }}
+        >
+          {choices.map(([choice, words]) => (
+            <option key={choice} value={choice}>
+              {words}
+            </option>
+          ))}
+        </select>
+      </span>
     </div>
   );
 }

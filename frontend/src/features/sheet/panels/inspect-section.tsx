@@ -13,8 +13,8 @@ import { InspectorHead } from "./inspect-common";
 
 const EDGES: readonly [Edge, string][] = [
   ["absorbing", "absorbing"],
-  ["electric", "electric wall"],
-  ["magnetic", "magnetic wall"],
+  ["electric", "electric"],
+  ["magnetic", "magnetic"],
 ];
 const EDGE_NAMES: readonly EdgeName[] = ["left", "right", "bottom", "top"];
 
@@ -107,10 +107,11 @@ export function SectionInspector({ editor }: { editor: SheetEditor }) {
             put("Change the mesh", { mesh });
           }}
         />
+        <h3 className="panel-subhead">Edges</h3>
         {EDGE_NAMES.map((name) => (
           <ChoiceField<Edge>
             key={name}
-            label={`${name.charAt(0).toUpperCase()}${name.slice(1)} edge`}
+            label={`${name.charAt(0).toUpperCase()}${name.slice(1)}`}
             value={edges[name]}
             choices={EDGES}
             disabled={readOnly}
@@ -119,8 +120,9 @@ export function SectionInspector({ editor }: { editor: SheetEditor }) {
             }}
           />
         ))}
+        <h3 className="panel-subhead">Run ends</h3>
         <NumberField
-          label="Stop at"
+          label="at"
           unit="ns"
           value={scene.stop.maxTimeNs}
           disabled={readOnly}
@@ -130,7 +132,7 @@ export function SectionInspector({ editor }: { editor: SheetEditor }) {
           }}
         />
         <NumberField
-          label="or down by"
+          label="or down"
           unit="dB"
           value={scene.stop.decayDb}
           disabled={readOnly}
@@ -168,11 +170,11 @@ function MeshFields(props: { mesh: Mesh; disabled: boolean; onCommit: (mesh: Mes
   return (
     <>
       <ChoiceField<"cell" | "wavelength">
-        label="Mesh by"
+        label="Mesh"
         value={byCell ? "cell" : "wavelength"}
         choices={[
-          ["wavelength", "wavelength"],
-          ["cell", "cell size"],
+          ["wavelength", "by λ"],
+          ["cell", "by size"],
         ]}
         disabled={disabled}
         onCommit={(by) => {

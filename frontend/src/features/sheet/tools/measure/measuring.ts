@@ -3,11 +3,14 @@ import { distance, type Xy } from "../../geometry/points";
 import { type SheetPointer, type ToolMachine, type ToolPicture, ToolState } from "../tool";
 import type { Measured } from "./idle";
 
-/** A distance in words: "12.5 mm, across 10, up 7.5, 36.9°". */
-export function measureInWords({ from, to }: Measured): string {
+/** A measure's parts in words: "12.5 mm" and "across 10, up 7.5, 36.9°". */
+export function measureParts({ from, to }: Measured): { length: string; parts: string } {
   const [dx, dy] = [to[0] - from[0], to[1] - from[1]];
   const angle = (Math.atan2(dy, dx) * 180) / Math.PI;
-  return `${lengthInWords(distance(from, to))}, across ${figure(dx)}, up ${figure(dy)}, ${figure(angle, 1)}°`;
+  return {
+    length: lengthInWords(distance(from, to)),
+    parts: `across ${figure(dx)}, up ${figure(dy)}, ${figure(angle, 1)}°`,
+  };
 }
 
 /** From where it was pressed to the pointer. Shift keeps to the nearer axis. */
@@ -38,7 +41,8 @@ export class Measuring extends ToolState {
       return;
     }
     this.machine.go(this.#rest(measured));
-    this.store.say(measureInWords(measured));
+    const { length, parts } = measureParts(measured);
+    this.store.say(`${length}, ${parts}`);
   }
 
   override cancel(): void {
