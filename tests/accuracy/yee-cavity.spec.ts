@@ -10,6 +10,7 @@ import { absorbingLayers } from "@heddle/kernels/boundaries";
 import { propertiesOf, SectionCoefficients } from "@heddle/kernels/media";
 import { ReferenceEngine } from "@heddle/kernels/stepping";
 import { describe, expect, it } from "vitest";
+import { measured } from "./support/measured.js";
 import { z } from "zod";
 import { ELECTRIC_BOX } from "./support/run.js";
 import { complexSchema, numberAt, referenceEntries } from "./support/reference.js";
@@ -131,6 +132,7 @@ describe("the lossless Yee cavity", () => {
             const factor = Math.cos(2 * Math.PI * f_discrete_Hz * step * lattice.dt);
             worst = Math.max(worst, largestDifference(engine.fields.f, start, factor));
           }
+          measured(`${entry.id} ${polarization}`, worst);
           expect(worst).toBeLessThan(TOLERANCE);
         },
       );
@@ -174,6 +176,7 @@ describe("the lossy Yee cavity", () => {
             }
           }
         }
+        measured(`${entry.id} ${polarization}`, worst);
         expect(worst).toBeLessThan(TOLERANCE);
       });
     }

@@ -46,21 +46,27 @@ function quarterTurn(degrees: number): Point {
   return turns[(((degrees / 90) % 4) + 4) % 4];
 }
 
+/**
+ * Radius of the corners between the ends of a half disc's polygon of m parts, its two ends lying on the circle itself, that gives it the
+ * half disc's area: (m − 2)r² + 2Rr = πR²/sin(π/m).
+ */
+function halfDiscRadius(radius: number, m: number): number {
+  const target = (Math.PI * radius * radius) / Math.sin(Math.PI / m);
+  return (Math.sqrt(radius * radius + (m - 2) * target) - radius) / (m - 2);
+}
+
 /** One segment of a stroke with round ends, counter-clockwise. A segment without length is a disc. */
 function capsule([x0, y0]: Point, [x1, y1]: Point, radius: number, tolerance: number): Point[] {
-  const n = circleCorners(radius, tolerance);
-  const r = radius * equalAreaFactor(n);
+  const m = circleCorners(radius, tolerance) / 2;
+  const inner = halfDiscRadius(radius, m);
   const start = Math.hypot(x1 - x0, y1 - y0) > 0 ? Math.atan2(y1 - y0, x1 - x0) - Math.PI / 2 : 0;
-  const ring: Point[] = [];
-  for (let i = 0; i <= n / 2; i += 1) {
-    const angle = start + (2 * Math.PI * i) / n;
-    ring.push([x1 + r * Math.cos(angle), y1 + r * Math.sin(angle)]);
-  }
-  for (let i = n / 2; i <= n; i += 1) {
-    const angle = start + (2 * Math.PI * i) / n;
-    ring.push([x0 + r * Math.cos(angle), y0 + r * Math.sin(angle)]);
-  }
-  return ring;
+  const halfDisc = (x: number, y: number, from: number): Point[] =>
+    Array.from({ length: m + 1 }, (_, i): Point => {
+      const angle = from + (Math.PI * i) / m;
+      const r = i === 0 || i === m ? radius : inner;
+      return [x + r * Math.cos(angle), y + r * Math.sin(angle)];
+    });
+  return [...halfDisc(x1, y1, start), ...halfDisc(x0, y0, start + Math.PI)];
 }
 
 /** The outline of an area shape. `tolerance` in mm bounds how far a chord may leave its curve. */
