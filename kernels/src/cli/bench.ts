@@ -111,10 +111,18 @@ export const runBench = async (
   stdout: Writable,
   stderr: Writable,
 ): Promise<0 | 2> => {
-  const { values } = parseArgs({
-    args: [...args],
-    options: { json: { type: "boolean" }, case: { type: "string" } },
-  });
+  let values: { json?: boolean; case?: string };
+  try {
+    ({ values } = parseArgs({
+      args: [...args],
+      options: { json: { type: "boolean" }, case: { type: "string" } },
+    }));
+  } catch (error) {
+    stderr.write(
+      `options: ${error instanceof Error ? error.message : "They cannot be read"}; use --json and --case NAME.\n`,
+    );
+    return 2;
+  }
   const all = benchCases();
   const chosen = values.case === undefined ? all : all.filter(({ name }) => name === values.case);
   if (chosen.length === 0) {
