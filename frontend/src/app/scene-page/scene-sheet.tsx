@@ -9,7 +9,7 @@ import type { Scale } from "../../features/field";
 import { createFieldSlot, FieldKey, FieldLayer, quantitiesOf } from "../../features/field";
 import { useMedia } from "../../features/media";
 import type { RunSinks } from "../../features/runs";
-import { RunPanel, useResult, useRun } from "../../features/runs";
+import { EditedMark, RunPanel, useResult, useRun } from "../../features/runs";
 import {
   Inspector,
   makeRef,
@@ -179,6 +179,9 @@ export function SceneSheet({ scene, document }: { scene: SceneDto; document: Sce
                   slot={slot}
                   grid={run?.grid ?? estimate?.grid ?? null}
                 />
+                <div className="sheet-edited">
+                  <EditedMark handle={handle} mayRun={runRefusal === null} />
+                </div>
                 {handle.fieldGone && (
                   <p className="sheet-said">
                     The field of this ended run is no longer kept. Run again to see it.
@@ -203,13 +206,13 @@ export function SceneSheet({ scene, document }: { scene: SceneDto; document: Sce
       </div>
       <aside className="scene-side" aria-label="Media, dimensions and trust">
         <MediaShelf editor={editor} library={library.data ?? []} />
-        <Inspector editor={editor} />
         <TrustPanel
           result={result.data ?? null}
           mediaById={drawing.mediaById}
           outdated={outdated}
           caution={`${cautionOf(drawn.outOfPlane)} ${DESIGN_CAUTION}`}
         />
+        <Inspector editor={editor} />
       </aside>
       <div className="scene-strip">
         <RunPanel handle={handle} refusal={runRefusal} cost={estimate?.cost ?? null} />

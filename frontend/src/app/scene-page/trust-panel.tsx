@@ -11,6 +11,8 @@ export interface TrustPanelProps {
 }
 
 const SHOWN_WARNINGS = 4;
+/** The coarsest meshed; finer ones need no attention. */
+const SHOWN_MEDIA = 3;
 
 /** How good the answer is, in a few figures, and what the section leaves out. */
 export function TrustPanel({ result, mediaById, outdated, caution }: TrustPanelProps) {
@@ -45,34 +47,40 @@ function Figures({ result, mediaById }: { result: SolveResult; mediaById: Readon
   const media = Object.entries(quality.cellsPerWavelength).sort(([, a], [, b]) => a - b);
   const { energyLeft, boundaryReflectionDb } = quality;
   return (
-    <dl className="figures">
-      {media.slice(0, 3).map(([id, cells]) => (
-        <div key={id}>
-          <dt>Cells per wavelength</dt>
+    <>
+      <dl className="figures">
+        <div>
+          <dt>Dispersion error</dt>
           <dd>
-            {figure(cells, 3)} in {mediaById.get(id)?.name ?? id}
+            {figure(quality.dispersionError * 100, 2)}
+            {THIN_SPACE}%
           </dd>
         </div>
-      ))}
-      <div>
-        <dt>Dispersion error</dt>
-        <dd>
-          {figure(quality.dispersionError * 100, 2)}
-          {THIN_SPACE}%
-        </dd>
-      </div>
-      {energyLeft !== null && (
-        <div>
-          <dt>Energy left</dt>
-          <dd>{energyLeft > 0 ? decibels(10 * Math.log10(energyLeft)) : "none"}</dd>
-        </div>
-      )}
-      {boundaryReflectionDb !== null && (
-        <div>
-          <dt>Edge reflection</dt>
-          <dd>{decibels(boundaryReflectionDb, 0)}</dd>
-        </div>
-      )}
-    </dl>
+        {energyLeft !== null && (
+          <div>
+            <dt>Energy left</dt>
+            <dd>{energyLeft > 0 ? decibels(10 * Math.log10(energyLeft)) : "none"}</dd>
+          </div>
+        )}
+        {boundaryReflectionDb !== null && (
+          <div>
+            <dt>Edge reflection</dt>
+            <dd>{decibels(boundaryReflectionDb, 0)}</dd>
+          </div>
+        )}
+      </dl>
+      <h3>Cells per wavelength</h3>
+      <dl className="figures">
+        {media.slice(0, SHOWN_MEDIA).map(([id, cells]) => {
+          const name = mediaById.get(id)?.name ?? id;
+          return (
+            <div key={id}>
+              <dt title={name}>{name}</dt>
+              <dd>{figure(cells, 3)}</dd>
+            </div>
+          );
+        })}
+      </dl>
+    </>
   );
 }

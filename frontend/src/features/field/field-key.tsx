@@ -82,7 +82,7 @@ export function FieldKey(props: FieldKeyProps) {
         {full === null ? unitOf(quantity) : `${prefix}${unitOf(quantity)}`}
         {cut && (
           <div className={styles.cut} title="Values beyond the locked range are drawn as its end.">
-            peak {formatSi(shown.peak, "", 2)}
+            peak {formatSi(shown.peak, unitOf(quantity), 2)}
           </div>
         )}
       </div>

@@ -1,3 +1,4 @@
+import type { Frame } from "@heddle/kernels/frames";
 import type { PointMm } from "../../hooks/viewport";
 import { formatFixed, formatSi, THIN_SPACE } from "../../lib/figures";
 import type { SectionSize } from "./field-layer";
@@ -29,8 +30,6 @@ export function FieldReadout({ slot, section, at, grid, mediumAt }: FieldReadout
   const up = at.yMm / section.heightMm;
   const value = frame === null ? null : valueAt(frame, across, up);
   const cell = (share: number, count: number): number => Math.min(count - 1, Math.floor(share * count));
-  // A value that the levels cannot tell from zero is not given more figures than it has.
-  const small = frame !== null && value !== null && Math.abs(value) < resolution(frame);
   return (
     <output className={styles.readout} aria-label="Under the pointer">
       <span>
@@ -44,13 +43,18 @@ export function FieldReadout({ slot, section, at, grid, mediumAt }: FieldReadout
       )}
       {frame !== null && value !== null && (
         <span>
-          {labelOf(frame.quantity)}{" "}
-          {small
-            ? `< ${formatSi(resolution(frame), unitOf(frame.quantity), 1)}`
-            : formatSi(value, unitOf(frame.quantity))}
+          {labelOf(frame.quantity)} {valueWords(frame, value)}
         </span>
       )}
       <span>{mediumAt(at) ?? ""}</span>
     </output>
   );
+}
+
+/** As exactly as the levels know it: small values are bounded by half a level, cut ones by the range. */
+function valueWords(frame: Frame, value: number): string {
+  const unit = unitOf(frame.quantity);
+  if (Math.abs(value) < resolution(frame)) return `under ${formatSi(resolution(frame), unit, 1)}`;
+  const cut = frame.peak > frame.range * 1.001 && Math.abs(value) > frame.range * 0.999;
+  return `${cut ? "beyond " : ""}${formatSi(value, unit)}`;
 }

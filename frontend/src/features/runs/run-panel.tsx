@@ -18,7 +18,7 @@ export interface RunPanelProps {
 
 /** Run, pause, step, stop, pace, and how far the run is. */
 export function RunPanel({ handle, refusal, cost }: RunPanelProps) {
-  const { run, busy, connection, notice } = handle;
+  const { run, connection, notice } = handle;
   return (
     <section className={styles.panel} aria-label="Run">
       {refusal === null ? (
@@ -51,23 +51,6 @@ export function RunPanel({ handle, refusal, cost }: RunPanelProps) {
           </div>
         )}
       </div>
-      {run?.edited === true && (
-        <div className={styles.edited}>
-          <p>Edited while it ran: for the eye, not evidence.</p>
-          {refusal === null && (
-            <Button
-              size="small"
-              variant="outlined"
-              disabled={busy}
-              onClick={() => {
-                handle.start();
-              }}
-            >
-              Run the edited scene cleanly
-            </Button>
-          )}
-        </div>
-      )}
       {run === null ? (
         <>
           <p className={styles.quiet}>{handle.loading ? "Looking for the last run…" : "Not run yet."}</p>
@@ -102,8 +85,29 @@ export function RunPanel({ handle, refusal, cost }: RunPanelProps) {
   );
 }
 
+/** The mark that a run edited live carries wherever its field is shown, and the way to evidence. */
+export function EditedMark({ handle, mayRun }: { handle: RunHandle; mayRun: boolean }) {
+  if (handle.run?.edited !== true) return null;
+  return (
+    <div className={styles.edited} role="note">
+      <span>Edited while it ran: for the eye, not evidence.</span>
+      {mayRun && (
+        <Button
+          size="small"
+          variant="outlined"
+          onClick={() => {
+            handle.runCleanly();
+          }}
+        >
+          Run the edited scene cleanly
+        </Button>
+      )}
+    </div>
+  );
+}
+
 function Buttons({ handle }: { handle: RunHandle }) {
-  const { run, busy, start, command } = handle;
+  const { run, start, command } = handle;
   const live = run !== null && !isOver(run.state);
   const paused = run?.state === "paused";
   return (
@@ -113,7 +117,6 @@ function Buttons({ handle }: { handle: RunHandle }) {
           variant="contained"
           color="primary"
           size="small"
-          disabled={busy}
           title="Saves, then runs (Ctrl+Enter)"
           aria-keyshortcuts="Control+Enter"
           onClick={() => {
@@ -128,7 +131,7 @@ function Buttons({ handle }: { handle: RunHandle }) {
           variant="contained"
           color="primary"
           size="small"
-          disabled={busy || run.state === "queued"}
+          disabled={run.state === "queued"}
           aria-keyshortcuts="Control+Enter"
           onClick={() => {
             command({ kind: paused ? "resume" : "pause" });
@@ -140,7 +143,7 @@ function Buttons({ handle }: { handle: RunHandle }) {
       <Button
         variant="outlined"
         size="small"
-        disabled={busy || (live && !paused)}
+        disabled={live && !paused}
         title={
           live ? "One step of the field (while paused)" : "Starts a run that waits before its first step"
         }
@@ -154,7 +157,7 @@ function Buttons({ handle }: { handle: RunHandle }) {
       <Button
         variant="outlined"
         size="small"
-        disabled={busy || !live}
+        disabled={!live}
         onClick={() => {
           command({ kind: "stop" });
         }}

@@ -53,6 +53,8 @@ export interface RunHandle {
   /** The pace to start with and to go on with; null: as fast as the server goes. */
   pace: number | null;
   start: (options?: { paused?: boolean }) => void;
+  /** Stops the run under way, if any, and runs the scene as it is drawn from its first step. */
+  runCleanly: () => void;
   command: (command: RunCommand) => void;
   setPace: (pace: number | null) => void;
   /** Gives the drawing as it stands to the run, if one is under way. The latest wins. */
@@ -115,7 +117,11 @@ export function useRun({ sceneId, sinks, view, save }: UseRunOptions): RunHandle
     stream.current?.watch(runId);
   }, [runId, view]);
 
+  const acting = useRef(false);
   const act = useCallback(async (action: () => Promise<void>) => {
+    // A second click while the first is on its way asks for nothing new.
+    if (acting.current) return;
+    acting.current = true;
     setBusy(true);
     setNotice(null);
     try {
@@ -123,26 +129,39 @@ export function useRun({ sceneId, sinks, view, save }: UseRunOptions): RunHandle
     } catch (error) {
       setNotice(noticeOf(error));
     } finally {
+      acting.current = false;
       setBusy(false);
     }
   }, []);
 
+  const begin = useCallback(
+    async (paused: boolean) => {
+      const revision = await save();
+      if (revision === null) return;
+      // A paced run is started paused, so that it does not rush off before its pace is known.
+      const told = await startRun(sceneId, { revision, paused: paused || chosenPace !== null });
+      tellRun(client, told);
+      if (chosenPace === null) return;
+      tellRun(client, await commandRun(told.id, { kind: "pace", picosecondsPerSecond: chosenPace }));
+      if (!paused) tellRun(client, await commandRun(told.id, { kind: "resume" }));
+    },
+    [save, sceneId, chosenPace, client],
+  );
+
   const start = useCallback(
     (options: { paused?: boolean } = {}) => {
-      void act(async () => {
-        const revision = await save();
-        if (revision === null) return;
-        const paused = options.paused ?? false;
-        // A paced run is started paused, so that it does not rush off before its pace is known.
-        const told = await startRun(sceneId, { revision, paused: paused || chosenPace !== null });
-        tellRun(client, told);
-        if (chosenPace === null) return;
-        tellRun(client, await commandRun(told.id, { kind: "pace", picosecondsPerSecond: chosenPace }));
-        if (!paused) tellRun(client, await commandRun(told.id, { kind: "resume" }));
-      });
+      void act(() => begin(options.paused ?? false));
     },
-    [act, save, sceneId, chosenPace, client],
+    [act, begin],
   );
+
+  const live = run !== null && !isOver(run.state);
+  const runCleanly = useCallback(() => {
+    void act(async () => {
+      if (live && runId !== null) tellRun(client, await commandRun(runId, { kind: "stop" }));
+      await begin(false);
+    });
+  }, [act, begin, live, runId, client]);
 
   const command = useCallback(
     (wantedCommand: RunCommand) => {
@@ -154,7 +173,6 @@ export function useRun({ sceneId, sinks, view, save }: UseRunOptions): RunHandle
     [act, runId, client],
   );
 
-  const live = run !== null && !isOver(run.state);
   const setPace = useCallback(
     (pace: number | null) => {
       setChosenPace(pace);
@@ -199,6 +217,7 @@ export function useRun({ sceneId, sinks, view, save }: UseRunOptions): RunHandle
     }, []),
     pace: live ? run.pacePsPerSecond : chosenPace,
     start,
+    runCleanly,
     command,
     setPace,
     edit,
