@@ -150,6 +150,8 @@ export function SheetSurface(props: SheetSurfaceProps) {
         aria-label={words}
         aria-describedby={hintId}
         tabIndex={0}
+        // Where millimetres lie in pixels, for whoever drives the page from outside.
+        data-view={`${view.pxPerMm} ${view.originXPx} ${view.originYPx}`}
         style={{ cursor }}
         onPointerDown={(event) => {
           surface.current?.focus({ preventScroll: true });
