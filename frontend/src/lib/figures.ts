@@ -19,13 +19,13 @@ const notFinite = (value: number): string => (Number.isNaN(value) ? "–" : valu
 const SUPERSCRIPTS = "⁰¹²³⁴⁵⁶⁷⁸⁹";
 const superscript = (exponent: number): string =>
   (exponent < 0 ? "⁻" : "") +
-  [...String(Math.abs(exponent))].map((digit) => SUPERSCRIPTS[Number(digit)]).join("");
+  Array.from(String(Math.abs(exponent)), (digit) => SUPERSCRIPTS[Number(digit)]).join("");
 
 /** Whole digits in thin-spaced groups of three from five digits up: "12 480". */
 const grouped = (text: string): string => {
-  const [whole = "", fraction] = text.split(".");
+  const [whole = "", ...fraction] = text.split(".");
   const spaced = whole.replace("-", "").length < 5 ? whole : whole.replace(/\B(?=(\d{3})+$)/g, THIN_SPACE);
-  return fraction === undefined ? spaced : `${spaced}.${fraction}`;
+  return [spaced, ...fraction].join(".");
 };
 
 /**

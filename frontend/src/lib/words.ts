@@ -2,7 +2,14 @@
 export function initialsOf(name: string): string {
   const words = name.trim().split(/\s+/).filter(Boolean);
   const letters = words.length > 1 ? [words[0], words.at(-1)] : words;
-  return letters.map((word) => [...(word ?? "")][0]?.toLocaleUpperCase() ?? "").join("");
+  return letters
+    .map(
+      (word) =>
+        Array.from(word ?? "")
+          .at(0)
+          ?.toLocaleUpperCase() ?? "",
+    )
+    .join("");
 }
 
 /** "1 scene", "0 scenes". */

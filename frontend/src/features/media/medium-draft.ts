@@ -146,7 +146,7 @@ export function mediumOf(draft: MediumDraft, id: string): { medium: Medium | nul
   for (const path of fillPaths(judged.error.issues)) {
     const [field, index, inner] = path;
     if ((field === "electricPoles" || field === "magneticPoles") && typeof index === "number") {
-      const pole = (field === "electricPoles" ? electric : magnetic)[index];
+      const pole = (field === "electricPoles" ? electric : magnetic).at(index);
       if (pole !== undefined) faults[`poles.${pole.key}.${String(inner)}`] = SENTENCES[String(inner)];
     } else if (typeof field === "string") {
       faults[field] ??= SENTENCES[field] ?? "This is not valid.";
@@ -168,6 +168,6 @@ function fillPaths(issues: readonly Issue[]): PropertyKey[][] {
     const branches = issue.errors.filter(
       (branch) => !branch.some((inner) => inner.code === "unrecognized_keys"),
     );
-    return fillPaths(branches[0] ?? issue.errors[0] ?? []).map((path) => [...issue.path, ...path]);
+    return fillPaths(branches.at(0) ?? issue.errors.at(0) ?? []).map((path) => [...issue.path, ...path]);
   });
 }
