@@ -6,6 +6,7 @@ import type { FirstOwnerBody } from "../contract/people.js";
 import { isDuplicate } from "../common/failures.js";
 import { Refusal } from "../common/refusal.js";
 import { DATABASE, type Database } from "../database/database.js";
+import { firstRow } from "../database/rows.js";
 import { installation, members, workspaces } from "../database/schema/index.js";
 import { addPerson } from "./people.js";
 
@@ -21,8 +22,9 @@ export class FirstOwnerService {
   constructor(@Inject(DATABASE) private readonly db: Database) {}
 
   async isNeeded(): Promise<boolean> {
-    const [row] = await this.db.select({ made: installation.firstOwnerMade }).from(installation);
-    return row?.made !== true;
+    return (
+      firstRow(await this.db.select({ made: installation.firstOwnerMade }).from(installation))?.made !== true
+    );
   }
 
   /**

@@ -9,6 +9,7 @@ import { ScenesRepository } from "../scenes/scenes.repository.js";
 import { MembersRepository } from "../workspaces/members.repository.js";
 import { isDuplicate } from "../common/failures.js";
 import { openDatabase, type Database, type OpenDatabase } from "./database.js";
+import { writtenRow } from "./rows.js";
 import { members, runs, workspaces } from "./schema/index.js";
 import { postgresSource, startPostgres, type PostgresForTests } from "./testing/postgres.js";
 
@@ -41,9 +42,7 @@ for (const { driver, there } of drivers) {
     });
 
     const workspace = async (name: string): Promise<string> => {
-      const [row] = await db.insert(workspaces).values({ name }).returning();
-      if (row === undefined) throw new Error("no workspace");
-      return row.id;
+      return writtenRow(await db.insert(workspaces).values({ name }).returning(), "workspace").id;
     };
     const project = (name: string): Promise<string> =>
       new ProjectsRepository(db).create(db, { workspaceId, ownerId: personId, name, notes: "" });

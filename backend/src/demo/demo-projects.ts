@@ -2,7 +2,7 @@
 export interface DemoProject {
   name: string;
   notes: string;
-  takes(exampleName: string): boolean;
+  takes: (exampleName: string) => boolean;
 }
 
 export const DEMO_PROJECTS: readonly DemoProject[] = [

@@ -7,6 +7,7 @@ import { CONFIG, type Config } from "../config/config.js";
 import { MEMBER_ROLES, type MemberRole } from "../contract/permissions.js";
 import type { ExampleDto } from "../contract/scenes.js";
 import { DATABASE, type Database } from "../database/database.js";
+import { writtenRow } from "../database/rows.js";
 import { installation, members, people, workspaces } from "../database/schema/index.js";
 import { ExamplesService } from "../examples/examples.service.js";
 import { judgeMedium } from "../media/judge.js";
@@ -42,17 +43,16 @@ export class DemoSeeder implements OnApplicationBootstrap {
     await this.db.transaction(async (tx) => {
       const first = await tx.insert(installation).values({ id: 1 }).onConflictDoNothing().returning();
       if (first.length === 0 || !this.config.demo || !isLoopback(this.config.host)) return;
-      const [someone] = await tx.select({ id: people.id }).from(people).limit(1);
-      if (someone !== undefined) return;
+      const someone = await tx.select({ id: people.id }).from(people).limit(1);
+      if (someone.length > 0) return;
       await this.seed(tx, examples);
       await tx.update(installation).set({ demoSeeded: true }).where(eq(installation.id, 1));
     });
   }
 
   private async seed(tx: Database, examples: readonly ExampleDto[]): Promise<void> {
-    const [workspace] = await tx.insert(workspaces).values({ name: WORKSPACE, demo: true }).returning();
-    if (workspace === undefined) throw new Error("The database returned no row for the demo workspace.");
-    const workspaceId = workspace.id;
+    const made = await tx.insert(workspaces).values({ name: WORKSPACE, demo: true }).returning();
+    const workspaceId = writtenRow(made, "workspace").id;
     const idByRole = new Map<MemberRole, string>();
     for (const role of MEMBER_ROLES) {
       const password = randomBytes(24).toString("base64url");

@@ -3,7 +3,8 @@ import { tmpdir } from "node:os";
 import { join } from "node:path";
 import { mediumSchema } from "@heddle/kernels/scene";
 import { afterAll, beforeAll, describe, expect, it } from "vitest";
-import { startTestApp, type TestApp } from "../common/testing/test-app.js";
+import { column, startTestApp, type TestApp } from "../common/testing/test-app.js";
+import { WelcomeDto } from "../contract/people.js";
 import { MEMBER_ROLES } from "../contract/permissions.js";
 import { ExamplesService } from "../examples/examples.service.js";
 
@@ -16,23 +17,22 @@ describe("the demo", () => {
 
   it("offers each role to a browser on this machine, and a first owner of one's own beside it", async () => {
     const { body } = await server.stranger().get("/api/welcome").expect(200);
-    expect(body.demo.map(({ role }: { role: string }) => role).sort()).toEqual([...MEMBER_ROLES].sort());
-    expect(body.needsFirstOwner).toBe(true);
+    const { demo, needsFirstOwner } = WelcomeDto.parse(body);
+    expect(demo.map(({ role }) => role).sort()).toEqual([...MEMBER_ROLES].sort());
+    expect(needsFirstOwner).toBe(true);
   });
 
   it("holds every example in a project, and media whose source is told", async () => {
     const reviewer = await server.as("reviewer");
     const projects = await reviewer.get("/api/projects").expect(200);
-    const counts = projects.body.map(({ sceneCount }: { sceneCount: number }) => sceneCount);
+    const counts = column(projects, "sceneCount").map(Number);
     const examples = await new ExamplesService().list();
     expect(examples.length).toBeGreaterThanOrEqual(8);
-    expect(counts.reduce((sum: number, count: number) => sum + count, 0)).toBe(examples.length);
+    expect(counts.reduce((sum, count) => sum + count, 0)).toBe(examples.length);
     const media = await reviewer.get("/api/media").expect(200);
     expect(media.body.length).toBeGreaterThan(4);
-    for (const { medium, source } of media.body) {
-      expect(mediumSchema.parse(medium)).toEqual(medium);
-      expect(source).not.toBe("");
-    }
+    for (const medium of column(media, "medium")) expect(mediumSchema.parse(medium)).toEqual(medium);
+    for (const source of column(media, "source")) expect(source).not.toBe("");
   });
 
   it("is not opened by claiming to be local through a proxy, nor by a foreign name for this machine", async () => {
@@ -105,10 +105,8 @@ describe("a demo that was seeded at this machine and later opened to a network",
       await opened.stranger().post("/api/demo-sign-in").send({ role: "owner" }).expect(404);
       await opened.close();
       const again = await startTestApp({ database, dataDir }, { keepData: true });
-      const names = (await (await again.as("manager")).get("/api/projects")).body.map(
-        ({ name }: { name: string }) => name,
-      );
-      expect(names.filter((name: string) => name === "Kept")).toHaveLength(1);
+      const names = column(await (await again.as("manager")).get("/api/projects"), "name");
+      expect(names.filter((name) => name === "Kept")).toHaveLength(1);
       expect(new Set(names).size).toBe(names.length);
       await again.close();
     } finally {

@@ -56,7 +56,7 @@ export class ExamplesService {
       if (!existsSync(scene)) continue;
       const outcome = readScene(await readFile(scene, "utf8"));
       if (!outcome.ok) {
-        const [first] = outcome.problems;
+        const first = outcome.problems.at(0);
         this.logger.warn(`Example ${name} is left out: ${first?.path ?? ""} ${first?.sentence ?? ""}`);
         continue;
       }

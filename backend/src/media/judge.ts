@@ -24,7 +24,7 @@ export function judgeMedium(
   }
   const read = mediumSchema.safeParse(medium);
   if (read.success && problems.length === 0) return read.data;
-  const [first] = problems;
+  const first = problems.at(0);
   const where = first === undefined || first.path === "" ? "" : `${first.path}: `;
   throw new Refusal("bad-request", `The medium cannot be kept. ${where}${first?.sentence ?? ""}`, {
     problems,

@@ -1,6 +1,7 @@
 import { Inject, Injectable } from "@nestjs/common";
 import { and, eq, sql } from "drizzle-orm";
 import { DATABASE, type Database } from "../database/database.js";
+import { firstRow, writtenRow } from "../database/rows.js";
 import { media } from "../database/schema/index.js";
 
 export type MediumRecord = typeof media.$inferSelect;
@@ -22,9 +23,7 @@ export class MediaRepository {
     db: Database,
     values: { workspaceId: string; medium: Record<string, unknown>; source: string },
   ): Promise<MediumRecord> {
-    const [row] = await db.insert(media).values(values).returning();
-    if (row === undefined) throw new Error("The database returned no row for a new medium.");
-    return row;
+    return writtenRow(await db.insert(media).values(values).returning(), "medium");
   }
 
   /** @returns null for a medium that the workspace does not have */
@@ -33,12 +32,12 @@ export class MediaRepository {
     mediumId: string,
     values: { medium: Record<string, unknown>; source: string },
   ): Promise<MediumRecord | null> {
-    const [row] = await this.db
+    const rows = await this.db
       .update(media)
       .set({ ...values, updatedAt: new Date() })
       .where(and(eq(media.id, mediumId), eq(media.workspaceId, workspaceId)))
       .returning();
-    return row ?? null;
+    return firstRow(rows) ?? null;
   }
 
   async remove(workspaceId: string, mediumId: string): Promise<boolean> {

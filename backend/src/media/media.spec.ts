@@ -1,5 +1,5 @@
 import { afterAll, beforeAll, describe, expect, it } from "vitest";
-import { startTestApp, type TestApp } from "../common/testing/test-app.js";
+import { column, startTestApp, type TestApp } from "../common/testing/test-app.js";
 
 describe("the library of media", () => {
   let server: TestApp;
@@ -20,8 +20,7 @@ describe("the library of media", () => {
     const changed = { medium: { ...medium, conductivity: 0.01 }, source: "measured" };
     const put = await engineer.put(`/api/media/${made.body.id}`).send(changed).expect(200);
     expect(put.body).toMatchObject({ medium: { conductivity: 0.01 }, source: "measured" });
-    const ids = async () =>
-      (await engineer.get("/api/media").expect(200)).body.map((row: { id: string }) => row.id) as string[];
+    const ids = async () => column(await engineer.get("/api/media").expect(200), "id");
     expect(await ids()).toContain(made.body.id);
     await engineer.delete(`/api/media/${made.body.id}`).expect(204);
     expect(await ids()).not.toContain(made.body.id);
@@ -33,8 +32,10 @@ describe("the library of media", () => {
     const bad = { id: "bad", name: "Bad", relativePermittivity: 0.5, conductivity: -1 };
     const answer = await engineer.post("/api/media").send({ medium: bad, source: "nowhere" });
     expect(answer.status).toBe(400);
-    const paths = answer.body.problems.map((problem: { path: string }) => problem.path);
-    expect(paths.sort()).toEqual(["conductivity", "relativePermittivity"]);
+    expect(column({ body: answer.body.problems }, "path").sort()).toEqual([
+      "conductivity",
+      "relativePermittivity",
+    ]);
     await engineer.post("/api/media").send({ medium: {}, source: "x" }).expect(400);
     await engineer
       .post("/api/media")

@@ -2,6 +2,7 @@ import { Inject, Injectable } from "@nestjs/common";
 import { desc, eq } from "drizzle-orm";
 import type { ActivityDto } from "../contract/projects.js";
 import { DATABASE, type Database } from "../database/database.js";
+import { firstRow } from "../database/rows.js";
 import { activity, people, projects } from "../database/schema/index.js";
 
 export interface Deed {
@@ -29,12 +30,13 @@ export class ActivityRepository {
     const now = new Date();
     await db.update(projects).set({ updatedAt: now }).where(eq(projects.id, projectId));
     if (deed.kind === "save") {
-      const [last] = await db
+      const latest = await db
         .select()
         .from(activity)
         .where(eq(activity.projectId, projectId))
         .orderBy(desc(activity.id))
         .limit(1);
+      const last = firstRow(latest);
       const continues =
         last?.sceneId === sceneId &&
         last.personId === personId &&

@@ -3,6 +3,7 @@ import { and, asc, count, desc, eq, sql } from "drizzle-orm";
 import type { PersonDto } from "../contract/people.js";
 import type { RunState } from "../contract/runs.js";
 import { DATABASE, type Database } from "../database/database.js";
+import { firstRow, writtenRow } from "../database/rows.js";
 import { people, projects, runs, scenes } from "../database/schema/index.js";
 
 export interface ProjectRecord {
@@ -26,17 +27,14 @@ export class ProjectsRepository {
   }
 
   async find(workspaceId: string, projectId: string): Promise<ProjectRecord | null> {
-    const [row] = await this.select(workspaceId, projectId);
-    return row ?? null;
+    return firstRow(await this.select(workspaceId, projectId)) ?? null;
   }
 
   async create(
     db: Database,
     values: { workspaceId: string; ownerId: string; name: string; notes: string },
   ): Promise<string> {
-    const [row] = await db.insert(projects).values(values).returning({ id: projects.id });
-    if (row === undefined) throw new Error("The database returned no id for a new project.");
-    return row.id;
+    return writtenRow(await db.insert(projects).values(values).returning({ id: projects.id }), "project").id;
   }
 
   async update(projectId: string, changes: { name?: string; notes?: string }): Promise<void> {

@@ -1,5 +1,6 @@
 import { afterAll, beforeAll, describe, expect, it } from "vitest";
-import { startTestApp, type TestApp } from "../common/testing/test-app.js";
+import { z } from "zod";
+import { column, startTestApp, type TestApp } from "../common/testing/test-app.js";
 import { ProjectDto } from "../contract/projects.js";
 import { ExampleDto, SceneSummaryDto } from "../contract/scenes.js";
 
@@ -17,17 +18,16 @@ describe("projects", () => {
   it("start empty or with an example's scene, and answer as the contract says", async () => {
     const empty = await engineer.post("/api/projects").send({ name: "  Empty " }).expect(201);
     expect(ProjectDto.parse(empty.body)).toMatchObject({ name: "Empty", sceneCount: 0, lastRunState: null });
-    const examples = (await engineer.get("/api/examples").expect(200)).body.map((row: unknown) =>
-      ExampleDto.parse(row),
-    );
-    const [example] = examples;
+    const [example] = z
+      .tuple([ExampleDto], ExampleDto)
+      .parse((await engineer.get("/api/examples").expect(200)).body);
     const made = await engineer
       .post("/api/projects")
       .send({ name: "With", example: example.name })
       .expect(201);
     expect(made.body.sceneCount).toBe(1);
     const scenes = await owner.get(`/api/projects/${made.body.id}/scenes`).expect(200);
-    const [scene] = scenes.body.map((row: unknown) => SceneSummaryDto.parse(row));
+    const [scene] = z.tuple([SceneSummaryDto]).parse(scenes.body);
     expect(scene.document).toEqual(example.document);
     expect(scene.widthMm).toBeGreaterThan(0);
     const unknown = await engineer.post("/api/projects").send({ name: "No", example: "../../etc" });
@@ -35,14 +35,11 @@ describe("projects", () => {
   });
 
   it("give an example's picture as one", async () => {
-    const [example] = (await engineer.get("/api/examples")).body as { name: string }[];
-    const picture = await engineer.get(`/api/examples/${example?.name ?? ""}/thumbnail.png`).expect(200);
+    const [example] = z.tuple([ExampleDto], ExampleDto).parse((await engineer.get("/api/examples")).body);
+    const picture = await engineer.get(`/api/examples/${example.name}/thumbnail.png`).expect(200);
     expect(picture.headers["content-type"]).toBe("image/png");
     await engineer.get("/api/examples/..%2f..%2fbackend/thumbnail.png").expect(404);
-    await server
-      .stranger()
-      .get(`/api/examples/${example?.name ?? ""}/thumbnail.png`)
-      .expect(401);
+    await server.stranger().get(`/api/examples/${example.name}/thumbnail.png`).expect(401);
   });
 
   it("are renamed by engineers, deleted by the owner alone, and tell what was done", async () => {
@@ -53,7 +50,7 @@ describe("projects", () => {
     await engineer.patch(path).send({ notes: "why" }).expect(200);
     await engineer.post(`${path}/scenes`).send({ name: "Sheet" }).expect(201);
     const activity = await owner.get(`${path}/activity`).expect(200);
-    expect(activity.body.map(({ sentence }: { sentence: string }) => sentence)).toEqual([
+    expect(column(activity, "sentence")).toEqual([
       'added the scene "Sheet"',
       'renamed the project from "Old" to "New"',
       'made the project "Old"',
@@ -66,11 +63,6 @@ describe("projects", () => {
 
   it("tell the workspace's members", async () => {
     const members = await engineer.get("/api/workspace/members").expect(200);
-    expect(members.body.map(({ role }: { role: string }) => role).sort()).toEqual([
-      "engineer",
-      "manager",
-      "owner",
-      "reviewer",
-    ]);
+    expect(column(members, "role").sort()).toEqual(["engineer", "manager", "owner", "reviewer"]);
   });
 });

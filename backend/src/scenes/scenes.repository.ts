@@ -3,6 +3,7 @@ import { and, asc, desc, eq, inArray, sql } from "drizzle-orm";
 import type { PersonDto } from "../contract/people.js";
 import type { RunState } from "../contract/runs.js";
 import { DATABASE, type Database } from "../database/database.js";
+import { firstRow, writtenRow } from "../database/rows.js";
 import { people, projects, runs, sceneRevisions, scenes } from "../database/schema/index.js";
 import type { Judged } from "./judge.js";
 
@@ -61,25 +62,25 @@ export class ScenesRepository {
 
   /** The latest revision, or null for a scene that the workspace does not have. */
   async find(workspaceId: string, sceneId: string): Promise<SceneRecord | null> {
-    const [row] = await this.revisions().where(
+    const rows = await this.revisions().where(
       and(
         eq(scenes.id, sceneId),
         eq(projects.workspaceId, workspaceId),
         eq(sceneRevisions.revision, scenes.revision),
       ),
     );
-    return row ?? null;
+    return firstRow(rows) ?? null;
   }
 
   async findRevision(workspaceId: string, sceneId: string, revision: number): Promise<SceneRecord | null> {
-    const [row] = await this.revisions().where(
+    const rows = await this.revisions().where(
       and(
         eq(scenes.id, sceneId),
         eq(projects.workspaceId, workspaceId),
         eq(sceneRevisions.revision, revision),
       ),
     );
-    return row ?? null;
+    return firstRow(rows) ?? null;
   }
 
   /** Newest first, without the documents. */
@@ -115,11 +116,11 @@ export class ScenesRepository {
 
   /** Adds a scene with its first revision, best inside an open transaction. */
   async create(db: Database, projectId: string, judged: Judged, personId: string): Promise<string> {
-    const [scene] = await db
+    const made = await db
       .insert(scenes)
       .values({ projectId, name: judged.name, updatedBy: personId })
       .returning({ id: scenes.id });
-    if (scene === undefined) throw new Error("The database returned no id for a new scene.");
+    const scene = writtenRow(made, "scene");
     await this.keep(db, scene.id, 1, judged, personId);
     return scene.id;
   }

@@ -1,5 +1,5 @@
 import { afterAll, beforeAll, describe, expect, it } from "vitest";
-import { startTestApp, type TestApp } from "../common/testing/test-app.js";
+import { column, startTestApp, type TestApp } from "../common/testing/test-app.js";
 import { emptyScene } from "./empty-scene.js";
 
 type Agent = Awaited<ReturnType<TestApp["as"]>>;
@@ -35,7 +35,7 @@ describe("scenes and their revisions", () => {
     expect(saved.body).toMatchObject({ revision: 2, document: { notes: "wider slot" }, name: "First" });
     expect(saved.body.sha256).not.toBe(scene.sha256);
     const revisions = await manager.get(`/api/scenes/${scene.id}/revisions`).expect(200);
-    expect(revisions.body.map((row: { revision: number }) => row.revision)).toEqual([2, 1]);
+    expect(column(revisions, "revision")).toEqual([2, 1]);
     const first = await manager.get(`/api/scenes/${scene.id}/revisions/1`).expect(200);
     expect(first.body.document).toEqual(scene.document);
     expect(first.body.sha256).toBe(scene.sha256);
@@ -70,9 +70,7 @@ describe("scenes and their revisions", () => {
       .send({ name: "Contended, mine", document: mine })
       .expect(201);
     expect(copy.body).toMatchObject({ name: "Contended, mine", revision: 1, document: { notes: "mine" } });
-    const names = (await engineer.get(`/api/projects/${projectId}/scenes`).expect(200)).body.map(
-      (row: { name: string }) => row.name,
-    );
+    const names = column(await engineer.get(`/api/projects/${projectId}/scenes`).expect(200), "name");
     expect(names).toEqual(expect.arrayContaining(["Contended", "Contended, mine"]));
   });
 
@@ -104,9 +102,7 @@ describe("scenes and their revisions", () => {
     const imported = await engineer.post(`/api/projects/${projectId}/scenes`).send({ document: unfinished });
     expect(imported.status).toBe(422);
     expect(imported.body.code).toBe("scene-refused");
-    expect(imported.body.problems.map((problem: { path: string }) => problem.path)).toEqual(
-      expect.arrayContaining(["background"]),
-    );
+    expect(column({ body: imported.body.problems }, "path")).toEqual(expect.arrayContaining(["background"]));
     expect(imported.body.problems.length).toBeGreaterThan(1);
   });
 
@@ -115,9 +111,7 @@ describe("scenes and their revisions", () => {
     const broken = { ...scene.document, sektion: 1, polarization: "TMx" };
     const saved = await engineer.put(`/api/scenes/${scene.id}`).send({ baseRevision: 1, document: broken });
     expect(saved.status).toBe(422);
-    expect(saved.body.problems.map((problem: { path: string }) => problem.path).join()).toContain(
-      "polarization",
-    );
+    expect(column({ body: saved.body.problems }, "path").join()).toContain("polarization");
     expect((await engineer.get(`/api/scenes/${scene.id}`)).body.revision).toBe(1);
   });
 

@@ -4,6 +4,7 @@ import type { Actor } from "../common/actor.js";
 import type { MemberDto } from "../contract/people.js";
 import type { MemberRole } from "../contract/permissions.js";
 import { DATABASE, type Database } from "../database/database.js";
+import { firstRow } from "../database/rows.js";
 import { members, people, workspaces } from "../database/schema/index.js";
 
 @Injectable()
@@ -12,13 +13,14 @@ export class MembersRepository {
 
   /** The workspace that a person joined first, and their role there. */
   async firstOf(personId: string): Promise<Pick<Actor, "workspace" | "role"> | null> {
-    const [row] = await this.db
+    const rows = await this.db
       .select({ id: workspaces.id, name: workspaces.name, role: members.role })
       .from(members)
       .innerJoin(workspaces, eq(workspaces.id, members.workspaceId))
       .where(eq(members.personId, personId))
       .orderBy(asc(members.joinedAt), asc(workspaces.id))
       .limit(1);
+    const row = firstRow(rows);
     return row === undefined ? null : { workspace: { id: row.id, name: row.name }, role: row.role };
   }
 

@@ -4,6 +4,7 @@ import { tmpdir } from "node:os";
 import { join } from "node:path";
 import type { NestExpressApplication } from "@nestjs/platform-express";
 import request from "supertest";
+import { z } from "zod";
 import { createApp } from "../../app.js";
 import type { Config } from "../../config/config.js";
 import type { MemberRole } from "../../contract/permissions.js";
@@ -60,3 +61,10 @@ export async function startTestApp(
     },
   };
 }
+
+/** One field of every row of an answer's list. */
+export const column = (answer: { body: unknown }, key: string): unknown[] =>
+  z
+    .array(z.looseObject({}))
+    .parse(answer.body)
+    .map((row) => row[key]);
