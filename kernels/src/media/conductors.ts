@@ -23,6 +23,13 @@ export type ConductorKind = "none" | "f" | "g";
 const TIE = 1e-6;
 /** Lines of F's points are probed this much to either side, so that surfaces on them count. */
 const SIDE_STEP = 1e-5;
+/**
+ * Walls are moved by this much (in cells): one that ran exactly through a point of F would leave open to which side the point belongs,
+ * and let the field through there.
+ */
+const WALL_SHIFT = [1.3e-6, 2.1e-6] as const;
+/** How near an end of a wall (in cells) must be to an edge of the section to lie on it. */
+const ON_EDGE = 1e-5;
 
 interface Line {
   /** Columns (or rows) of F along the line, and the position of number i in cells. */
@@ -176,7 +183,9 @@ export class ConductorMap {
   private drawWall(points: readonly Point[]): void {
     const { widthMm, heightMm } = this.input;
     const { nx, ny } = this.lattice;
-    const inCells = points.map(([x, y]): Point => [(x / widthMm) * nx, (y / heightMm) * ny]);
+    const inCells = points.map(
+      ([x, y]): Point => [(x / widthMm) * nx + WALL_SHIFT[0], (y / heightMm) * ny + WALL_SHIFT[1]],
+    );
     for (let i = 1; i < inCells.length; i += 1) this.drawSegment(inCells[i - 1], inCells[i]);
     this.continueOutward(inCells[0]);
     this.continueOutward(inCells[inCells.length - 1]);
@@ -186,11 +195,12 @@ export class ConductorMap {
   private continueOutward([x, y]: Point): void {
     const { lattice } = this;
     const { nx, ny, edges, layers } = lattice;
-    if (Math.abs(x) < TIE && edges.left === "absorbing") this.drawSegment([x, y], [-layers.left, y]);
-    if (Math.abs(x - nx) < TIE && edges.right === "absorbing")
+    if (Math.abs(x) < ON_EDGE && edges.left === "absorbing") this.drawSegment([x, y], [-layers.left, y]);
+    if (Math.abs(x - nx) < ON_EDGE && edges.right === "absorbing")
       this.drawSegment([x, y], [nx + layers.right, y]);
-    if (Math.abs(y) < TIE && edges.bottom === "absorbing") this.drawSegment([x, y], [x, -layers.bottom]);
-    if (Math.abs(y - ny) < TIE && edges.top === "absorbing") this.drawSegment([x, y], [x, ny + layers.top]);
+    if (Math.abs(y) < ON_EDGE && edges.bottom === "absorbing") this.drawSegment([x, y], [x, -layers.bottom]);
+    if (Math.abs(y - ny) < ON_EDGE && edges.top === "absorbing")
+      this.drawSegment([x, y], [x, ny + layers.top]);
   }
 
   private drawSegment(a: Point, b: Point): void {
@@ -205,8 +215,8 @@ export class ConductorMap {
   private crossLines(a: Point, b: Point, axis: "x" | "y"): void {
     const along = this.lineOf(axis);
     const across = this.lineOf(axis === "x" ? "y" : "x");
-    const low = Math.min(a[0], b[0]) - TIE;
-    const high = Math.max(a[0], b[0]) + TIE;
+    const low = Math.min(a[0], b[0]) - ON_EDGE;
+    const high = Math.max(a[0], b[0]) + ON_EDGE;
     if (Math.abs(b[0] - a[0]) < TIE) return;
     const acrossOrigin = across.position(0);
     const alongOrigin = along.position(0);
@@ -214,7 +224,7 @@ export class ConductorMap {
     const last = Math.min(across.count, Math.floor(high - acrossOrigin));
     for (let n = first; n <= last; n += 1) {
       const share = Math.min(1, Math.max(0, (across.position(n) - a[0]) / (b[0] - a[0])));
-      const at = a[1] + (b[1] - a[1]) * share - alongOrigin + TIE;
+      const at = a[1] + (b[1] - a[1]) * share - alongOrigin;
       const i = this.wallFixesF ? Math.round(at) : Math.floor(at);
       if (i < (this.wallFixesF ? 1 : 0) || i > along.count) continue;
       if (axis === "y") this.flag(i, n, this.wallFixesF ? FIXED_F : FIXED_GX);
