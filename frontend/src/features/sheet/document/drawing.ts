@@ -8,7 +8,7 @@ import {
   type ResolvedProbe,
   type Scene,
 } from "@heddle/kernels/scene";
-import { type ItemOf, type ItemRef, makeRef, type PickableList, splitRef } from "./refs";
+import { byId, type ItemOf, type ItemRef, makeRef, type PickableList, splitRef } from "./refs";
 import { type ParameterValues, readLength, readParameters } from "./lengths";
 
 export type DrawnSource = Resolved<Scene["sources"][number]>;
@@ -157,5 +157,5 @@ export function drawingOf(scene: Scene, previous?: Drawing): Drawing {
 export function drawnItem(drawing: Drawing, ref: ItemRef): DrawnItem | null {
   const { list, id } = splitRef(ref);
   const items: readonly DrawnItem[] = drawing[list];
-  return items.find((item) => item.id === id) ?? null;
+  return byId(items).get(id) ?? null;
 }

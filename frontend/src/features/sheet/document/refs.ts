@@ -25,16 +25,29 @@ export function splitRef(ref: ItemRef): { list: PickableList; id: string } {
   return { list, id: ref.slice(colon + 1) };
 }
 
+const indices = new WeakMap<readonly { id: string }[], ReadonlyMap<string, { id: string }>>();
+
+/** The items of a list by id. Kept per list, for lists are replaced and never changed in place. */
+export function byId<T extends { id: string }>(items: readonly T[]): ReadonlyMap<string, T> {
+  let index = indices.get(items);
+  if (index === undefined) {
+    index = new Map(items.map((item) => [item.id, item]));
+    indices.set(items, index);
+  }
+  // The index was built from these very items.
+  return index as ReadonlyMap<string, T>;
+}
+
 /** The item that `ref` names, or undefined where the scene no longer has it. */
 export function findItem(scene: Scene, ref: ItemRef): Item | undefined {
   const { list, id } = splitRef(ref);
   const items: readonly Item[] = scene[list];
-  return items.find((item) => item.id === id);
+  return byId(items).get(id);
 }
 
 export const findPatch = (scene: Scene, ref: ItemRef): Patch | undefined => {
   const { list, id } = splitRef(ref);
-  return list === "paint" ? scene.paint.find((patch) => patch.id === id) : undefined;
+  return list === "paint" ? byId(scene.paint).get(id) : undefined;
 };
 
 /** Every item of the scene, in painting order and then sources, ports, probes. */

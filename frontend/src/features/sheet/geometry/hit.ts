@@ -1,5 +1,5 @@
 import type { Drawing } from "../document/drawing";
-import { type ItemRef, makeRef } from "../document/refs";
+import { byId, type ItemRef, makeRef, splitRef } from "../document/refs";
 import { boxHolds, boxOf, distance, distanceToSegment, type BoxMm, type Xy } from "./points";
 import { patchBox, patchCovers, portBox, probeBox, rectangleCorners } from "./shapes";
 
@@ -33,21 +33,25 @@ export function itemAt(drawing: Drawing, at: Xy, reachMm: number): ItemRef | nul
 
 /** The box of an item on the drawing; null where it has no place or no value. */
 export function itemBox(drawing: Drawing, ref: ItemRef): BoxMm | null {
-  const [list, id] = [ref.slice(0, ref.indexOf(":")), ref.slice(ref.indexOf(":") + 1)];
-  if (list === "paint") {
-    const patch = drawing.paint.find((candidate) => candidate.id === id);
-    return patch === undefined ? null : patchBox(patch);
+  const { list, id } = splitRef(ref);
+  switch (list) {
+    case "paint": {
+      const patch = byId(drawing.paint).get(id);
+      return patch === undefined ? null : patchBox(patch);
+    }
+    case "probes": {
+      const probe = byId(drawing.probes).get(id);
+      return probe === undefined ? null : probeBox(probe);
+    }
+    case "ports": {
+      const port = byId(drawing.ports).get(id);
+      return port === undefined ? null : portBox(port);
+    }
+    case "sources": {
+      const source = byId(drawing.sources).get(id);
+      return source?.kind === "line" ? boxOf([[source.x, source.y]]) : null;
+    }
   }
-  if (list === "probes") {
-    const probe = drawing.probes.find((candidate) => candidate.id === id);
-    return probe === undefined ? null : probeBox(probe);
-  }
-  if (list === "ports") {
-    const port = drawing.ports.find((candidate) => candidate.id === id);
-    return port === undefined ? null : portBox(port);
-  }
-  const source = drawing.sources.find((candidate) => candidate.id === id);
-  return source?.kind === "line" ? boxOf([[source.x, source.y]]) : null;
 }
 
 /** Every item that lies wholly within the box. */

@@ -100,6 +100,12 @@ export const boxHolds = (outer: BoxMm, inner: BoxMm): boolean =>
 
 export const boxCentre = (box: BoxMm): Xy => [(box.left + box.right) / 2, (box.bottom + box.top) / 2];
 
+/** Rounds to the power of ten below a quarter of a pixel: what the hand could not have aimed at is left out. */
+export function roundToPixel(mm: number, pxPerMm: number): number {
+  const quantum = 10 ** Math.max(-4, Math.floor(Math.log10(0.25 / pxPerMm)));
+  return roundMm(Math.round(mm / quantum) * quantum);
+}
+
 /** Rounds a length to 0.1 µm, so that pointer arithmetic leaves no tails like 12.300000000000001. */
 export const roundMm = (mm: number): number => {
   const rounded = Math.round(mm * 1e4) / 1e4;

@@ -110,11 +110,7 @@ export function drawToolPicture(pen: Pen, picture: ToolPicture, state: SheetStat
     strokeOnHalo(pen, 1.3, palette.accent);
     const [a, b] = [points.at(-2), points.at(-1)];
     if (a !== undefined && b !== undefined)
-      drawDimension(
-        pen,
-        { from: a, to: b, away: [0, 0], text: measureInWords({ from: a, to: b }).split(",")[0] ?? "" },
-        0,
-      );
+      drawDimension(pen, { from: a, to: b, away: [0, 0], text: measureParts({ from: a, to: b }).length }, 0);
   }
   if (picture.measure !== undefined) {
     const { from, to } = picture.measure;

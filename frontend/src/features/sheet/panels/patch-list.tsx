@@ -1,4 +1,4 @@
-import { type KeyboardEvent, useId, useRef } from "react";
+import { type KeyboardEvent, useDeferredValue, useId, useRef } from "react";
 import { deleteSelection } from "../document/commands";
 import type { SheetEditor } from "../document/editor";
 import { allRefs, type ItemRef } from "../document/refs";
@@ -10,7 +10,8 @@ const MOST_ROWS = 300;
 
 /** All that is drawn, last painted first: the way to the drawing for those who do not see it or have no pointer. */
 export function PatchList({ editor }: { editor: SheetEditor }) {
-  const drawing = useSheet(editor, (state) => state.drawing);
+  // A gesture under way need not wait for its rows to be written anew.
+  const drawing = useDeferredValue(useSheet(editor, (state) => state.drawing));
   const selection = useSheet(editor, (state) => state.selection);
   const list = useRef<HTMLUListElement>(null);
   const titleId = useId();

@@ -1,7 +1,7 @@
 import type { Patch } from "@heddle/kernels/scene";
 import { figure } from "../camera/lengths-in-words";
 import type { Drawing } from "../document/drawing";
-import { findItem, type ItemRef, splitRef } from "../document/refs";
+import { byId, findItem, type ItemRef, splitRef } from "../document/refs";
 import type { SheetState } from "../document/store";
 import { sourceLabel } from "../linework/draw-marks";
 
@@ -33,7 +33,7 @@ const sizeInWords = (patch: Drawing["paint"][number]): string => {
 
 /** What a patch is, how large and of what: "Rectangle, 200 × 12, Rubber sheet". */
 export function patchInWords(patch: Patch, drawing: Drawing): { kind: string; size: string; medium: string } {
-  const drawn = drawing.paint.find((candidate) => candidate.id === patch.id);
+  const drawn = byId(drawing.paint).get(patch.id);
   const medium =
     "medium" in patch
       ? (drawing.mediaById.get(patch.medium)?.name ?? `unknown medium "${patch.medium}"`)
@@ -57,7 +57,7 @@ export function itemInWords(ref: ItemRef, drawing: Drawing): string {
     return `${kind} ${id}, ${size}, ${medium}`;
   }
   if (list === "sources") {
-    const source = drawing.sources.find((candidate) => candidate.id === id);
+    const source = byId(drawing.sources).get(id);
     return source === undefined
       ? `Source ${id}`
       : `Source ${sourceLabel(source, drawing.scene.polarization)}`;

@@ -8,7 +8,7 @@ import {
   useRef,
   useState,
 } from "react";
-import { type PointMm, toMm, ViewportContext } from "../../../hooks/viewport";
+import { type PointMm, type PointPx, toMm, ViewportContext } from "../../../hooks/viewport";
 import type { Insets } from "../camera/camera";
 import { pressKey } from "../document/keyboard";
 import type { SheetEditor } from "../document/editor";
@@ -98,13 +98,8 @@ export function SheetSurface(props: SheetSurfaceProps) {
     const onWheel = (event: WheelEvent): void => {
       event.preventDefault();
       const lines = event.deltaMode === WheelEvent.DOM_DELTA_LINE ? 16 : 1;
-      const bounds = element.getBoundingClientRect();
       if (event.shiftKey) editor.pan(-(event.deltaX + event.deltaY) * lines, 0);
-      else
-        editor.zoom(Math.exp(-event.deltaY * lines * 0.0016), {
-          xPx: event.clientX - bounds.left,
-          yPx: event.clientY - bounds.top,
-        });
+      else editor.zoom(Math.exp(-event.deltaY * lines * 0.0016), placeOn(element, event));
     };
     const onBlur = (): void => {
       editor.tools.releaseSpace();
@@ -120,9 +115,8 @@ export function SheetSurface(props: SheetSurfaceProps) {
   useBodyKeys(editor);
 
   const raw = useCallback((event: ReactPointerEvent | PointerEvent | React.MouseEvent): RawPointer => {
-    const bounds = surface.current?.getBoundingClientRect();
     return {
-      px: { xPx: event.clientX - (bounds?.left ?? 0), yPx: event.clientY - (bounds?.top ?? 0) },
+      px: placeOn(surface.current, event),
       button: event.button,
       shift: event.shiftKey,
       alt: event.altKey,
@@ -202,6 +196,15 @@ export function SheetSurface(props: SheetSurfaceProps) {
       </p>
     </div>
   );
+}
+
+/** The pointer's place on the drawing surface, within its frame. */
+function placeOn(element: HTMLElement | null, event: { clientX: number; clientY: number }): PointPx {
+  const bounds = element?.getBoundingClientRect();
+  return {
+    xPx: event.clientX - (bounds?.left ?? 0) - (element?.clientLeft ?? 0),
+    yPx: event.clientY - (bounds?.top ?? 0) - (element?.clientTop ?? 0),
+  };
 }
 
 export const keyOf = (event: {

@@ -2,7 +2,7 @@ import { toMm } from "../../../hooks/viewport";
 import { gridStepMm } from "../camera/ticks";
 import type { SheetStore, ToolId } from "../document/store";
 import { snapPoint, type Snapped } from "../geometry/snap";
-import { roundMm, type Xy } from "../geometry/points";
+import { roundToPixel, type Xy } from "../geometry/points";
 import { brushTool } from "./brush/brush-tool";
 import { ellipseTool, rectangleTool } from "./box/box-tools";
 import { measureTool } from "./measure/measure-tool";
@@ -161,7 +161,10 @@ export class Toolbox implements ToolMachine {
 
   #snapped(at: Xy, off: boolean): Snapped {
     const { snapping, drawing, selection } = this.store.state;
-    if (off || !snapping) return { at: [roundMm(at[0]), roundMm(at[1])], reason: null };
+    if (off || !snapping) {
+      const { pxPerMm } = this.store.view;
+      return { at: [roundToPixel(at[0], pxPerMm), roundToPixel(at[1], pxPerMm)], reason: null };
+    }
     return snapPoint(drawing, at, {
       gridMm: this.gridMm,
       reachMm: this.reachMm,

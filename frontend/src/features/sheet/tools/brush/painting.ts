@@ -1,7 +1,7 @@
 import type { Length } from "@heddle/kernels/scene";
 import { addPatch, changeItems, freeId } from "../../document/edits";
 import { makeRef } from "../../document/refs";
-import { distance, roundMm, type Xy } from "../../geometry/points";
+import { distance, roundToPixel, type Xy } from "../../geometry/points";
 import { simplifyPolyline } from "../../geometry/simplify";
 import { type SheetPointer, type ToolMachine, type ToolPicture, ToolState } from "../tool";
 
@@ -34,7 +34,7 @@ export class Painting extends ToolState {
         id: this.#id,
         medium,
         widthMm: brushWidthMm,
-        points: this.#points.map(asWritten),
+        points: this.#asWritten(),
       }),
     );
   }
@@ -68,13 +68,16 @@ export class Painting extends ToolState {
   }
 
   #write(): void {
-    const points = this.#points.map(asWritten);
+    const points = this.#asWritten();
     this.store.update((scene) =>
       changeItems(scene, [makeRef("paint", this.#id)], (item) =>
         "points" in item && item.kind === "stroke" ? { ...item, points } : item,
       ),
     );
   }
-}
 
-const asWritten = ([x, y]: Xy): [Length, Length] => [roundMm(x), roundMm(y)];
+  #asWritten(): [Length, Length][] {
+    const { pxPerMm } = this.store.view;
+    return this.#points.map(([x, y]) => [roundToPixel(x, pxPerMm), roundToPixel(y, pxPerMm)]);
+  }
+}
