@@ -45,14 +45,16 @@ function makeStores() {
   const traces = createTraceStore();
   let shownRun: string | null = null;
   const sinks: RunSinks = {
-    onFrame: slot.put,
+    onFrame: (frame, settle) => {
+      slot.put(frame, settle);
+    },
     onTracesFromStart: (runId, chunks) => {
       // Another run's field does not stand for this one's.
       if (runId !== shownRun) slot.clear();
       shownRun = runId;
       traces.reset(runId, chunks);
     },
-    onTraces: traces.append,
+    onTraces: (runId, chunks) => traces.append(runId, chunks),
   };
   return { slot, traces, sinks, hover: createHoverStore() };
 }

@@ -1,7 +1,7 @@
 import { isOver } from "@heddle/backend/contract";
 import Button from "@mui/material/Button";
 import Slider from "@mui/material/Slider";
-import { useEffect, useState } from "react";
+import { useState } from "react";
 import { PACE_POSITIONS, paceAt, paceWords, positionOf } from "./pace";
 import styles from "./runs.module.css";
 import type { RunCost } from "./run-words";
@@ -19,6 +19,7 @@ export interface RunPanelProps {
 /** Run, pause, step, stop, pace, and how far the run is. */
 export function RunPanel({ handle, refusal, cost }: RunPanelProps) {
   const { run, connection, notice } = handle;
+  const failure = run?.message ?? null;
   return (
     <section className={styles.panel} aria-label="Run">
       {refusal === null ? (
@@ -31,7 +32,7 @@ export function RunPanel({ handle, refusal, cost }: RunPanelProps) {
       )}
       <div aria-live="polite">
         {connection.kind === "lost" && <p className={styles.problem}>{connection.sentence}</p>}
-        {run?.message != null && <p className={styles.problem}>{run.message}</p>}
+        {failure !== null && <p className={styles.problem}>{failure}</p>}
         {notice !== null && (
           <div className={styles.problem}>
             <p>{notice.sentence}</p>
@@ -169,12 +170,9 @@ function Buttons({ handle }: { handle: RunHandle }) {
 }
 
 function Pace({ pace, onPace }: { pace: number | null; onPace: (pace: number | null) => void }) {
-  const [position, setPosition] = useState(() => positionOf(pace));
   // While the thumb is held the slider is the person's; between, it shows the run's pace.
-  const [held, setHeld] = useState(false);
-  useEffect(() => {
-    if (!held) setPosition(positionOf(pace));
-  }, [pace, held]);
+  const [held, setHeld] = useState<number | null>(null);
+  const position = held ?? positionOf(pace);
   return (
     <div className={styles.pace}>
       <div className={styles.paceHead}>
@@ -189,11 +187,10 @@ function Pace({ pace, onPace }: { pace: number | null; onPace: (pace: number | n
         aria-labelledby="pace-label"
         getAriaValueText={(value) => paceWords(paceAt(value))}
         onChange={(_event, value) => {
-          setHeld(true);
-          setPosition(value);
+          setHeld(value);
         }}
         onChangeCommitted={(_event, value) => {
-          setHeld(false);
+          setHeld(null);
           onPace(paceAt(value));
         }}
       />

@@ -1,7 +1,7 @@
 import type { ErrorDto, RunDto, TraceEvent } from "@heddle/backend/contract";
 import type { Frame } from "@heddle/kernels/frames";
 import { describe, expect, it, vi } from "vitest";
-import type { Connection, StreamSocket } from "./run-stream";
+import type { Connection } from "./run-stream";
 import { createRunStream } from "./run-stream";
 
 const A = "11111111-1111-4111-8111-111111111111";
@@ -50,7 +50,7 @@ class FakeSocket {
 
 const run = (id: string): RunDto => ({ id, state: "running" }) as RunDto;
 const decode = (message: Uint8Array): Frame => {
-  const sequence = message[0];
+  const sequence = message.at(0);
   if (sequence === undefined) throw new RangeError("An empty message is no frame.");
   return {
     quantity: "Ez",
@@ -72,7 +72,7 @@ function setUp(onTraces = (): boolean => true) {
   const refusals: ErrorDto[] = [];
   const resets: [string, TraceEvent["traces"]][] = [];
   const states: RunDto[] = [];
-  const stream = createRunStream(socket as unknown as StreamSocket, decode, {
+  const stream = createRunStream(socket, decode, {
     onFrame: (_frame, settle) => settles.push(settle),
     onTracesFromStart: (runId, traces) => resets.push([runId, traces]),
     onTraces,
@@ -160,7 +160,7 @@ describe("run stream", () => {
   it("drops the answer for a run that is no longer watched and joins the wanted one", () => {
     const { socket, stream, resets } = setUp();
     stream.watch(A);
-    const first = socket.of("join")[0];
+    const first = socket.of("join").at(0);
     stream.watch(B);
     first?.answer?.({ ok: true, run: run(A), traces: [] });
     expect(resets).toHaveLength(0);

@@ -71,12 +71,13 @@ export function useRun({ sceneId, sinks, view, save }: UseRunOptions): RunHandle
   const client = useQueryClient();
   const query = useRuns(sceneId);
   const runs = useMemo(() => query.data ?? [], [query.data]);
-  const run = runs[0] ?? null;
+  const run = runs.at(0) ?? null;
   const runId = run?.id ?? null;
   const [connection, setConnection] = useState<Connection>({ kind: "connecting" });
   const [notice, setNotice] = useState<RunNotice | null>(null);
   const [busy, setBusy] = useState(false);
-  const [fieldGone, setFieldGone] = useState(false);
+  /** The run whose field is no longer in the server's memory. */
+  const [goneRun, setGoneRun] = useState<string | null>(null);
   const [chosenPace, setChosenPace] = useState<number | null>(null);
   const stream = useRef<RunStream | null>(null);
   const wanted = useRef({ runId, view });
@@ -95,7 +96,7 @@ export function useRun({ sceneId, sinks, view, save }: UseRunOptions): RunHandle
       onRefused: (error, during) => {
         // An ended run keeps no field for long; the sheet then says so itself.
         if (during === "view" && error.code === "wrong-state") {
-          setFieldGone(true);
+          setGoneRun(wanted.current.runId);
           return;
         }
         setNotice({ sentence: error.message, problems: error.problems ?? [] });
@@ -112,27 +113,29 @@ export function useRun({ sceneId, sinks, view, save }: UseRunOptions): RunHandle
 
   useEffect(() => {
     wanted.current = { runId, view };
-    setFieldGone(false);
     stream.current?.view(view);
     stream.current?.watch(runId);
   }, [runId, view]);
 
   const acting = useRef(false);
-  const act = useCallback(async (action: () => Promise<void>) => {
-    // A second click while the first is on its way asks for nothing new.
-    if (acting.current) return;
-    acting.current = true;
-    setBusy(true);
-    setNotice(null);
-    try {
-      await action();
-    } catch (error) {
-      setNotice(noticeOf(error));
-    } finally {
-      acting.current = false;
-      setBusy(false);
-    }
-  }, []);
+  const act = useCallback(
+    async (action: () => Promise<void>) => {
+      // A second click while the first is on its way asks for nothing new.
+      if (acting.current) return;
+      acting.current = true;
+      setBusy(true);
+      setNotice(null);
+      try {
+        await action();
+      } catch (error) {
+        setNotice(noticeOf(error));
+      } finally {
+        acting.current = false;
+        setBusy(false);
+      }
+    },
+    [setNotice, setBusy],
+  );
 
   const begin = useCallback(
     async (paused: boolean) => {
@@ -178,7 +181,7 @@ export function useRun({ sceneId, sinks, view, save }: UseRunOptions): RunHandle
       setChosenPace(pace);
       if (live) command({ kind: "pace", picosecondsPerSecond: pace });
     },
-    [live, command],
+    [live, command, setChosenPace],
   );
 
   const edits = useMemo(
@@ -193,9 +196,14 @@ export function useRun({ sceneId, sinks, view, save }: UseRunOptions): RunHandle
           setNotice(noticeOf(error));
         }
       }, EDIT_INTERVAL_MS),
-    [],
+    [setNotice],
   );
-  useEffect(() => edits.cancel, [edits]);
+  useEffect(
+    () => () => {
+      edits.cancel();
+    },
+    [edits],
+  );
 
   const edit = useCallback(
     (document: Record<string, unknown>) => {
@@ -209,12 +217,12 @@ export function useRun({ sceneId, sinks, view, save }: UseRunOptions): RunHandle
     runs,
     loading: query.isPending,
     connection,
-    fieldGone,
+    fieldGone: runId !== null && goneRun === runId,
     busy,
     notice: notice ?? (query.isError ? noticeOf(query.error) : null),
-    dismissNotice: useCallback(() => {
+    dismissNotice: () => {
       setNotice(null);
-    }, []),
+    },
     pace: live ? run.pacePsPerSecond : chosenPace,
     start,
     runCleanly,

@@ -54,7 +54,8 @@ export function SpectrumPanel({ result, previous, band, nameOf, selected, empty 
     range === null
       ? 0
       : PAD.top + ((range.high - dB) / (range.high - range.low)) * (height - PAD.top - PAD.bottom);
-  const shown = hoverGHz ?? curves[0]?.GHz[strongest(curves[0])] ?? null;
+  const first = curves.at(0);
+  const shown = hoverGHz ?? (first === undefined ? null : (first.GHz.at(strongest(first)) ?? null));
   const units = [...new Set(curves.map((curve) => curve.unit))];
   const completed = curves.some((curve) => curve.completed);
   return (
@@ -225,7 +226,7 @@ function Curve({ curve, x, y, className, dash }: CurveProps) {
     const level = curve.dB[index] ?? null;
     return level === null ? [] : [{ x: x(GHz), y: y(level), index }];
   });
-  const only = points[0];
+  const only = points.at(0);
   if (points.length === 1 && only !== undefined) {
     return (
       <g className={className}>

@@ -11,7 +11,7 @@ const chunk = (from: number, values: number[], probe = "p1") => ({
 });
 
 const valuesOf = (store: ReturnType<typeof createTraceStore>, index = 0): number[] => {
-  const trace = store.traces()[index];
+  const trace = store.traces().at(index);
   return trace === undefined ? [] : [...trace.values.subarray(0, trace.length)];
 };
 
