@@ -38,7 +38,8 @@ export interface RunningServer {
 
 export interface Client {
   cookie: string;
-  /** Sends JSON and gives status and parsed body. */
+  /** Sends JSON and gives status and parsed body; the caller says what it expects. */
+  // eslint-disable-next-line @typescript-eslint/no-unnecessary-type-parameters -- the body's type is the caller's claim
   send: <T = unknown>(method: string, path: string, body?: unknown) => Promise<{ status: number; body: T }>;
   /** Makes a project with the document as its scene. */
   scene: (document: object) => Promise<SceneDto>;
@@ -94,13 +95,8 @@ export async function startServer(options: ServerOptions = {}): Promise<RunningS
 
 /** A setting of whoever runs the tests must not decide where the tests write. */
 function withoutOurs(environment: NodeJS.ProcessEnv): NodeJS.ProcessEnv {
-  const {
-    APP_URL: _url,
-    DATABASE_URL: _database,
-    DEMO: _demo,
-    NODE_OPTIONS: _options,
-    ...rest
-  } = environment;
+  const rest = { ...environment };
+  for (const name of ["APP_URL", "DATABASE_URL", "DEMO", "NODE_OPTIONS"]) Reflect.deleteProperty(rest, name);
   return rest;
 }
 
@@ -113,7 +109,7 @@ function ready(child: ChildProcess, errors: () => string): Promise<string> {
     }, READY_WITHIN_MS);
     child.stdout?.setEncoding("utf8").on("data", (text: string) => {
       said += text;
-      const [, url] = READY.exec(said) ?? [];
+      const url = READY.exec(said)?.at(1);
       if (url === undefined) return;
       clearTimeout(timer);
       resolve(url);
@@ -138,6 +134,7 @@ async function signIn(url: string, role: MemberRole): Promise<Client> {
     .map((one) => one.split(";")[0])
     .join("; ");
 
+  // eslint-disable-next-line @typescript-eslint/no-unnecessary-type-parameters -- see Client
   const send: Client["send"] = async <T>(method: string, path: string, body?: unknown) => {
     const response = await fetch(`${url}${path}`, {
       method,

@@ -49,7 +49,7 @@ export class ResultsService {
   private async *pieces(text: string): AsyncGenerator<string> {
     let at = 0;
     for (const reference of text.matchAll(REFERENCE)) {
-      const sha256 = reference[1] ?? "";
+      const sha256 = reference.at(1) ?? "";
       yield text.slice(at, reference.index);
       yield* this.values(sha256);
       at = reference.index + reference[0].length;

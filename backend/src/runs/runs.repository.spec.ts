@@ -25,7 +25,8 @@ for (const { driver, there } of drivers) {
     let repository: RunsRepository;
     let workspaceId: string;
     let sceneId: string;
-    const persons: Record<string, string> = {};
+    const persons = new Map<string, string>();
+    const idOf = (name: string): string => persons.get(name) ?? "nobody";
     const server = randomUUID();
 
     beforeAll(async () => {
@@ -35,16 +36,19 @@ for (const { driver, there } of drivers) {
       );
       db = opened.db;
       repository = new RunsRepository(db);
-      const [workspace] = await db.insert(workspaces).values({ name: "Ours" }).returning();
+      const workspace = (await db.insert(workspaces).values({ name: "Ours" }).returning()).at(0);
       workspaceId = String(workspace?.id);
       for (const name of ["ada", "ben", "cleo"]) {
-        persons[name] = await addPerson(db, {
+        persons.set(
           name,
-          email: `${name}@example.org`,
-          password: "long enough pass",
-        });
+          await addPerson(db, {
+            name,
+            email: `${name}@example.org`,
+            password: "long enough pass",
+          }),
+        );
       }
-      const ownerId = String(persons.ada);
+      const ownerId = idOf("ada");
       const projectId = await new ProjectsRepository(db).create(db, {
         workspaceId,
         ownerId,
@@ -63,7 +67,7 @@ for (const { driver, there } of drivers) {
     let queued = 0;
     const enter = async (person: string, memoryBytes = 1, bounds = BOUNDS): Promise<string> => {
       const entered = await repository.enter(
-        { sceneId, revision: 1, personId: String(persons[person]), startPaused: false, memoryBytes },
+        { sceneId, revision: 1, personId: idOf(person), startPaused: false, memoryBytes },
         bounds,
       );
       if ("full" in entered) throw new Error(`full for ${entered.full} at ${entered.queued}`);
@@ -122,7 +126,7 @@ for (const { driver, there } of drivers) {
       const bounds = { queued: 5, queuedPerPerson: 3 };
       const entrance = (person: string) =>
         repository.enter(
-          { sceneId, revision: 1, personId: String(persons[person]), startPaused: false, memoryBytes: 1 },
+          { sceneId, revision: 1, personId: idOf(person), startPaused: false, memoryBytes: 1 },
           bounds,
         );
       const own = await Promise.all(Array.from({ length: 6 }, () => entrance("ada")));
@@ -176,7 +180,7 @@ for (const { driver, there } of drivers) {
 
     it("finds runs of the own workspace alone", async () => {
       const id = await enter("ada");
-      expect((await repository.find(id, workspaceId))?.by).toEqual({ id: persons.ada, name: "ada" });
+      expect((await repository.find(id, workspaceId))?.by).toEqual({ id: idOf("ada"), name: "ada" });
       expect(await repository.find(id, randomUUID())).toBeNull();
       expect(await repository.sceneExists(sceneId, randomUUID())).toBe(false);
       expect((await repository.listOfScene(sceneId, 10)).map((run) => run.id)).toEqual([id]);

@@ -150,17 +150,19 @@ export class RunsRepository {
   enter(entrance: Entrance, bounds: { queued: number; queuedPerPerson: number }): Promise<Entered> {
     return this.db.transaction(async (tx): Promise<Entered> => {
       await tx.execute(sql`select pg_advisory_xact_lock(${ENTER_LOCK})`);
-      const [counted] = await tx
-        .select({
-          all: sql<number>`count(*)`.mapWith(Number),
-          own: sql<number>`count(*) filter (where ${runs.personId} = ${entrance.personId})`.mapWith(Number),
-        })
-        .from(runs)
-        .where(eq(runs.state, "queued"));
+      const counted = (
+        await tx
+          .select({
+            all: sql<number>`count(*)`.mapWith(Number),
+            own: sql<number>`count(*) filter (where ${runs.personId} = ${entrance.personId})`.mapWith(Number),
+          })
+          .from(runs)
+          .where(eq(runs.state, "queued"))
+      ).at(0);
       const { all, own } = counted ?? { all: 0, own: 0 };
       if (own >= bounds.queuedPerPerson) return { full: "person", queued: own };
       if (all >= bounds.queued) return { full: "everyone", queued: all };
-      const [row] = await tx.insert(runs).values(entrance).returning({ id: runs.id });
+      const row = (await tx.insert(runs).values(entrance).returning({ id: runs.id })).at(0);
       if (row === undefined) throw new Error("The database gave no id for a run that it took.");
       return { entered: row.id };
     });
@@ -180,16 +182,18 @@ export class RunsRepository {
         q.queued_at, q.id
       limit 1
       for update of q skip locked)`;
-    const [taken] = await this.db
-      .update(runs)
-      .set({
-        state: "running",
-        startedAt: sql`coalesce(${runs.startedAt}, now())`,
-        heartbeatAt: sql`now()`,
-        serverId,
-      })
-      .where(and(eq(runs.id, next), eq(runs.state, "queued")))
-      .returning({ id: runs.id });
+    const taken = (
+      await this.db
+        .update(runs)
+        .set({
+          state: "running",
+          startedAt: sql`coalesce(${runs.startedAt}, now())`,
+          heartbeatAt: sql`now()`,
+          serverId,
+        })
+        .where(and(eq(runs.id, next), eq(runs.state, "queued")))
+        .returning({ id: runs.id })
+    ).at(0);
     return taken?.id ?? null;
   }
 

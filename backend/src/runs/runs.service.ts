@@ -96,7 +96,7 @@ export class RunsService {
     if (live === undefined) throw elsewhere(record.state, "edit");
     const answer = await unavailableUnlessAnswered(live.edit(document));
     if ("problems" in answer) {
-      const first = answer.problems[0];
+      const first = answer.problems.at(0);
       throw new Refusal("scene-refused", first?.sentence ?? "The edit was refused.", {
         problems: answer.problems,
       });

@@ -187,7 +187,7 @@ export class Dispatcher implements OnApplicationBootstrap, BeforeApplicationShut
         live.answered(message);
         break;
       case "refused": {
-        const first = message.problems[0];
+        const first = message.problems.at(0);
         const where = first === undefined || first.path === "" ? "" : `${first.path}: `;
         this.end(live, {
           state: "failed",

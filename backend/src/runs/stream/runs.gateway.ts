@@ -184,7 +184,7 @@ function parse<T extends z.ZodType>(schema: T, body: unknown): z.output<T> {
   const parsed = schema.safeParse(body);
   if (parsed.success) return parsed.data;
   const problems = problemsOf(parsed.error.issues);
-  const first = problems[0];
+  const first = problems.at(0);
   const where = first === undefined || first.path === "" ? "" : `${first.path}: `;
   throw new Refusal("bad-request", `The event does not fit: ${where}${first?.sentence ?? ""}`, { problems });
 }

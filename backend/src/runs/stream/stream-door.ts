@@ -1,6 +1,6 @@
 /** Who may open a socket, and how long it stays theirs. */
 import { Injectable } from "@nestjs/common";
-import type { Namespace, Socket } from "socket.io";
+import type { DefaultEventsMap, Namespace, Socket } from "socket.io";
 import { AuthService } from "../../auth/auth.service.js";
 import type { Actor } from "../../common/actor.js";
 import { describeError } from "../../common/error.filter.js";
@@ -13,11 +13,11 @@ import { EventAllowance } from "./event-allowance.js";
 export interface SocketData {
   actor: Actor;
 }
-export type RunSocket = Socket<ClientToServerEvents, ServerToClientEvents, Record<never, never>, SocketData>;
+export type RunSocket = Socket<ClientToServerEvents, ServerToClientEvents, DefaultEventsMap, SocketData>;
 export type RunNamespace = Namespace<
   ClientToServerEvents,
   ServerToClientEvents,
-  Record<never, never>,
+  DefaultEventsMap,
   SocketData
 >;
 
@@ -34,6 +34,9 @@ class ConnectRefused extends Error {
     this.data = refusal;
   }
 }
+
+type Answer = (answer: { ok: false; error: ErrorDto }) => void;
+const isAnswer = (parameter: unknown): parameter is Answer => typeof parameter === "function";
 
 @Injectable()
 export class StreamDoor {
@@ -55,9 +58,9 @@ export class StreamDoor {
   attend(socket: RunSocket, known: ReadonlySet<string>): void {
     const allowance = new EventAllowance();
     socket.use(([event, ...parameters], next) => {
-      const answer = parameters.at(-1);
+      const answer: unknown = parameters.at(-1);
       const refuse = (error: ErrorDto): void => {
-        if (typeof answer === "function") answer({ ok: false, error });
+        if (isAnswer(answer)) answer({ ok: false, error });
       };
       const taken = allowance.take();
       if (taken === "hopeless") socket.disconnect(true);

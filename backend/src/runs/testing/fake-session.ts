@@ -1,6 +1,6 @@
 /** A session without physics: every field value is the step's number, so that a spec can tell frames apart. */
 import type { FieldSample, ViewRequest } from "@heddle/kernels/frames";
-import type { Scene, SolveResult } from "@heddle/kernels/scene";
+import type { SolveResult } from "@heddle/kernels/scene";
 import type {
   AdvanceOutcome,
   EditLogEntry,
@@ -76,7 +76,7 @@ export class FakeSession implements SolveSession {
     return { quantity: request.quantity, width, height, values, step: this.step, timeNs: this.timeNs };
   }
 
-  edit(_scene: Scene): EditOutcome {
+  edit(): EditOutcome {
     const { refusesEdits } = this.options;
     if (refusesEdits !== undefined) {
       return { kind: "refused", problems: [{ path: "paint", sentence: refusesEdits }] };
@@ -94,7 +94,7 @@ export class FakeSession implements SolveSession {
   }
 
   result(): SolveResult {
-    const [trace] = this.tracesSince(0);
+    const trace = this.tracesSince(0).at(0);
     const { nx, ny, dxMm, dyMm, stepPs, courant } = this.grid;
     const { resultSamples } = this.options;
     const values =

@@ -28,12 +28,16 @@ export class FakeThreads extends SolverThreads {
       clearTimeout(timer);
       setImmediate(() => events.gone(error ?? null));
     };
+    const kill = (): Promise<void> => {
+      die();
+      return Promise.resolve();
+    };
     this.started.push({ task, session, die });
 
     const read = readScene(task.document);
     if (!read.ok) {
       setImmediate(() => events.message({ kind: "refused", problems: read.problems }));
-      return { post: () => undefined, kill: () => Promise.resolve(die()) };
+      return { post: () => undefined, kill };
     }
     let loop: SolverLoop | null = null;
     const turn = (): void => {
@@ -84,7 +88,7 @@ export class FakeThreads extends SolverThreads {
           wake();
         });
       },
-      kill: () => Promise.resolve(die()),
+      kill,
     };
   }
 }

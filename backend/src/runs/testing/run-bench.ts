@@ -1,5 +1,6 @@
 /** A server with fake solver threads, a scene in it, and people who may and may not run it. */
 import type { AddressInfo } from "node:net";
+import { z } from "zod";
 import type { Config } from "../../config/config.js";
 import type { MemberRole } from "../../contract/permissions.js";
 import { isOver, type RunDto } from "../../contract/runs.js";
@@ -31,6 +32,8 @@ export interface RunBench {
   close: () => Promise<void>;
 }
 
+const idOf = (body: unknown): string => z.object({ id: z.string() }).parse(body).id;
+
 export async function startRunBench(changes: Partial<Config> = {}): Promise<RunBench> {
   const server = await startTestApp(changes);
   const threads = new FakeThreads();
@@ -44,19 +47,21 @@ export async function startRunBench(changes: Partial<Config> = {}): Promise<RunB
   const engineer = await server.as("engineer");
   const project = await engineer.post("/api/projects").send({ name: "Runs" }).expect(201);
   const scene = await engineer
-    .post(`/api/projects/${String(project.body.id)}/scenes`)
+    .post(`/api/projects/${idOf(project.body)}/scenes`)
     .send({ document: smallScene() })
     .expect(201);
-  const sceneId = String(scene.body.id);
+  const sceneId = idOf(scene.body);
 
   const get: RunBench["get"] = async (runId) =>
     (await engineer.get(`/api/runs/${runId}`).expect(200)).body as RunDto;
   const cookieOf: RunBench["cookieOf"] = async (role) => {
     const answer = await server.stranger().post("/api/demo-sign-in").send({ role }).expect(204);
-    return [answer.headers["set-cookie"]]
-      .flat()
-      .map((cookie) => String(cookie).split(";")[0])
-      .join("; ");
+    return (
+      answer
+        .get("Set-Cookie")
+        ?.map((cookie) => cookie.split(";").at(0))
+        .join("; ") ?? ""
+    );
   };
   return {
     server,

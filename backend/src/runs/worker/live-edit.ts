@@ -1,5 +1,5 @@
 /** What an edit of a running scene may touch: its paint, media and sources; the rest belongs to the mesh. */
-import type { Scene } from "@heddle/kernels/scene";
+import { canonicalJson, type Scene } from "@heddle/kernels/scene";
 import type { Problem } from "./protocol.js";
 
 /** Parts that an edit may change, and parts that say nothing of the field. */
@@ -36,13 +36,5 @@ export function forbiddenChanges(before: Scene, after: Scene): Problem[] {
   return problems;
 }
 
-/** JSON text that does not depend on the order of keys. */
-function stable(value: unknown): string {
-  return (
-    JSON.stringify(value, (_key, part: unknown) =>
-      part !== null && typeof part === "object" && !Array.isArray(part)
-        ? Object.fromEntries(Object.entries(part).sort(([a], [b]) => (a < b ? -1 : 1)))
-        : part,
-    ) ?? ""
-  );
-}
+/** Text that does not depend on the order of keys; a part that is absent has one of its own. */
+const stable = (value: unknown): string => (value === undefined ? "absent" : canonicalJson(value));

@@ -8,7 +8,7 @@ function resultWith(lengths: number[]): SolveResult {
   const session = new FakeSession();
   session.advance(10);
   const result = session.result();
-  const [probe] = result.probes;
+  const probe = result.probes.at(0);
   if (probe === undefined) throw new Error("The fake session has a probe.");
   const probes = lengths.map((length, index) => ({
     ...probe,
@@ -29,7 +29,7 @@ describe("packResult", () => {
   it("takes out the longest traces until the rest is small enough", () => {
     const packed = packResult(resultWith([300, 1_000, 200]), 8 * 500);
     expect(packed.arrays).toHaveLength(1);
-    const [taken] = packed.arrays;
+    const taken = packed.arrays.at(0);
     expect(taken?.sha256).toBe(
       createHash("sha256")
         .update(taken?.bytes ?? "")

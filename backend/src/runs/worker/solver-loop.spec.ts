@@ -80,7 +80,7 @@ describe("SolverLoop", () => {
     turns(loop, 40);
     heard.length = 0;
     loop.receive({ kind: "traces", requestId: 5 });
-    const answer = of("trace-answer")[0];
+    const answer = of("trace-answer").at(0);
     expect(answer?.requestId).toBe(5);
     expect(answer?.traces[0]).toMatchObject({ from: 0, values: { length: 30 } });
   });
@@ -108,7 +108,7 @@ describe("SolverLoop", () => {
 
     loop.receive({ kind: "want", viewId: 1, newerThan: -1 });
     turns(loop, 5);
-    const [first] = of("frame");
+    const first = of("frame").at(0);
     expect(of("frame")).toHaveLength(1);
     loop.receive({ kind: "want", viewId: 1, newerThan: first?.frame.version ?? 0 });
     turns(loop, 5);
@@ -137,7 +137,7 @@ describe("SolverLoop", () => {
     const loop = make();
     const document = smallScene({ section: { widthMm: 61, heightMm: 40 }, probes: [] });
     loop.receive({ kind: "edit", requestId: 1, document });
-    const [refused] = of("edit-refused");
+    const refused = of("edit-refused").at(0);
     expect(refused?.problems.map(({ path }) => path).sort()).toEqual(["probes", "section"]);
     expect(refused?.problems[0]?.sentence).toMatch(/cannot change while the run goes on/);
     expect(session.edits).toEqual([]);
@@ -163,7 +163,7 @@ describe("SolverLoop", () => {
   it("ends with a result, serves frames of the last field, and takes nothing more", () => {
     const loop = make({ maxSteps: 40 });
     while (of("ended").length === 0) loop.turn();
-    const [ended] = of("ended");
+    const ended = of("ended").at(0);
     expect(ended).toMatchObject({ reason: "time", progress: { step: 40 } });
     expect(JSON.parse(ended?.result.text ?? "")).toMatchObject({ format: "heddle-result" });
     expect(of("traces").flatMap(({ traces }) => traces[0]?.values ?? [])).toHaveLength(40);
