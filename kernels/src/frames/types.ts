@@ -40,7 +40,7 @@ export interface Frame {
   height: number;
   step: number;
   timeNs: number;
-  /** Counts frames of one view; a viewer returns it as its credit. */
+  /** Rises with every frame of a run; a viewer returns it as its credit. */
   sequence: number;
   /** Value of level 255 (signed quantities: level 128 is 0 and level 1 is −range; others: level 0 is 0). */
   range: number;
