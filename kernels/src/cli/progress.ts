@@ -16,14 +16,19 @@ export const formatSeconds = (seconds: number): string => {
   return `${String(Math.floor(whole / 3600))} h ${String(Math.floor((whole % 3600) / 60))} min`;
 };
 
+/** A bar that is full by a share (0…1). */
+export const progressBar = (share: number): string => {
+  const full = Math.round(Math.min(1, share) * BAR_CELLS);
+  return `[${"█".repeat(full)}${"·".repeat(BAR_CELLS - full)}]`;
+};
+
 /** One line of progress. `cells` are the section's. The time left counts to the last possible step. */
 export const progressLine = (step: number, maxSteps: number, cells: number, seconds: number): string => {
   const share = Math.min(1, step / maxSteps);
-  const full = Math.round(share * BAR_CELLS);
   const rate = seconds > 0 ? (step * cells) / seconds : 0;
   const left = step > 0 ? ((maxSteps - step) * seconds) / step : 0;
   return (
-    `[${"█".repeat(full)}${"·".repeat(BAR_CELLS - full)}] step ${String(step)} of at most ${String(maxSteps)}` +
+    `${progressBar(share)} step ${String(step)} of at most ${String(maxSteps)}` +
     `  ${String(Math.floor(share * 100))} %  ${(rate / 1e6).toFixed(1)} M cell-steps/s  ${formatSeconds(left)} left`
   );
 };

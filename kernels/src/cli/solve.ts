@@ -1,9 +1,9 @@
 /** `solve`: a scene file in, a result document out; exit statuses as in the contract of the command line. */
-import { readFileSync } from "node:fs";
 import type { Writable } from "node:stream";
 import { setImmediate as nextTurn } from "node:timers/promises";
-import { type Problem, readScene, type Scene, SceneError } from "../scene/index.js";
+import { readScene, type Scene, SceneError } from "../scene/index.js";
 import type { SessionOptions, SolveSession } from "../solving/session.js";
+import { readSceneFile, say, sayProblems } from "./messages.js";
 import { parseSolveOptions, type SolveOptions } from "./options.js";
 import { OutputError, OutputFile, writeStream } from "./output.js";
 import { Progress } from "./progress.js";
@@ -22,29 +22,6 @@ export interface SolveIo {
   interrupt: AbortSignal;
   openSession: (scene: Scene, options: SessionOptions) => Promise<SolveSession>;
 }
-
-const say = (io: SolveIo, line: string): void => {
-  io.stderr.write(`${line.replaceAll(/\s*\n\s*/g, " ")}\n`);
-};
-
-const sayProblems = (io: SolveIo, problems: readonly Problem[]): void => {
-  for (const { path, sentence } of problems) say(io, `${path === "" ? "scene" : path}: ${sentence}`);
-};
-
-const readFile = (path: string): { text: string } | { problem: Problem } => {
-  try {
-    return { text: readFileSync(path, "utf8") };
-  } catch (error) {
-    const code = error instanceof Error && "code" in error ? error.code : undefined;
-    const reason =
-      code === "ENOENT"
-        ? "There is no such file"
-        : code === "EISDIR"
-          ? "It is a folder, not a file"
-          : `It cannot be read (${String(code)})`;
-    return { problem: { path, sentence: `${reason}; name a scene document.` } };
-  }
-};
 
 type RunEnd = { kind: "ended" } | { kind: "interrupted" } | { kind: "failed"; sentence: string };
 
@@ -108,7 +85,7 @@ export const solve = async (args: readonly string[], io: SolveIo): Promise<ExitS
     return EXIT.refused;
   }
   const { options } = parsed;
-  const read = readFile(options.sceneFile);
+  const read = readSceneFile(options.sceneFile);
   if ("problem" in read) {
     sayProblems(io, [read.problem]);
     return EXIT.refused;

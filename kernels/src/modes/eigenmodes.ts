@@ -9,6 +9,8 @@ import { factorShifted, multiplyMass } from "./space.js";
 /** Modes beyond those asked for, among which the inertia's shift finds a gap. */
 const GUARD = 2;
 const ROUNDS = 6;
+/** Two meshes' eigenvalues within this are taken for the same mode's. */
+const ALIKE = 2e-3;
 
 /** Constants on the floating parts, with unit mass. */
 function statics(space: ElementSpace): Float64Array[] {
@@ -44,11 +46,22 @@ function countBelow(space: ElementSpace, value: number, room: number): number {
   }
 }
 
+/** Each value near its like from another mesh, so that none can have been passed over. */
+const agrees = (found: readonly Eigenpair[], other: readonly number[]): boolean =>
+  found.length > 0 &&
+  found.length <= other.length &&
+  found.every(({ value }, n) => Math.abs(value / other[n] - 1) < ALIKE);
+
 /**
- * The lowest `count` solutions of K x = λ M x above the static ones, rising; fewer where the mesh has fewer. Yields between
- * steps of about a tenth of a second.
+ * The lowest `count` solutions of K x = λ M x above the static ones, rising, and up to GUARD more; fewer where the mesh has
+ * fewer. That none is missing is proven by an inertia count, or, where `known` is given, by agreement with the complete list
+ * of another mesh. Yields between steps of about a tenth of a second.
  */
-export function* lowestModes(space: ElementSpace, count: number): Generator<void, Eigenpair[]> {
+export function* lowestModes(
+  space: ElementSpace,
+  count: number,
+  known: readonly number[] = [],
+): Generator<void, Eigenpair[]> {
   const { unknowns } = space;
   const still = statics(space);
   const available = unknowns - still.length;
@@ -76,17 +89,18 @@ export function* lowestModes(space: ElementSpace, count: number): Generator<void
       }
       yield;
     }
-    if (found.length >= available) return found.slice(0, count);
+    if (found.length >= available || agrees(found, known)) return found;
     // The widest gap behind the modes asked for is where the count is surest.
     const from = Math.min(count, found.length - 1);
     let gapAfter = Math.max(0, from - 1);
     const last = Math.min(found.length - 1, count + GUARD);
     for (let n = gapAfter; n < last; n += 1)
-      if (found[n + 1].value - found[n].value > found[gapAfter + 1].value - found[gapAfter].value) gapAfter = n;
+      if (found[n + 1].value - found[n].value > found[gapAfter + 1].value - found[gapAfter].value)
+        gapAfter = n;
     const below = found[gapAfter].value;
     const room = found[Math.min(gapAfter + 1, found.length - 1)].value - below;
     const expected = still.length + gapAfter + 1;
-    if (countBelow(space, below + room / 2, room) === expected) return found.slice(0, count);
+    if (countBelow(space, below + room / 2, room) === expected) return found;
     yield;
   }
   throw new Error("Some modes of the section could not be told apart; ask for fewer or refine the mesh.");

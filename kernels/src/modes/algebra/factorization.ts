@@ -133,18 +133,33 @@ export class Factorization {
         x[base + 2 * i] = s0;
         x[base + 2 * i + 1] = s1;
       }
-      for (let i = 0; i < border.length; i += 1) {
+      const b = border.length;
+      // Two rows at once; the last of an odd number goes twice, its second sum unused.
+      for (let i = 0; i < b; i += 2) {
         const row = offset + (k + i) * k;
+        const second = i + 1 < b ? row + k : row;
         let s0 = 0;
         let s1 = 0;
+        let t0 = 0;
+        let t1 = 0;
         for (let j = 0; j < k; j += 1) {
+          const x0 = x[base + 2 * j];
+          const x1 = x[base + 2 * j + 1];
           const v = l[row + j];
-          s0 += v * x[base + 2 * j];
-          s1 += v * x[base + 2 * j + 1];
+          const w = l[second + j];
+          s0 += v * x0;
+          s1 += v * x1;
+          t0 += w * x0;
+          t1 += w * x1;
         }
         const dof = 2 * border[i];
         x[dof] -= s0;
         x[dof + 1] -= s1;
+        if (i + 1 < b) {
+          const next = 2 * border[i + 1];
+          x[next] -= t0;
+          x[next + 1] -= t1;
+        }
       }
     }
     for (let n = 0; n < d.length; n += 1) {
@@ -157,14 +172,20 @@ export class Factorization {
       const offset = offsets[index];
       const base = 2 * first;
       for (let j = 0; j < 2 * k; j += 1) y[j] = x[base + j];
-      for (let i = 0; i < border.length; i += 1) {
+      const b = border.length;
+      for (let i = 0; i < b; i += 2) {
         const row = offset + (k + i) * k;
+        const two = i + 1 < b;
+        const second = two ? row + k : row;
         const x0 = x[2 * border[i]];
         const x1 = x[2 * border[i] + 1];
+        const z0 = two ? x[2 * border[i + 1]] : 0;
+        const z1 = two ? x[2 * border[i + 1] + 1] : 0;
         for (let j = 0; j < k; j += 1) {
           const v = l[row + j];
-          y[2 * j] -= v * x0;
-          y[2 * j + 1] -= v * x1;
+          const w = l[second + j];
+          y[2 * j] -= v * x0 + w * z0;
+          y[2 * j + 1] -= v * x1 + w * z1;
         }
       }
       for (let i = k - 1; i > 0; i -= 1) {

@@ -20,9 +20,13 @@ export interface Eigenpair {
 }
 
 /** A pair has settled when its residual is this share of its own 1/(λ − shift). */
-const SETTLED = 1e-8;
+const SETTLED = 1e-7;
 const LARGEST_BASIS = 400;
-const CHECK_EVERY = 4;
+/** Blocks between two looks at the Ritz values. */
+const CHECK_EVERY = 2;
+/** Vectors of the two newest blocks. */
+const NEWEST = 4;
+const NOTHING = new Float64Array(0);
 /** What is left of a vector, after taking out the basis, when it lay in it. */
 const DEPENDENT = 1e-10;
 
@@ -57,6 +61,7 @@ function fillAtRandom(x: Float64Array, seed: number): void {
 
 class Basis {
   readonly vectors: Float64Array[] = [];
+  private readonly images: Float64Array[] = [];
   private readonly massTimes: Float64Array;
   private seed: number;
 
@@ -69,29 +74,43 @@ class Basis {
     this.seed = seed;
   }
 
-  /** Takes locked and basis vectors out of x, twice; returns the coefficients on the basis and what is left of x's norm. */
+  /**
+   * Takes locked and basis vectors out of x: first the newest, which a Lanczos step brings most of, then all. Returns the
+   * coefficients on the basis and the M-norm of x before and after; `massTimes` then holds M x.
+   */
   orthogonalize(x: Float64Array): { coefficients: Float64Array; norm: number; before: number } {
     const { operator, massTimes, vectors, locked } = this;
     const coefficients = new Float64Array(vectors.length);
+    const takeOut = (from: number): void => {
+      for (let n = from; n < vectors.length; n += 1) {
+        const c = dot(vectors[n], massTimes);
+        coefficients[n] += c;
+        subtract(x, c, vectors[n]);
+      }
+    };
     operator.multiplyMass(x, massTimes);
     const before = Math.sqrt(Math.max(0, dot(x, massTimes)));
-    for (let pass = 0; pass < 2; pass += 1) {
-      if (pass > 0) operator.multiplyMass(x, massTimes);
-      for (const q of locked) subtract(x, dot(q, massTimes), q);
-      vectors.forEach((q, n) => {
-        const c = dot(q, massTimes);
-        coefficients[n] += c;
-        subtract(x, c, q);
-      });
-    }
+    takeOut(Math.max(0, vectors.length - NEWEST));
+    operator.multiplyMass(x, massTimes);
+    for (const q of locked) subtract(x, dot(q, massTimes), q);
+    takeOut(0);
     operator.multiplyMass(x, massTimes);
     return { coefficients, norm: Math.sqrt(Math.max(0, dot(x, massTimes))), before };
   }
 
-  /** Adds x, of the given norm and orthogonal to all others. */
+  /** Adds x, as `orthogonalize` has just left it, of the given norm. */
   push(x: Float64Array, norm: number): void {
-    for (let i = 0; i < x.length; i += 1) x[i] /= norm;
+    const scale = 1 / norm;
+    for (let i = 0; i < x.length; i += 1) x[i] *= scale;
     this.vectors.push(x);
+    this.images.push(this.massTimes.map((value) => value * scale));
+  }
+
+  /** M times vector n, once. */
+  takeImage(n: number): Float64Array {
+    const image = this.images[n];
+    this.images[n] = NOTHING;
+    return image;
   }
 
   /** Adds a vector at random; false where the space is used up. */
@@ -126,7 +145,6 @@ export function* lowestEigenpairs(
   const basis = new Basis(operator, locked, seed);
   const projected: Float64Array[] = [];
   const pair = new Float64Array(2 * unknowns);
-  const image = new Float64Array(unknowns);
   const q0 = basis.pushRandom();
   if (!q0) return [];
   if (room > 1) basis.pushRandom();
@@ -136,9 +154,8 @@ export function* lowestEigenpairs(
     // The newest vectors that the operator has not met yet: two, or one at the end of a small space.
     const fresh = vectors.slice(done, done + 2);
     for (let n = 0; n < 2; n += 1) {
-      const q = fresh.at(n);
-      if (q) {
-        operator.multiplyMass(q, image);
+      if (n < fresh.length) {
+        const image = basis.takeImage(done + n);
         for (let i = 0; i < unknowns; i += 1) pair[2 * i + n] = image[i];
       } else for (let i = 0; i < unknowns; i += 1) pair[2 * i + n] = 0;
     }
@@ -165,7 +182,7 @@ export function* lowestEigenpairs(
       basis.pushRandom();
     }
     const last = done >= room || done >= vectors.length;
-    if (last || block % CHECK_EVERY === 0) {
+    if (last || (done >= 2 * wanted && block % CHECK_EVERY === 0)) {
       const found = settled(projected, done, vectors, wanted, last);
       if (found !== null) {
         return found

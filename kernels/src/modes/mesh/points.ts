@@ -139,7 +139,11 @@ function divideFrame(
   return pieces;
 }
 
-function addRings(rings: readonly Rings[], nearest: (x: number, y: number) => number, points: PointSet): void {
+function addRings(
+  rings: readonly Rings[],
+  nearest: (x: number, y: number) => number,
+  points: PointSet,
+): void {
   for (const { x, y, radii } of rings) {
     radii.forEach((radius, n) => {
       for (let k = 0; k < RING_POINTS; k += 1) {

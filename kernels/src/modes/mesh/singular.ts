@@ -63,8 +63,7 @@ function openingsOf(drawing: Drawing, rays: readonly Ray[]): Opening[] {
   const stop = (n: number, beyond: number): Bound => boundOf(drawing, beyond, rays[n].edge);
   const openings: Opening[] = [];
   const starts: number[] = [];
-  for (let n = 0; n < count; n += 1)
-    if (filled(rays[n].after) && stop(n, before(n)) !== null) starts.push(n);
+  for (let n = 0; n < count; n += 1) if (filled(rays[n].after) && stop(n, before(n)) !== null) starts.push(n);
   if (starts.length === 0 && rays.every((ray) => filled(ray.after))) {
     openings.push({
       angle: 2 * Math.PI,
