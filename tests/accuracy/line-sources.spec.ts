@@ -3,7 +3,7 @@
  * time. Sources: R. F. Harrington, Time-Harmonic Electromagnetic Fields (1961), sec. 5-6, and DLMF 10.2 (Hankel functions);
  * R. E. Collin, Field Theory of Guided Waves, 2nd ed. (1991), sec. 2.6 and 5.6 (plates, box); P. M. Morse and H. Feshbach,
  * Methods of Theoretical Physics (1953), sec. 7.3 (transient); all computed in the entries.
- * Tolerance: the entries' own — 1 % and 2° in space at 30 cells per wavelength, 2 % between plates, 3 % in a box, 1 % of the peak in time.
+ * Tolerance: the entries' own — 1 % and 2° in space at 30 cells per wavelength, 1.5 % between plates (2 % in the entries), 3 % in a box, 1 % of the peak in time.
  */
 import { describe, expect, it } from "vitest";
 import { z } from "zod";
@@ -112,18 +112,18 @@ function worstError(
 
 describe("a line source between plates", () => {
   const plates = entries.filter(({ id }) => id.startsWith("line-plates"));
-  it.each(plates)("$id: within 2 % at 45 cells per wavelength", async ({ geometry, expected }) => {
+  it.each(plates)("$id: within 1.5 % at 60 cells per wavelength", async ({ geometry, expected }) => {
     const f = numberAt(geometry, "f_Hz") / 1e9;
     const height = numberAt(geometry, "h_m") * 1000;
     const sigma = numberAt(geometry, "sigma");
-    const points = pointsSchema.parse(expected.points).filter(({ x_m }) => x_m <= 0.1);
+    const points = pointsSchema.parse(expected.points).filter(({ x_m }) => x_m <= 0.05);
     const left = 30;
     const result = await solve(
       {
         polarization: "TMz",
-        section: { widthMm: 150, heightMm: height },
+        section: { widthMm: 90, heightMm: height },
         band: { fromGHz: 0.5 * f, toGHz: 1.2 * f },
-        mesh: { cellMm: WAVELENGTH_GHZ_MM / f / 45 },
+        mesh: { cellMm: WAVELENGTH_GHZ_MM / f / 60 },
         edges: { left: "absorbing", right: "absorbing", bottom: "electric", top: "electric" },
         media: [{ id: "space", name: "Space", conductivity: sigma }],
         background: "space",
@@ -135,13 +135,13 @@ describe("a line source between plates", () => {
           y: y_m * 1000,
           field: "Ez",
         })),
-        stop: { maxTimeNs: 15, decayDb: 60 },
+        stop: { maxTimeNs: 40, decayDb: 70 },
       },
       { frequenciesGHz: [f] },
     );
     const worst = worstError(result, points, 0);
     measured(`plates ${f} GHz`, worst);
-    expect(worst).toBeLessThan(0.02);
+    expect(worst).toBeLessThan(0.015);
   });
 });
 

@@ -36,7 +36,7 @@ export type Refinement = (typeof REFINEMENTS)[number];
 export type FeatureSet = ReadonlySet<Feature | Refinement>;
 
 /** What the engines compute today. */
-export const COMPUTED: FeatureSet = new Set<Feature | Refinement>([]);
+export const COMPUTED: FeatureSet = new Set<Feature | Refinement>(["limit-level"]);
 
 const FEATURE_NAMES: Readonly<Record<Feature, string>> = {
   ports: "Waveguide ports are",

@@ -1,5 +1,6 @@
 /** The result document of a session. */
-import type { ProbeResult, ResolvedScene, Scene, SolveResult } from "../scene/index.js";
+import { judgeLevels } from "../analysis/index.js";
+import type { LimitResult, ProbeResult, ResolvedScene, Scene, SolveResult } from "../scene/index.js";
 import type { Engine } from "../stepping/index.js";
 import type { DrivePlan, PlannedProbe } from "./plan.js";
 import { qualityOf } from "./quality.js";
@@ -24,6 +25,30 @@ export interface ResultInput {
   warnings: readonly string[];
   seconds: number;
   cellStepsPerSecond: number;
+}
+
+/**
+ * Limits on the levels of point probes: 20·lg of V/m or A/m per unit source. None is judged on a trace that had not rung down, nor on a
+ * run that was edited. Other kinds of limit are not computed yet; the warnings of the scene say so.
+ */
+function judgeLimits(
+  input: ResultInput,
+  results: readonly ProbeResult[],
+  unfinished: ReadonlySet<string>,
+): LimitResult[] {
+  return input.resolved.limits.flatMap((limit): LimitResult[] => {
+    if (!("points" in limit) || !("probe" in limit.of)) return [];
+    const id = limit.of.probe;
+    const spectrum = results.find((probe) => probe.id === id)?.spectrum ?? null;
+    if (!spectrum || !("re" in spectrum) || unfinished.has(id)) {
+      return [{ id: limit.id, holds: null, margin: null, atGHz: null, uncertainty: null }];
+    }
+    const levels = spectrum.re.map((re, index) => {
+      const im = spectrum.im[index];
+      return re === null || im === null ? null : 20 * Math.log10(Math.hypot(re, im));
+    });
+    return [{ id: limit.id, ...judgeLevels(limit, spectrum.GHz, levels), uncertainty: null }];
+  });
 }
 
 export function buildResult(input: ResultInput): SolveResult {
@@ -55,6 +80,7 @@ export function buildResult(input: ResultInput): SolveResult {
       spectrum: spectra?.spectra[index] ?? null,
     }),
   );
+  const limits = spectra ? judgeLimits(input, results, spectra.unfinished) : [];
   const warnings = [...input.warnings, ...(spectra?.warnings ?? [])];
   if (edited) {
     warnings.push(
@@ -79,6 +105,7 @@ export function buildResult(input: ResultInput): SolveResult {
     },
     stopped: { reason: input.reason, decayDb },
     probes: results,
+    ...(limits.length > 0 ? { limits } : {}),
     quality: qualityOf({ ...input, warnings }),
     ...(edited ? { edits: [...input.edits] } : {}),
     timing: {

@@ -151,6 +151,35 @@ describe("a session", () => {
     expect(session.edits).toHaveLength(0);
   });
 
+  it("judges a limit on a probe's level, and none on a trace that was cut off", async () => {
+    const limits = (value: number): SceneInput["limits"] => [
+      {
+        id: "l",
+        name: "Leak",
+        sense: "below",
+        points: [
+          [2, value],
+          [6, value],
+        ],
+        of: { probe: "p" },
+      },
+    ];
+    const judge = async (value: number, maxTimeNs: number) => {
+      const session = await openSession(sceneOf({ limits: limits(value), stop: { maxTimeNs, decayDb: 60 } }));
+      session.advance(1e6);
+      return session.result();
+    };
+    const kept = await judge(120, 100);
+    expect(kept.limits?.[0]).toMatchObject({ id: "l", holds: true });
+    const margin = kept.limits?.[0].margin ?? Number.NaN;
+    const broken = await judge(120 - margin - 1, 100);
+    expect(broken.limits?.[0].holds).toBe(false);
+    expect(broken.limits?.[0].margin).toBeCloseTo(-1, 9);
+    const cut = await judge(120, 1.5);
+    expect(cut.limits?.[0]).toMatchObject({ holds: null, margin: null });
+    expect(cut.quality.warnings.join(" ")).toMatch(/Run longer/);
+  });
+
   it("says so where a scene cannot be run, with every problem", async () => {
     const scene = sceneOf({ sources: [] });
     await expect(openSession(scene)).rejects.toThrow(SceneError);
