@@ -30,6 +30,7 @@ export async function createApp(config: Config, options: AppOptions = {}): Promi
       const betterAuth = makeBetterAuth(config, database.db, await readSecret(folder));
       const app = await NestFactory.create<NestExpressApplication>(
         AppModule.of({ config, folder, database, betterAuth }),
+        // eslint-disable-next-line @typescript-eslint/no-unsafe-class-instance-assignment -- Nest declares its options as a class and asks for any object of that shape
         {
           bodyParser: false,
           abortOnError: false,

@@ -43,7 +43,7 @@ describe("an empty installation", () => {
   it("signs in by password and keeps only the hash of the session's token", async () => {
     const ada = server.stranger();
     const answer = await ada.post("/api/auth/sign-in/email").send(CREDENTIALS).expect(200);
-    const cookie = String(answer.headers["set-cookie"]);
+    const cookie = [answer.headers["set-cookie"]].flat().join();
     expect(cookie).toMatch(/HttpOnly/i);
     expect(cookie).toMatch(/SameSite=Lax/i);
     await ada.get("/api/session").expect(200);

@@ -3,11 +3,10 @@
  * alone, so that a copy of the tables signs nobody in. Tokens are random, 190 bits: a plain hash suffices.
  */
 import { createHash } from "node:crypto";
-import type { BetterAuthOptions } from "better-auth";
-import type { DBAdapter, DBTransactionAdapter, Where } from "better-auth";
+import type { BetterAuthOptions, DBAdapter, DBTransactionAdapter, Where } from "better-auth";
 
-type Adapter = DBAdapter<BetterAuthOptions>;
-type TransactionAdapter = DBTransactionAdapter<BetterAuthOptions>;
+type Adapter = DBAdapter;
+type TransactionAdapter = DBTransactionAdapter;
 
 const hash = (token: string): string => createHash("sha256").update(token).digest("hex");
 
@@ -57,7 +56,7 @@ function wrapRows(inner: TransactionAdapter): TransactionAdapter {
     },
     findOne: async (query) => {
       const s = forSession(query);
-      return restore(await inner.findOne(s.query), s.tokenByHash) as never;
+      return restore(await inner.findOne(s.query), s.tokenByHash);
     },
     findMany: async (query) => {
       const s = forSession(query);
@@ -65,11 +64,11 @@ function wrapRows(inner: TransactionAdapter): TransactionAdapter {
     },
     update: async (query) => {
       const s = forSession(query);
-      return restore(await inner.update(s.query), s.tokenByHash) as never;
+      return restore(await inner.update(s.query), s.tokenByHash);
     },
     consumeOne: async (query) => {
       const s = forSession(query);
-      return restore(await inner.consumeOne(s.query), s.tokenByHash) as never;
+      return restore(await inner.consumeOne(s.query), s.tokenByHash);
     },
     count: (query) => inner.count(forSession(query).query),
     updateMany: (query) => inner.updateMany(forSession(query).query),

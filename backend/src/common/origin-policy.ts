@@ -1,4 +1,4 @@
-import type { IncomingHttpHeaders } from "node:http";
+import type { IncomingHttpHeaders, Server } from "node:http";
 import { Inject, Injectable } from "@nestjs/common";
 import { HttpAdapterHost } from "@nestjs/core";
 import type { NextFunction, Request, Response } from "express";
@@ -66,8 +66,8 @@ export class OriginPolicy {
   }
 
   private port(): number {
-    const address = this.adapter.httpAdapter.getHttpServer().address() as unknown;
-    if (typeof address === "object" && address !== null && "port" in address) return Number(address.port);
+    const address = (this.adapter.httpAdapter.getHttpServer() as Server).address();
+    if (typeof address === "object" && address !== null) return address.port;
     return this.config.port;
   }
 }

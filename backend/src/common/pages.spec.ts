@@ -24,6 +24,7 @@ describe("the pages", () => {
   let app: NestExpressApplication;
   beforeAll(async () => {
     folder = await mkdtemp(join(tmpdir(), "heddle-pages-"));
+    // eslint-disable-next-line @typescript-eslint/no-unsafe-class-instance-assignment -- Nest declares its options as a class and asks for any object of that shape
     app = await NestFactory.create<NestExpressApplication>(ThingModule, { logger: false });
     app.setGlobalPrefix("api");
     app.use(securityHeaders);

@@ -1,5 +1,6 @@
 /** The built pages on the server's own port: files as they are, every other path the one page. */
 import { existsSync } from "node:fs";
+import type { ServerResponse } from "node:http";
 import { join, sep } from "node:path";
 import type { NestExpressApplication } from "@nestjs/platform-express";
 import type { NextFunction, Request, Response } from "express";
@@ -41,7 +42,7 @@ export function servePages(app: NestExpressApplication, folder: string = PATHS.p
   const assets = join(folder, "assets") + sep;
   app.useStaticAssets(folder, {
     index: false,
-    setHeaders: (response, path) => {
+    setHeaders: (response: ServerResponse, path: string) => {
       const hashed = path.startsWith(assets);
       response.setHeader("cache-control", hashed ? "public, max-age=31536000, immutable" : "no-cache");
     },

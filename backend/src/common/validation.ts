@@ -25,7 +25,7 @@ export const contractPipe = (): StandardSchemaValidationPipe =>
   new StandardSchemaValidationPipe({
     exceptionFactory: (issues) => {
       const problems = problemsOf(issues);
-      const first = problems[0];
+      const first = problems.at(0);
       const where = first === undefined || first.path === "" ? "" : `${first.path}: `;
       return new Refusal("bad-request", `The request does not fit: ${where}${first?.sentence ?? ""}`, {
         problems,

@@ -94,11 +94,9 @@ async function throwawayServer(bin: string): Promise<PostgresForTests> {
   const remove = (): Promise<void> => rm(folder, { recursive: true, force: true });
   let identity: { uid?: number; gid?: number } = {};
   if (isRoot) {
-    const [uid, gid] = await Promise.all(
-      ["-u", "-g"].map(async (flag) => Number((await run("id", [flag, "postgres"])).stdout)),
-    );
-    if (uid === undefined || gid === undefined)
-      throw new Error("There is no user postgres to run the server as.");
+    const idOf = async (flag: "-u" | "-g") => Number((await run("id", [flag, "postgres"])).stdout);
+    const uid = await idOf("-u");
+    const gid = await idOf("-g");
     await chown(folder, uid, gid);
     await chmod(folder, 0o700);
     identity = { uid, gid };
