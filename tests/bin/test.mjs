@@ -32,7 +32,9 @@ const browsers = () => found([process.env.CHROMIUM, "/usr/bin/chromium", "/usr/b
 if (browsers() === undefined) install("chromium");
 const chromium = browsers();
 if (chromium === undefined) {
-  console.error("The journeys need Chromium: install it (Debian: apt-get install chromium) or name it in CHROMIUM.");
+  console.error(
+    "The journeys need Chromium: install it (Debian: apt-get install chromium) or name it in CHROMIUM.",
+  );
   process.exit(1);
 }
 
@@ -60,9 +62,13 @@ const status = run(
 );
 
 if (existsSync(report)) {
-  const { numPassedTests, numFailedTests, numPendingTests, testResults } = JSON.parse(readFileSync(report, "utf8"));
+  const { numPassedTests, numFailedTests, numPendingTests, testResults } = JSON.parse(
+    readFileSync(report, "utf8"),
+  );
   for (const file of testResults) {
-    for (const test of file.assertionResults.filter((one) => one.status === "pending" || one.status === "skipped")) {
+    for (const test of file.assertionResults.filter(
+      (one) => one.status === "pending" || one.status === "skipped",
+    )) {
       console.log(`skipped: ${test.fullName}`);
     }
   }
