@@ -5,7 +5,7 @@
  * formed at the centres, densities as the energy or loss of the surrounding field points that falls into the cell.
  */
 import type { FieldQuantity, FieldSample, ViewRequest } from "../frames/index.js";
-import type { Lattice } from "../lattice/index.js";
+import type { Lattice, Side } from "../lattice/index.js";
 import { columnShare, firstColumn, firstRow, rowShare } from "../lattice/index.js";
 import { halfStorage, lossOf } from "../media/index.js";
 import type { Engine, EngineFields, RowCoefficients } from "../stepping/index.js";
@@ -87,73 +87,80 @@ class CentreReader {
 
 type PointValue = (a: number, b: number) => number;
 
-/** Σ value(a, b)·v² of the field points around each cell, by the share of their cell that lies in it, per cell area. */
+/** value(a, b)·v² of one row's field points over the share of their cells that lies in the section. */
+interface PointRow {
+  f: Float64Array;
+  gx: Float64Array;
+  gy: Float64Array;
+}
+
+/** What the field points around each cell hold, by the share of their own cells that lies in it, per cell area. */
 class DensityReader {
-  private readonly rows = new Map<number, RowCoefficients>();
+  private readonly rows = new Map<number, PointRow>();
+  private readonly coefficients: RowCoefficients;
+  private readonly shares: Float64Array;
 
   constructor(
     private readonly engine: Engine,
     private readonly value: PointValue,
-  ) {}
+  ) {
+    const { lattice } = engine;
+    this.coefficients = rowCoefficients(lattice.stride);
+    this.shares = Float64Array.from({ length: lattice.stride }, (_, i) => columnShare(lattice, i));
+  }
 
-  private coefficients(row: number): RowCoefficients {
+  private pointRow(row: number): PointRow {
     const known = this.rows.get(row);
     if (known) return known;
-    const made = rowCoefficients(this.engine.lattice.stride);
-    this.engine.readCoefficients(row, made);
+    const { lattice, fields } = this.engine;
+    const { coefficients: c, shares, value } = this;
+    const { stride, columns } = lattice;
+    this.engine.readCoefficients(row, c);
+    const made = { f: new Float64Array(stride), gx: new Float64Array(stride), gy: new Float64Array(stride) };
+    const share = rowShare(lattice, row);
+    const base = row * stride;
+    for (let i = 0; i <= columns; i += 1) {
+      const f = fields.f[base + i];
+      const gx = fields.gx[base + i];
+      const gy = fields.gy[base + i];
+      made.f[i] = (value(c.aF[i], c.bF[i]) * f * f) / (share * shares[i]);
+      made.gx[i] = (value(c.aGx[i], c.bGx[i]) * gx * gx) / shares[i];
+      made.gy[i] = (value(c.aGy[i], c.bGy[i]) * gy * gy) / share;
+    }
     this.rows.set(row, made);
     this.rows.delete(row - 2);
     return made;
   }
 
   read: RowReader = (cellRow, out) => {
-    const { lattice, fields } = this.engine;
-    const { nx, stride, dx, dy } = lattice;
-    const { f, gx, gy } = fields;
-    const { value } = this;
+    const { lattice } = this.engine;
+    const { nx, ny, dx, dy } = lattice;
     const left = firstColumn(lattice);
     const row = firstRow(lattice) + cellRow;
     const area = 1 / (dx * dy);
     if (lattice.polarization === "TMz") {
-      const lower = this.coefficients(row);
-      const upper = this.coefficients(row + 1);
-      const lowerShare = rowShare(lattice, row);
-      const upperShare = rowShare(lattice, row + 1);
-      const node = (c: RowCoefficients, base: number, i: number, share: number): number =>
-        (value(c.aF[i], c.bF[i]) * f[base + i] ** 2) / (share * columnShare(lattice, i));
-      for (let n = 0; n < nx; n += 1) {
-        const i = left + n;
-        const k = row * stride;
-        const fPart =
-          node(lower, k, i, lowerShare) +
-          node(lower, k, i + 1, lowerShare) +
-          node(upper, k + stride, i, upperShare) +
-          node(upper, k + stride, i + 1, upperShare);
-        const gxPart =
-          (value(lower.aGx[i], lower.bGx[i]) * gx[k + i] ** 2) / columnShare(lattice, i) +
-          (value(lower.aGx[i + 1], lower.bGx[i + 1]) * gx[k + i + 1] ** 2) / columnShare(lattice, i + 1);
-        const gyPart =
-          (value(lower.aGy[i], lower.bGy[i]) * gy[k + i] ** 2) / lowerShare +
-          (value(upper.aGy[i], upper.bGy[i]) * gy[k + stride + i] ** 2) / upperShare;
-        out[n] = area * (0.25 * fPart + 0.5 * (gxPart + gyPart));
+      const lower = this.pointRow(row);
+      const upper = this.pointRow(row + 1);
+      for (let n = 0, i = left; n < nx; n += 1, i += 1) {
+        const fPart = lower.f[i] + lower.f[i + 1] + upper.f[i] + upper.f[i + 1];
+        const gPart = lower.gx[i] + lower.gx[i + 1] + lower.gy[i] + upper.gy[i];
+        out[n] = area * (0.25 * fPart + 0.5 * gPart);
       }
       return;
     }
-    const below = this.coefficients(row - 1);
-    const here = this.coefficients(row);
-    const wall = (side: "left" | "right" | "bottom" | "top", at: boolean): number =>
-      at && lattice.edges[side] === "magnetic" ? 2 : 1;
-    for (let n = 0; n < nx; n += 1) {
-      const i = left + n;
-      const k = row * stride + i;
-      const fPart = value(here.aF[i], here.bF[i]) * f[k] ** 2;
-      const gxPart =
-        value(below.aGx[i], below.bGx[i]) * gx[k - stride] ** 2 * wall("bottom", cellRow === 0) +
-        value(here.aGx[i], here.bGx[i]) * gx[k] ** 2 * wall("top", cellRow === lattice.ny - 1);
-      const gyPart =
-        value(here.aGy[i - 1], here.bGy[i - 1]) * gy[k - 1] ** 2 * wall("left", n === 0) +
-        value(here.aGy[i], here.bGy[i]) * gy[k] ** 2 * wall("right", n === nx - 1);
-      out[n] = area * (fPart + 0.5 * (gxPart + gyPart));
+    const below = this.pointRow(row - 1);
+    const here = this.pointRow(row);
+    // G on a magnetic edge has its whole half cell inside.
+    const wall = (side: Side, at: boolean): number => (at && lattice.edges[side] === "magnetic" ? 2 : 1);
+    const belowWall = wall("bottom", cellRow === 0);
+    const aboveWall = wall("top", cellRow === ny - 1);
+    for (let n = 0, i = left; n < nx; n += 1, i += 1) {
+      const gPart =
+        below.gx[i] * belowWall +
+        here.gx[i] * aboveWall +
+        here.gy[i - 1] * wall("left", n === 0) +
+        here.gy[i] * wall("right", n === nx - 1);
+      out[n] = area * (here.f[i] + 0.5 * gPart);
     }
   };
 }
