@@ -1,3 +1,6 @@
+import Button from "@mui/material/Button";
+import Skeleton from "@mui/material/Skeleton";
+import { useState } from "react";
 import { Navigate, useNavigate, useSearchParams } from "react-router-dom";
 import { Mark } from "../components/mark";
 import { Notice } from "../components/notice";
@@ -11,10 +14,13 @@ export function SignInPage() {
   const navigate = useNavigate();
   const session = useSessionQuery();
   const welcome = useWelcome();
+  const [settingUp, setSettingUp] = useState(false);
   const next = safeNext(search.get("next"));
   const goOn = (): void => void navigate(next, { replace: true });
   if (session.data) return <Navigate replace to={next} />;
   const { needsFirstOwner = false, demo = [] } = welcome.data ?? {};
+  // Where there is a demo to look around in, setting up a workspace of one's own waits behind a button.
+  const demoFirst = needsFirstOwner && demo.length > 0 && !settingUp;
   return (
     <div className="sign-in">
       <title>Sign in · Heddle</title>
@@ -23,18 +29,31 @@ export function SignInPage() {
           <Mark size={28} />
           <span>heddle</span>
         </div>
-        <h1>{needsFirstOwner ? "Set up this installation" : "Sign in"}</h1>
+        <h1>{!needsFirstOwner ? "Sign in" : demoFirst ? "Welcome" : "Set up this installation"}</h1>
         <p>
-          {needsFirstOwner
-            ? "Nobody is here yet. The first person owns the workspace and can give others their roles."
+          {needsFirstOwner && !demoFirst
+            ? "The first person owns the workspace and can give others their roles."
             : "A bench for sections of waveguides and enclosures: draw, run, watch the field, read the probe."}
         </p>
         {welcome.isError ? <Notice tone="limit">{sentenceOf(welcome.error)}</Notice> : null}
-        {needsFirstOwner ? <FirstOwnerForm onDone={goOn} /> : <SignInForm onDone={goOn} />}
+        {welcome.isPending ? <Skeleton variant="rectangular" sx={{ height: 140 }} /> : null}
+        {welcome.isPending || demoFirst ? null : needsFirstOwner ? (
+          <FirstOwnerForm onDone={goOn} />
+        ) : (
+          <SignInForm onDone={goOn} />
+        )}
         {demo.length > 0 ? (
           <section>
-            <h2 className="label">Or look around the demo as</h2>
+            <h2 className="label">{demoFirst ? "Look around the demo as" : "Or look around the demo as"}</h2>
             <DemoSignIn demo={demo} onDone={goOn} />
+          </section>
+        ) : null}
+        {demoFirst ? (
+          <section>
+            <h2 className="label">Or begin in earnest</h2>
+            <Button fullWidth onClick={() => setSettingUp(true)}>
+              Set up a workspace of your own
+            </Button>
           </section>
         ) : null}
         <footer>
