@@ -113,92 +113,98 @@ export class SectionCoefficients {
   }
 
   private writeF(below: QuarterRow, here: QuarterRow, out: RowCoefficients): void {
-    const { lattice, quarters } = this;
-    const { dt } = lattice;
-    for (let i = 1; i <= lattice.columns; i += 1) {
-      const x = 2 * cellOfColumn(lattice, i);
-      const only = this.onlyMedium(below, here, x - 1, x);
-      if (only >= 0) {
-        const update = this.updates[only];
-        out.aF[i] = update.aF;
-        out.bF[i] = update.bF;
-        continue;
-      }
-      const mean = arithmeticMean(this.four(below, here, x - 1, quarters), this.kindF);
-      if (!mean) continue;
-      const update = updateOf(mean, dt, this.geometryF);
+    const { lattice } = this;
+    const single = (i: number, x: number): void => {
+      const mean = arithmeticMean(this.four(below, here, x), this.kindF);
+      if (!mean) return;
+      const update = updateOf(mean, lattice.dt, this.geometryF);
       out.aF[i] = update.a;
       out.bF[i] = update.b;
-    }
+    };
+    this.walkRuns(below, here, 1, lattice.columns, -1, single, (medium, from, to) => {
+      out.aF.fill(medium.aF, from, to);
+      out.bF.fill(medium.bF, from, to);
+    });
   }
 
   private writeGx(here: QuarterRow, above: QuarterRow, out: RowCoefficients): void {
-    const { lattice, quarters } = this;
-    for (let i = 1; i <= lattice.columns; i += 1) {
-      const x = 2 * cellOfColumn(lattice, i);
-      const only = this.onlyMedium(here, above, x - 1, x);
-      if (only >= 0) {
-        const update = this.updates[only];
-        out.aGx[i] = update.aG;
-        out.bGx[i] = update.bGx;
-        continue;
-      }
-      const [q00, q01, q10, q11] = this.four(here, above, x - 1, quarters);
+    const { lattice } = this;
+    const single = (i: number, x: number): void => {
+      const [q00, q01, q10, q11] = this.four(here, above, x);
       const lanes = [
         [q00, q01],
         [q10, q11],
       ] as const;
       const mean = inPlaneMean(lanes, this.kindG, this.section.omega);
-      if (!mean) continue;
+      if (!mean) return;
       const update = updateOf(mean, lattice.dt, this.geometryGx);
       out.aGx[i] = update.a;
       out.bGx[i] = update.b;
-    }
+    };
+    this.walkRuns(here, above, 1, lattice.columns, -1, single, (medium, from, to) => {
+      out.aGx.fill(medium.aG, from, to);
+      out.bGx.fill(medium.bGx, from, to);
+    });
   }
 
   private writeGy(below: QuarterRow, here: QuarterRow, out: RowCoefficients): void {
-    const { lattice, quarters } = this;
+    const { lattice } = this;
     const onNodes = lattice.polarization === "TMz";
-    const first = onNodes ? 1 : 0;
-    const last = onNodes ? lattice.columns - 1 : lattice.columns;
-    for (let i = first; i <= last; i += 1) {
-      const x = 2 * cellOfColumn(lattice, i);
-      const only = this.onlyMedium(below, here, x, x + 1);
-      if (only >= 0) {
-        const update = this.updates[only];
-        out.aGy[i] = update.aG;
-        out.bGy[i] = update.bGy;
-        continue;
-      }
-      const [q00, q01, q10, q11] = this.four(below, here, x, quarters);
+    const single = (i: number, x: number): void => {
+      const [q00, q01, q10, q11] = this.four(below, here, x);
       const lanes = [
         [q00, q10],
         [q01, q11],
       ] as const;
       const mean = inPlaneMean(lanes, this.kindG, this.section.omega);
-      if (!mean) continue;
+      if (!mean) return;
       const update = updateOf(mean, lattice.dt, this.geometryGy);
       out.aGy[i] = update.a;
       out.bGy[i] = update.b;
+    };
+    const last = onNodes ? lattice.columns - 1 : lattice.columns;
+    this.walkRuns(below, here, onNodes ? 1 : 0, last, 0, single, (medium, from, to) => {
+      out.aGy.fill(medium.aG, from, to);
+      out.bGy.fill(medium.bGy, from, to);
+    });
+  }
+
+  /**
+   * Walks the points of a row from column `first` to `last`, whose left quarter is 2·(position) + `shift`: points whose four quarters are
+   * of one medium in runs [from, to), the others singly.
+   */
+  private walkRuns(
+    lower: QuarterRow,
+    upper: QuarterRow,
+    first: number,
+    last: number,
+    shift: number,
+    single: (i: number, left: number) => void,
+    run: (medium: MediumUpdates, from: number, to: number) => void,
+  ): void {
+    const end = this.quarters.columns;
+    const origin = 2 * cellOfColumn(this.lattice, 0) + shift;
+    let i = first;
+    while (i <= last) {
+      const left = origin + 2 * i;
+      // Quarters outside the section repeat the outermost ones.
+      const l = Math.min(end - 1, Math.max(0, left));
+      const medium = lower.medium[l];
+      const runEnd = Math.min(lower.runEnd[l], upper.runEnd[l]);
+      const reach = runEnd === end ? Number.POSITIVE_INFINITY : runEnd;
+      if (medium < 0 || upper.medium[l] !== medium || left + 1 >= reach) {
+        single(i, left);
+        i += 1;
+        continue;
+      }
+      const count = Math.min(last + 1 - i, Math.floor((reach - left) / 2));
+      run(this.updates[medium], i, i + count);
+      i += count;
     }
   }
 
-  /** The medium of all four quarters, or −1. */
-  private onlyMedium(lower: QuarterRow, upper: QuarterRow, left: number, right: number): number {
-    const last = this.quarters.columns - 1;
-    const l = left < 0 ? 0 : left > last ? last : left;
-    const r = right < 0 ? 0 : right > last ? last : right;
-    const index = lower.medium[l];
-    const same = lower.medium[r] === index && upper.medium[l] === index && upper.medium[r] === index;
-    return same ? index : -1;
-  }
-
-  private four(
-    lower: QuarterRow,
-    upper: QuarterRow,
-    left: number,
-    quarters: QuarterRaster,
-  ): [Quarter, Quarter, Quarter, Quarter] {
+  private four(lower: QuarterRow, upper: QuarterRow, left: number): [Quarter, Quarter, Quarter, Quarter] {
+    const { quarters } = this;
     return [
       quarters.quarter(lower, left),
       quarters.quarter(lower, left + 1),

@@ -10,11 +10,23 @@ import type { SolverMedium } from "./properties.js";
 export interface QuarterRow {
   /** By quarter column: index of the only medium, or −1 where several meet. */
   medium: Int32Array;
+  /** By quarter column: the first column after it with another medium. */
+  runEnd: Int32Array;
   /** The quarters that are −1 above. */
   mixed: Map<number, Quarter>;
 }
 
 const KEPT_ROWS = 4;
+
+function runEndsOf(medium: Int32Array): Int32Array {
+  const ends = new Int32Array(medium.length);
+  let end = medium.length;
+  for (let x = medium.length - 1; x >= 0; x -= 1) {
+    if (x + 1 < medium.length && medium[x] !== medium[x + 1]) end = x + 1;
+    ends[x] = end;
+  }
+  return ends;
+}
 
 export class QuarterRaster {
   private readonly sweep: CoverageSweep;
@@ -53,7 +65,7 @@ export class QuarterRaster {
       });
       mixed.set(cell, { shares });
     }
-    const row = { medium, mixed };
+    const row = { medium, runEnd: runEndsOf(medium), mixed };
     this.kept.set(r, row);
     if (this.kept.size > KEPT_ROWS) this.kept.delete(this.kept.keys().next().value ?? r);
     return row;
