@@ -46,7 +46,7 @@ export class FrameError extends Error {
 export const frameByteLength = (width: number, height: number): number => FRAME_HEADER_BYTES + width * height;
 
 export interface EncodeOptions {
-  /** Counts frames of one view, from 0; wraps at 2³². */
+  /** Rises with every frame of a run; wraps at 2³². */
   sequence: number;
   /** Value of level 255 in the quantity's SI unit; null: the frame's own peak. */
   range: number | null;

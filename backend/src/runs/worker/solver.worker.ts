@@ -1,5 +1,5 @@
 /** The thread of one run: reads the scene, opens the solver's session and turns the loop until it is ended. */
-import { setPriority } from "node:os";
+import { getPriority, setPriority } from "node:os";
 import { parentPort, workerData } from "node:worker_threads";
 import { encodeFrame, frameByteLength, type FieldSample } from "@heddle/kernels/frames";
 import { readScene, sceneSha256, type Scene } from "@heddle/kernels/scene";
@@ -9,8 +9,9 @@ import { SolverLoop } from "./solver-loop.js";
 
 /** A paced or idle loop looks up at least this often, to report progress. */
 const LONGEST_SLEEP_MS = 200;
-/** On Linux a priority belongs to a thread: solving then gives way to the server's own work. */
-const NICENESS = 5;
+/** On Linux a priority belongs to a thread: solving gives way to the server's own work by this much. */
+const NICER_BY = 5;
+const NICEST = 19;
 
 type Post = (message: FromThread, transfer?: ArrayBuffer[]) => void;
 
@@ -18,7 +19,7 @@ async function main(): Promise<void> {
   const port = parentPort;
   if (port === null) throw new Error("The solver's thread was started as a program of its own.");
   const post: Post = (message, transfer = []) => port.postMessage(message, transfer);
-  if (process.platform === "linux") setPriority(NICENESS);
+  if (process.platform === "linux") setPriority(Math.min(NICEST, getPriority() + NICER_BY));
 
   // What comes while the section is being opened waits its turn.
   const early: ToThread[] = [];
