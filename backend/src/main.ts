@@ -1,6 +1,7 @@
 /** The server's process: settings, start, one line with the address, and an orderly end. */
 import "reflect-metadata";
 import { createApp } from "./app.js";
+import { StderrLogger } from "./common/stderr-logger.js";
 import { ConfigError, readConfig, type Config } from "./config/config.js";
 import { DataFolderError } from "./config/data-folder.js";
 import { listenError } from "./config/listen-error.js";
@@ -27,7 +28,7 @@ function sentenceOf(error: unknown, config: Config): string {
 }
 
 async function start(config: Config): Promise<void> {
-  const app = await createApp(config);
+  const app = await createApp(config, { logger: new StderrLogger() });
   let ending = false;
   const end = (signal: NodeJS.Signals): void => {
     // A second signal ends the process at once.
