@@ -223,11 +223,7 @@ export function SceneSheet({ scene, document }: { scene: SceneDto; document: Sce
           nameOf={nameOf}
           selected={selectedProbe}
           momentNs={momentNs}
-          empty={
-            drawn.probes.length === 0
-              ? "No probe yet: place one to see the field at a point over time."
-              : "Run the scene to see each probe's trace grow."
-          }
+          empty={tracesEmpty(drawn, run, handle.loading)}
         />
         <SpectrumPanel
           result={result.data ?? null}
@@ -252,6 +248,16 @@ export function SceneSheet({ scene, document }: { scene: SceneDto; document: Sce
       )}
     </div>
   );
+}
+
+function tracesEmpty(drawn: Scene, run: RunDto | null, loading: boolean): string {
+  if (drawn.probes.length === 0) return "No probe yet: place one to see the field at a point over time.";
+  if (run === null)
+    return loading ? "Looking for the last run…" : "Run the scene to see each probe's trace grow.";
+  if (run.state === "queued") return "The run waits for its turn.";
+  return isOver(run.state)
+    ? "Fetching the traces of the last run…"
+    : "Traces come with the run's first steps.";
 }
 
 function spectrumEmpty(run: RunDto | null, fetching: boolean): string {

@@ -1,8 +1,7 @@
 export type { Scale } from "./colour-maps";
 export { FieldKey } from "./field-key";
-export type { FieldLayerProps, SectionSize } from "./field-layer";
 export { FieldLayer } from "./field-layer";
 export { FieldReadout } from "./field-readout";
 export type { FieldSlot } from "./field-slot";
 export { createFieldSlot } from "./field-slot";
-export { labelOf, quantitiesOf, unitOf } from "./quantities";
+export { quantitiesOf } from "./quantities";

@@ -1,5 +1,5 @@
 export { useResult } from "./api/runs";
 export { EditedMark, RunPanel } from "./run-panel";
 export type { FrameView } from "./run-stream";
-export type { RunHandle, RunNotice, RunSinks } from "./use-run";
+export type { RunSinks } from "./use-run";
 export { useRun } from "./use-run";
