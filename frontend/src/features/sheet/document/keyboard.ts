@@ -10,12 +10,12 @@ import {
 import type { SheetEditor } from "./editor";
 import type { ToolId } from "./store";
 
-const ARROWS: Readonly<Record<string, readonly [number, number]>> = {
-  ArrowLeft: [-1, 0],
-  ArrowRight: [1, 0],
-  ArrowUp: [0, 1],
-  ArrowDown: [0, -1],
-};
+const ARROWS: ReadonlyMap<string, readonly [number, number]> = new Map([
+  ["ArrowLeft", [-1, 0]],
+  ["ArrowRight", [1, 0]],
+  ["ArrowUp", [0, 1]],
+  ["ArrowDown", [0, -1]],
+]);
 
 const toolOf = (letter: string): ToolId | undefined =>
   (Object.keys(TOOL_KEYS) as ToolId[]).find((tool) => TOOL_KEYS[tool] === letter.toUpperCase());
@@ -78,7 +78,7 @@ export function pressKey(editor: SheetEditor, key: SheetKey): boolean {
   if (editor.tools.keyDown(key)) return true;
   if (key.ctrl) return withControl(editor, key);
   if (key.alt) return false;
-  const arrow = ARROWS[key.key];
+  const arrow = ARROWS.get(key.key);
   if (arrow !== undefined) {
     if (editor.state.selection.size > 0 && !editor.state.readOnly)
       nudgeSelection(editor, arrow[0], arrow[1], key.shift);

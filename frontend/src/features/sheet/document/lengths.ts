@@ -27,16 +27,16 @@ export function readParameters(parameters: Scene["parameters"]): ParameterValues
 
 const PLAIN_NUMBER = /^[+-]?(\d+\.?\d*|\.\d+)(e[+-]?\d+)?$/i;
 const WITH_UNIT = /^([+-]?(?:\d+\.?\d*|\.\d+)(?:e[+-]?\d+)?)\s*(mm|cm|m|in|um|µm|μm|mil)$/i;
-const MM_PER_UNIT: Readonly<Record<string, number>> = {
-  mm: 1,
-  cm: 10,
-  m: 1000,
-  in: 25.4,
-  um: 1e-3,
-  µm: 1e-3,
-  μm: 1e-3,
-  mil: 0.0254,
-};
+const MM_PER_UNIT: ReadonlyMap<string, number> = new Map([
+  ["mm", 1],
+  ["cm", 10],
+  ["m", 1000],
+  ["in", 25.4],
+  ["um", 1e-3],
+  ["µm", 1e-3],
+  ["μm", 1e-3],
+  ["mil", 0.0254],
+]);
 
 export type TypedLength = { ok: true; length: Length; value: number } | { ok: false; sentence: string };
 
@@ -49,7 +49,7 @@ export function parseTypedLength(text: string, values: ParameterValues): TypedLe
   if (typed === "") return { ok: false, sentence: "Give a length in mm or an expression." };
   const plain = /^[+-]?\d+,\d+$/.test(typed) ? typed.replace(",", ".") : typed;
   const unit = WITH_UNIT.exec(plain);
-  const number = unit === null ? null : Number(unit[1]) * (MM_PER_UNIT[(unit[2] ?? "").toLowerCase()] ?? 1);
+  const number = unit === null ? null : Number(unit[1]) * (MM_PER_UNIT.get(unit[2].toLowerCase()) ?? 1);
   const length: Length = number !== null ? roundMm(number) : PLAIN_NUMBER.test(plain) ? Number(plain) : plain;
   const reading = readLength(length, values);
   return reading.ok ? { ok: true, length, value: reading.value } : reading;
@@ -67,7 +67,7 @@ export function shiftLength(length: Length, deltaMm: number): Length {
   const head = match?.[1];
   const trailing = match !== null && head !== undefined && !EXPONENT.test(head);
   const base = trailing ? head : length;
-  const constant = trailing ? Number(`${match[2] ?? ""}${match[3] ?? ""}`) : 0;
+  const constant = trailing ? Number(`${match[2]}${match[3]}`) : 0;
   const total = roundMm(constant + deltaMm);
   if (total === 0) return base;
   const shifted = `${base} ${total > 0 ? "+" : "-"} ${String(Math.abs(total))}`;

@@ -45,6 +45,10 @@ export function findItem(scene: Scene, ref: ItemRef): Item | undefined {
   return byId(items).get(id);
 }
 
+/** The selected item where there is exactly one. */
+export const onlyRef = (selection: ReadonlySet<ItemRef>): ItemRef | undefined =>
+  selection.size === 1 ? selection.values().next().value : undefined;
+
 export const findPatch = (scene: Scene, ref: ItemRef): Patch | undefined => {
   const { list, id } = splitRef(ref);
   return list === "paint" ? byId(scene.paint).get(id) : undefined;

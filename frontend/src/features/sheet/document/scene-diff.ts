@@ -121,12 +121,12 @@ function applyList(items: readonly Entry[], diff: ListDiff): Entry[] {
 
 /** The scene with the change in it. Items that the diff does not name stay as they are. */
 export function applyDiff(scene: Scene, diff: SceneDiff): Scene {
-  const next: Record<string, unknown> = { ...scene };
-  for (const list of diff.lists) next[list.key] = applyList(scene[list.key], list);
+  const next = new Map<string, unknown>(Object.entries(scene));
+  for (const list of diff.lists) next.set(list.key, applyList(scene[list.key], list));
   for (const { key, after } of diff.values) {
-    if (after === undefined) delete next[key];
-    else next[key] = after;
+    if (after === undefined) next.delete(key);
+    else next.set(key, after);
   }
   // Only whole values taken from scenes were put in place, so the shape is a scene's.
-  return next as unknown as Scene;
+  return Object.fromEntries(next) as unknown as Scene;
 }

@@ -55,7 +55,7 @@ export const GESTURE_REPORT_MS = 60;
 const DEFAULT_INSETS: Insets = { left: 24, top: 24, right: 24, bottom: 24 };
 
 const firstFit = (scene: Scene): string =>
-  scene.media.find((medium) => "perfect" in medium)?.id ?? scene.media[0]?.id ?? "pec";
+  scene.media.find((medium) => "perfect" in medium)?.id ?? scene.media.at(0)?.id ?? "pec";
 
 /**
  * The editor's document store, apart from React. A change goes `begin`, any number of `update`, then `finish` or

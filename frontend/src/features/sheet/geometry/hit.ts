@@ -24,7 +24,7 @@ export function itemAt(drawing: Drawing, at: Xy, reachMm: number): ItemRef | nul
       const corners = rectangleCorners(probe);
       const rim = corners.some((corner, i) => {
         const next = corners[(i + 1) % corners.length];
-        return next !== undefined && distanceToSegment(at, corner, next) <= reachMm;
+        return distanceToSegment(at, corner, next) <= reachMm;
       });
       if (rim) return makeRef("probes", probe.id);
     }

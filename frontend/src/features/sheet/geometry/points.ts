@@ -29,7 +29,7 @@ export function distanceToSegment(at: Xy, a: Xy, b: Xy): number {
 }
 
 export function distanceToPolyline(at: Xy, points: readonly Xy[]): number {
-  const first = points[0];
+  const first = points.at(0);
   if (first === undefined) return Number.POSITIVE_INFINITY;
   let nearest = distance(at, first);
   let previous = first;

@@ -1,4 +1,4 @@
-import type { Length, Patch, Port, Probe } from "@heddle/kernels/scene";
+import type { Length, Patch } from "@heddle/kernels/scene";
 import type { DrawnItem } from "../document/drawing";
 import type { Item } from "../document/refs";
 import { frameOf, type Frame, type Handle } from "./handles";
@@ -86,7 +86,6 @@ function scaleInto(
   });
   return points.map((point, i): Point => {
     const at = drawn[i];
-    if (at === undefined) return point;
     const x = map(at[0], inner(from.box.left, from.box.right), inner(to.box.left, to.box.right));
     const y = map(at[1], inner(from.box.bottom, from.box.top), inner(to.box.bottom, to.box.top));
     return [keep(point[0], at[0], x), keep(point[1], at[1], y)];
@@ -96,7 +95,7 @@ function scaleInto(
 function withVertex(item: Item, index: number, to: Xy): Item {
   const point: Point = [roundMm(to[0]), roundMm(to[1])];
   if ("from" in item) {
-    const ended = item as Port | Extract<Probe, { kind: "line" }>;
+    const ended = item;
     return index === 0 ? { ...ended, from: point } : { ...ended, to: point };
   }
   if (!("points" in item)) return item;
@@ -126,7 +125,7 @@ export function pullHandle(item: Item, drawn: DrawnItem, handle: Handle, to: Xy,
       y: keep(item.y, drawn.y, bottom),
       width: keep(item.width, drawn.width, right - left),
       height: keep(item.height, drawn.height, top - bottom),
-    } as Item;
+    };
   if ("rx" in item && "rx" in drawn)
     return {
       ...item,
@@ -134,7 +133,7 @@ export function pullHandle(item: Item, drawn: DrawnItem, handle: Handle, to: Xy,
       y: keep(item.y, drawn.y, next.centre[1]),
       rx: keep(item.rx, drawn.rx, (right - left) / 2),
       ry: keep(item.ry, drawn.ry, (top - bottom) / 2),
-    } as Item;
+    };
   const stroke = item as Patch;
   if (stroke.kind === "stroke" && "points" in drawn && "widthMm" in drawn)
     return { ...stroke, points: scaleInto(stroke.points, drawn.points, frame, next, drawn.widthMm / 2) };

@@ -25,12 +25,10 @@ export function simplifyPolyline(points: readonly Xy[], toleranceMm: number): Xy
   for (let span = spans.pop(); span !== undefined; span = spans.pop()) {
     const [from, to] = span;
     const [a, b] = [points[from], points[to]];
-    if (a === undefined || b === undefined) continue;
     let worst = toleranceMm;
     let at = -1;
     for (let i = from + 1; i < to; i += 1) {
       const point = points[i];
-      if (point === undefined) continue;
       const off = distanceToSegment(point, a, b);
       if (off > worst) {
         worst = off;

@@ -8,8 +8,6 @@ const patch = (id: string, x = 0) =>
 describe("a diff of two scenes", () => {
   const before = emptyScene({ paint: [patch("a"), patch("b"), patch("c"), patch("d")] });
   const [a, b, c, d] = before.paint;
-  if (a === undefined || b === undefined || c === undefined || d === undefined)
-    throw new Error("four patches");
 
   it.each([
     ["an item changed", { ...before, paint: [a, patch("b", 7), c, d] }],

@@ -54,8 +54,8 @@ function legDimensions(points: readonly Xy[], closed: boolean): Dimension[] {
   const side = closed && area < 0 ? -1 : 1;
   return ends.flatMap((to, i) => {
     const from = points[i];
-    const length = from === undefined ? 0 : distance(from, to);
-    if (from === undefined || length === 0) return [];
+    const length = distance(from, to);
+    if (length === 0) return [];
     const away: Xy = [(side * (to[1] - from[1])) / length, (-side * (to[0] - from[0])) / length];
     return { from, to, away, text: figure(length) };
   });

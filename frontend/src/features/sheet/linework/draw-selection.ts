@@ -1,6 +1,6 @@
 import { toPx } from "../../../hooks/viewport";
 import { drawnItem } from "../document/drawing";
-import { findItem } from "../document/refs";
+import { findItem, onlyRef } from "../document/refs";
 import type { SheetState } from "../document/store";
 import { handlesOf } from "../geometry/handles";
 import { measureParts } from "../tools/measure/measuring";
@@ -42,8 +42,8 @@ function outlineSelected(pen: Pen, state: SheetState): void {
 
 function drawHandles(pen: Pen, state: SheetState): void {
   const { context, palette, view } = pen;
-  const [only] = state.selection;
-  if (state.readOnly || state.selection.size !== 1 || only === undefined) return;
+  const only = onlyRef(state.selection);
+  if (state.readOnly || only === undefined) return;
   const item = drawnItem(state.drawing, only);
   if (item === null) return;
   for (const handle of handlesOf(item)) {
@@ -60,8 +60,8 @@ function drawHandles(pen: Pen, state: SheetState): void {
 }
 
 function drawSelectedDimensions(pen: Pen, state: SheetState): void {
-  const [only] = state.selection;
-  if (state.selection.size !== 1 || only === undefined) return;
+  const only = onlyRef(state.selection);
+  if (only === undefined) return;
   const [item, drawn] = [findItem(state.document, only), drawnItem(state.drawing, only)];
   if (item === undefined || drawn === null) return;
   for (const dimension of dimensionsOf(item, drawn)) drawDimension(pen, dimension);

@@ -35,7 +35,6 @@ export function groupPaint(paint: readonly ResolvedPatch[]): PaintGroup[] {
     let joined = false;
     for (let i = groups.length - 1; i >= Math.max(0, groups.length - LOOK_BACK); i -= 1) {
       const group = groups[i];
-      if (group === undefined) break;
       if (group.medium === patch.medium) {
         group.patches.push(patch);
         joined = true;

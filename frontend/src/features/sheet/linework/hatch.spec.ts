@@ -36,7 +36,7 @@ describe("hatching", () => {
     const matched = medium({ ...base, magneticLoss: matchingMagneticLoss(base) });
     expect(lossesOf(matched, 1).matched).toBe(true);
     const [falling, rising] = hatchingOf(matched, 1).strokes;
-    expect(falling?.spacingPx).toBe(rising?.spacingPx);
+    expect(falling.spacingPx).toBe(rising.spacingPx);
     expect(lossesOf(medium({ ...base, magneticLoss: 100 }), 1).matched).toBe(false);
   });
 

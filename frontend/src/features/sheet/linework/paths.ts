@@ -37,7 +37,7 @@ function build(patch: ResolvedPatch): Path2D {
       polyline(path, patch.points, false);
       // A stroke of one point is a dot: a line of no length gets round caps.
       const [first] = patch.points;
-      if (patch.points.length === 1 && first !== undefined) path.lineTo(first[0], first[1]);
+      if (patch.points.length === 1) path.lineTo(first[0], first[1]);
     }
   }
   return path;

@@ -9,6 +9,15 @@ export function putItem(editor: SheetEditor, ref: ItemRef, label: string, item: 
   editor.edit(label, (scene) => changeItems(scene, [ref], () => item));
 }
 
+/** The object without an optional key: an absent key says "the default", which undefined does not in JSON. */
+export function without<T extends object>(object: T, key: OptionalKey<T>): T {
+  // Only an optional key was taken out, so what remains is still a T.
+  return Object.fromEntries(Object.entries(object).filter(([name]) => name !== key)) as T;
+}
+type OptionalKey<T> = T extends unknown
+  ? { [K in keyof T]-?: undefined extends T[K] ? K : never }[keyof T]
+  : never;
+
 export function InspectorHead(props: { title: string; aside?: string; children?: ReactNode }) {
   return (
     <header className="shelf-head">

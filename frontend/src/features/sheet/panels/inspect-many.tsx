@@ -19,7 +19,7 @@ export function ManyInspector({ editor }: { editor: SheetEditor }) {
     areas.push(ref);
     media.add(patch.medium);
   }
-  const [first] = media;
+  const first = media.values().next().value;
   const mixed = media.size > 1;
   return (
     <>

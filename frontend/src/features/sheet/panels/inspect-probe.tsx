@@ -9,7 +9,7 @@ import type { SheetEditor } from "../document/editor";
 import type { ItemRef } from "../document/refs";
 import { useSheet } from "../surface/use-sheet";
 import { aboveZero, ChoiceField, FieldGrid, LengthField, TextEntry } from "./fields";
-import { InspectorHead, putItem, SelectionActions } from "./inspect-common";
+import { InspectorHead, putItem, SelectionActions, without } from "./inspect-common";
 
 /** The components that a section of this polarization has. */
 const COMPONENTS: Readonly<Record<Polarization, readonly FieldComponent[]>> = {
@@ -51,8 +51,7 @@ export function ProbeInspector(props: { editor: SheetEditor; probe: Probe; itemR
           disabled={readOnly}
           read={(text) => ({ ok: true, value: text.trim().slice(0, MAXIMA.nameLength) })}
           onCommit={(name) => {
-            const { name: _left, ...rest } = probe;
-            put("Name the probe", name === "" ? rest : { ...rest, name });
+            put("Name the probe", name === "" ? without(probe, "name") : { ...probe, name });
           }}
         />
         {probe.kind === "line" ? (

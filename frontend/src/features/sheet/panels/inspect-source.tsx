@@ -3,7 +3,7 @@ import type { SheetEditor } from "../document/editor";
 import type { ItemRef } from "../document/refs";
 import { useSheet } from "../surface/use-sheet";
 import { ChoiceField, FieldGrid, LengthField, NumberField } from "./fields";
-import { InspectorHead, putItem, SelectionActions } from "./inspect-common";
+import { InspectorHead, putItem, SelectionActions, without } from "./inspect-common";
 
 type Kind = Waveform["kind"] | "default";
 
@@ -22,8 +22,7 @@ export function SourceInspector(props: { editor: SheetEditor; source: Source; it
   const { fromGHz, toGHz } = scene.band;
   const middle = Number(((fromGHz + toGHz) / 2).toPrecision(6));
   const choose = (kind: Kind): void => {
-    const { waveform: _left, ...rest } = source;
-    if (kind === "default") put("Use the default pulse", rest);
+    if (kind === "default") put("Use the default pulse", without(source, "waveform"));
     else if (kind === "tone")
       put("Drive with a tone", { ...source, waveform: { kind, GHz: middle, rampCycles: 5 } });
     else if (kind === "pulse")

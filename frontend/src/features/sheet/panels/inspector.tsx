@@ -1,5 +1,5 @@
 import type { SheetEditor } from "../document/editor";
-import { findItem, splitRef } from "../document/refs";
+import { findItem, onlyRef, splitRef } from "../document/refs";
 import { useSheet } from "../surface/use-sheet";
 import { ManyInspector } from "./inspect-many";
 import { PatchInspector } from "./inspect-patch";
@@ -24,9 +24,9 @@ export function Inspector({ editor }: { editor: SheetEditor }) {
 function Selected({ editor }: { editor: SheetEditor }) {
   const selection = useSheet(editor, (state) => state.selection);
   const scene = useSheet(editor, (state) => state.document);
-  const [only] = selection;
-  if (only === undefined) return <SectionInspector editor={editor} />;
+  const only = onlyRef(selection);
   if (selection.size > 1) return <ManyInspector editor={editor} />;
+  if (only === undefined) return <SectionInspector editor={editor} />;
   const item = findItem(scene, only);
   if (item === undefined) return null;
   // A key of its own for each item: an entry under way belongs to the item it was begun for.

@@ -17,8 +17,8 @@ export function PatchList({ editor }: { editor: SheetEditor }) {
   const titleId = useId();
   const refs = allRefs(drawing.scene).toReversed();
   const shown = refs.slice(0, MOST_ROWS);
-  const [first] = selection;
-  const current = first !== undefined && shown.includes(first) ? first : shown[0];
+  const first = selection.values().next().value;
+  const current = first !== undefined && shown.includes(first) ? first : shown.at(0);
   const broken = new Map(drawing.undrawable.map(({ ref, sentence }) => [ref, sentence]));
 
   const focusRow = (at: number): void => {
@@ -33,7 +33,7 @@ export function PatchList({ editor }: { editor: SheetEditor }) {
   const onKeyDown = (event: KeyboardEvent, ref: ItemRef, at: number): void => {
     const step = { ArrowDown: 1, ArrowUp: -1 }[event.key];
     if (step !== undefined) {
-      const next = shown[at + step];
+      const next = at + step < 0 ? undefined : shown.at(at + step);
       if (next !== undefined && !event.ctrlKey && !event.shiftKey) editor.select([next]);
       focusRow(at + step);
     } else if (event.key === "Home") focusRow(0);

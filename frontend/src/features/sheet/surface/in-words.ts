@@ -1,7 +1,7 @@
 import type { Patch } from "@heddle/kernels/scene";
 import { figure } from "../camera/lengths-in-words";
 import type { Drawing } from "../document/drawing";
-import { byId, findItem, type ItemRef, splitRef } from "../document/refs";
+import { byId, findItem, onlyRef, type ItemRef, splitRef } from "../document/refs";
 import type { SheetState } from "../document/store";
 import { sourceLabel } from "../linework/draw-marks";
 
@@ -69,11 +69,11 @@ export function itemInWords(ref: ItemRef, drawing: Drawing): string {
 /** The whole sheet in one sentence, for screen readers. */
 export function sheetInWords({ document, drawing, selection }: SheetState): string {
   const section = `${figure(drawing.widthMm)} by ${figure(drawing.heightMm)} millimetres`;
-  const [only] = selection;
+  const only = onlyRef(selection);
   const chosen =
     selection.size === 0
       ? "nothing selected"
-      : selection.size === 1 && only !== undefined
+      : only !== undefined
         ? `selected: ${itemInWords(only, drawing)}`
         : `${String(selection.size)} items selected`;
   return `Drawing sheet: ${document.name}, section ${section}, ${String(document.paint.length)} patches, ${chosen}`;

@@ -41,6 +41,12 @@ export interface ToolPicture {
   brush?: { at: Xy; widthMm: number };
 }
 
+/** The mark where a press would come to rest; null where it rests on nothing. */
+export const snapPicture = (pointer: SheetPointer | null): ToolPicture | null =>
+  pointer === null || pointer.snapReason === null
+    ? null
+    : { snap: { at: pointer.snapped, reason: pointer.snapReason } };
+
 /** What states know of the machine that runs them. */
 export interface ToolMachine {
   readonly store: SheetStore;
@@ -72,14 +78,12 @@ export abstract class ToolState {
 
   enter(): void {}
   exit(): void {}
-  pointerDown(_pointer: SheetPointer): void {}
-  pointerMove(_pointer: SheetPointer): void {}
-  pointerUp(_pointer: SheetPointer): void {}
-  doubleClick(_pointer: SheetPointer): void {}
+  pointerDown?(pointer: SheetPointer): void;
+  pointerMove?(pointer: SheetPointer): void;
+  pointerUp?(pointer: SheetPointer): void;
+  doubleClick?(pointer: SheetPointer): void;
   /** True where the key was used up. */
-  keyDown(_key: SheetKey): boolean {
-    return false;
-  }
+  keyDown?(key: SheetKey): boolean;
   /** A lost pointer or another tool chosen: give up what is under way. */
   cancel(): void {}
   /** Escape. At rest a tool hands over to the select tool; at work it gives up what is under way. */

@@ -86,7 +86,7 @@ export class Toolbox implements ToolMachine {
       this.store.touchToolPicture();
       return;
     }
-    if (raw.button === 0) this.#state.pointerDown(this.#pointer(raw));
+    if (raw.button === 0) this.#state.pointerDown?.(this.#pointer(raw));
   }
   pointerMove(raw: RawPointer): void {
     if (this.#panning !== null) {
@@ -94,7 +94,7 @@ export class Toolbox implements ToolMachine {
       this.#panning = raw.px;
       return;
     }
-    this.#state.pointerMove(this.#pointer(raw));
+    this.#state.pointerMove?.(this.#pointer(raw));
   }
   pointerUp(raw: RawPointer): void {
     if (this.#panning !== null) {
@@ -102,10 +102,10 @@ export class Toolbox implements ToolMachine {
       this.store.touchToolPicture();
       return;
     }
-    this.#state.pointerUp(this.#pointer(raw));
+    this.#state.pointerUp?.(this.#pointer(raw));
   }
   doubleClick(raw: RawPointer): void {
-    this.#state.doubleClick(this.#pointer(raw));
+    this.#state.doubleClick?.(this.#pointer(raw));
   }
   /** The pointer was taken away mid-gesture. */
   pointerCancel(): void {
@@ -122,7 +122,7 @@ export class Toolbox implements ToolMachine {
       }
       return true;
     }
-    return this.#state.keyDown(key);
+    return this.#state.keyDown?.(key) ?? false;
   }
   keyUp(key: SheetKey): void {
     if (key.key === " ") this.releaseSpace();

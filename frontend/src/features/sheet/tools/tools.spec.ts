@@ -56,7 +56,7 @@ describe("brush", () => {
     driver.drag([20, 40], ...path);
     const [stroke] = driver.paint;
     expect(stroke).toMatchObject({ kind: "stroke", widthMm: 6, medium: "pec" });
-    expect(stroke !== undefined && "points" in stroke && stroke.points).toEqual([
+    expect("points" in stroke && stroke.points).toEqual([
       [20, 40],
       [119.5, 40],
     ]);
@@ -227,7 +227,7 @@ describe("select", () => {
   it("never turns a shape inside out", () => {
     const driver = new SheetDriver(two).click([30, 25]).holding({ alt: true }).drag([40, 25], [0, 25]);
     const [patch] = driver.paint;
-    expect(patch !== undefined && "width" in patch && Number(patch.width)).toBeGreaterThan(0);
+    expect("width" in patch && Number(patch.width)).toBeGreaterThan(0);
     expect(patch).toMatchObject({ x: 20 });
   });
 

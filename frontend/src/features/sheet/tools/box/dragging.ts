@@ -1,7 +1,7 @@
 import { addPatch, changeItems, freeId } from "../../document/edits";
 import { type ItemRef, makeRef } from "../../document/refs";
 import { type BoxMm, boxBetween, type Xy } from "../../geometry/points";
-import { type SheetPointer, type ToolMachine, type ToolPicture, ToolState } from "../tool";
+import { type SheetPointer, snapPicture, type ToolMachine, type ToolPicture, ToolState } from "../tool";
 import type { BoxKind } from "./box-tools";
 
 /** From the first corner to the pointer. Shift makes it square, Ctrl draws it about its middle. */
@@ -49,8 +49,7 @@ export class BoxDragging extends ToolState {
   }
 
   override picture(): ToolPicture | null {
-    const pointer = this.#pointer;
-    return pointer?.snapReason == null ? null : { snap: { at: pointer.snapped, reason: pointer.snapReason } };
+    return snapPicture(this.#pointer);
   }
 
   #boxTo(pointer: SheetPointer): BoxMm {

@@ -1,7 +1,14 @@
 import { addPatch, freeId } from "../../document/edits";
 import { makeRef } from "../../document/refs";
 import { defaultBox } from "../default-place";
-import { type SheetKey, type SheetPointer, type ToolMachine, type ToolPicture, ToolState } from "../tool";
+import {
+  type SheetKey,
+  type SheetPointer,
+  snapPicture,
+  type ToolMachine,
+  type ToolPicture,
+  ToolState,
+} from "../tool";
 import type { BoxKind } from "./box-tools";
 import { BoxDragging } from "./dragging";
 
@@ -40,7 +47,6 @@ export class BoxIdle extends ToolState {
   }
 
   override picture(): ToolPicture | null {
-    const hover = this.#hover;
-    return hover?.snapReason == null ? null : { snap: { at: hover.snapped, reason: hover.snapReason } };
+    return snapPicture(this.#hover);
   }
 }

@@ -40,8 +40,8 @@ export class Painting extends ToolState {
   }
 
   override pointerMove(pointer: SheetPointer): void {
-    const [first, last] = [this.#points[0], this.#points.at(-1)];
-    if (first === undefined || last === undefined) return;
+    const first = this.#points[0];
+    const last = this.#points[this.#points.length - 1];
     if (pointer.shift) this.#points = [first, pointer.snapped];
     else if (distance(last, pointer.at) * this.store.view.pxPerMm < 1) return;
     else this.#points.push(pointer.at);

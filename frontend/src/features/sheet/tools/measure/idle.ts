@@ -1,5 +1,5 @@
 import type { Xy } from "../../geometry/points";
-import { type SheetPointer, type ToolMachine, type ToolPicture, ToolState } from "../tool";
+import { type SheetPointer, snapPicture, type ToolMachine, type ToolPicture, ToolState } from "../tool";
 import { Measuring } from "./measuring";
 
 export interface Measured {
@@ -38,10 +38,7 @@ export class MeasureIdle extends ToolState {
   }
 
   override picture(): ToolPicture {
-    const picture: ToolPicture = {};
-    if (this.#measured !== null) picture.measure = this.#measured;
-    const hover = this.#hover;
-    if (hover?.snapReason != null) picture.snap = { at: hover.snapped, reason: hover.snapReason };
-    return picture;
+    const picture = snapPicture(this.#hover) ?? {};
+    return this.#measured === null ? picture : { ...picture, measure: this.#measured };
   }
 }

@@ -1,7 +1,14 @@
 import { type ItemRef, splitRef } from "../../document/refs";
 import { distance, type Xy } from "../../geometry/points";
 import { defaultPoint } from "../default-place";
-import { type SheetKey, type SheetPointer, type ToolMachine, type ToolPicture, ToolState } from "../tool";
+import {
+  type SheetKey,
+  type SheetPointer,
+  snapPicture,
+  type ToolMachine,
+  type ToolPicture,
+  ToolState,
+} from "../tool";
 import { PlaceDragging } from "./dragging";
 import type { MarkKind } from "./place-tools";
 
@@ -42,10 +49,7 @@ export class PlaceIdle extends ToolState {
   }
 
   override picture(): ToolPicture | null {
-    const hover = this.#hover;
-    return hover?.snapReason == null || this.cursor === "move"
-      ? null
-      : { snap: { at: hover.snapped, reason: hover.snapReason } };
+    return this.cursor === "move" ? null : snapPicture(this.#hover);
   }
 
   #refused(): boolean {

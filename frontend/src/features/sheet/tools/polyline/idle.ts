@@ -2,7 +2,14 @@ import { addPatch, freeId } from "../../document/edits";
 import { makeRef } from "../../document/refs";
 import type { Xy } from "../../geometry/points";
 import { defaultBox } from "../default-place";
-import { type SheetKey, type SheetPointer, type ToolMachine, type ToolPicture, ToolState } from "../tool";
+import {
+  type SheetKey,
+  type SheetPointer,
+  snapPicture,
+  type ToolMachine,
+  type ToolPicture,
+  ToolState,
+} from "../tool";
 import { PolylinePlacing } from "./placing";
 import type { PolylineKind } from "./polyline-tools";
 
@@ -51,7 +58,6 @@ export class PolylineIdle extends ToolState {
   }
 
   override picture(): ToolPicture | null {
-    const hover = this.#hover;
-    return hover?.snapReason == null ? null : { snap: { at: hover.snapped, reason: hover.snapReason } };
+    return snapPicture(this.#hover);
   }
 }

@@ -30,8 +30,8 @@ export class PolylinePlacing extends ToolState {
   }
 
   override pointerDown(pointer: SheetPointer): void {
-    const [first, last] = [this.#points[0], this.#points.at(-1)];
-    if (first === undefined || last === undefined) return;
+    const first = this.#points[0];
+    const last = this.#points[this.#points.length - 1];
     const closes =
       this.#kind.closed &&
       this.#points.length >= this.#kind.leastPoints &&

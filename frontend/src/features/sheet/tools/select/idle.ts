@@ -1,4 +1,5 @@
 import { drawnItem } from "../../document/drawing";
+import { onlyRef } from "../../document/refs";
 import { distance } from "../../geometry/points";
 import { type Handle, handlesOf } from "../../geometry/handles";
 import { itemAt } from "../../geometry/hit";
@@ -37,7 +38,7 @@ export class SelectIdle extends ToolState {
 
   override pointerDown(pointer: SheetPointer): void {
     const handle = this.#handleAt(pointer);
-    const [only] = this.store.state.selection;
+    const only = onlyRef(this.store.state.selection);
     if (handle !== null && only !== undefined) {
       this.machine.go(new Resizing(this.machine, only, handle));
       return;
@@ -54,8 +55,8 @@ export class SelectIdle extends ToolState {
 
   #handleAt(pointer: SheetPointer): Handle | null {
     const { selection, readOnly, drawing } = this.store.state;
-    const [only] = selection;
-    if (readOnly || selection.size !== 1 || only === undefined) return null;
+    const only = onlyRef(selection);
+    if (readOnly || only === undefined) return null;
     const item = drawnItem(drawing, only);
     if (item === null) return null;
     let nearest: Handle | null = null;
