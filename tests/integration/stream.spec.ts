@@ -102,18 +102,21 @@ describe("runs and stream of the built server", () => {
     await viewer.view({ runId: run.id, quantity: "absE", width: 60, height: 40, range: null });
     await until(() => viewer.frames.length > 0);
 
-    const before = viewer.frames.length;
-    const edited = endlessScene({
-      paint: [{ id: "fill", kind: "rectangle", x: 35, y: 0, width: 25, height: 40, medium: "lining" }],
-    });
-    const sentAt = performance.now();
-    const answer = await engineer.send<{ step: number }>("POST", `/api/runs/${run.id}/edits`, {
-      document: edited,
-    });
-    expect(answer.status).toBe(200);
-    await until(() => viewer.frames.length > before);
-    const latencyMs = performance.now() - sentAt;
-    expect(latencyMs).toBeLessThan(200);
+    const lining = (x: number) =>
+      endlessScene({
+        paint: [{ id: "fill", kind: "rectangle", x, y: 0, width: 60 - x, height: 40, medium: "lining" }],
+      });
+    // The median of five, so that one hiccup of the machine decides nothing.
+    const latenciesMs: number[] = [];
+    for (const x of [55, 50, 45, 40, 35]) {
+      const before = viewer.frames.length;
+      const sentAt = performance.now();
+      const answer = await engineer.send("POST", `/api/runs/${run.id}/edits`, { document: lining(x) });
+      expect(answer.status).toBe(200);
+      await until(() => viewer.frames.length > before);
+      latenciesMs.push(performance.now() - sentAt);
+    }
+    expect(latenciesMs.sort((a, b) => a - b).at(2)).toBeLessThan(200);
 
     const amplitude = async (): Promise<number> => {
       await command(run.id, { kind: "step", steps: 4_000 });
@@ -127,11 +130,11 @@ describe("runs and stream of the built server", () => {
     const bare = await amplitude();
     expect(lined).toBeLessThan(0.5 * bare);
 
-    expect(await get(run.id)).toMatchObject({ edited: true, edits: { length: 2 } });
+    expect(await get(run.id)).toMatchObject({ edited: true, edits: { length: 6 } });
     await command(run.id, { kind: "stop" });
     const result = resultSchema.parse((await engineer.send("GET", `/api/runs/${run.id}/result`)).body);
     expect(result.probes[0]?.spectrum).toBeNull();
-    expect(result.edits).toHaveLength(2);
+    expect(result.edits).toHaveLength(6);
   });
 
   it("refuses an edit that touches the mesh, with every reason", async () => {
