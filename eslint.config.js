@@ -73,7 +73,16 @@ function importZones() {
 }
 
 export default tseslint.config(
-  { ignores: ["**/dist/**", "**/node_modules/**", "drizzle/**", "**/*.gen.ts", "**/*.gen.d.ts"] },
+  {
+    ignores: [
+      "**/dist/**",
+      "**/node_modules/**",
+      "drizzle/**",
+      "kernels/assembly/**",
+      "**/*.gen.ts",
+      "**/*.gen.d.ts",
+    ],
+  },
   js.configs.recommended,
   {
     files: ["**/*.{ts,tsx}"],
@@ -109,13 +118,16 @@ export default tseslint.config(
   },
   {
     files: ["kernels/src/**/*.ts"],
-    ignores: ["kernels/src/cli/**", "**/*.spec.ts"],
+    ignores: ["kernels/src/cli/**", "kernels/src/threads/**", "**/*.spec.ts"],
     rules: {
       "no-restricted-imports": [
         "error",
         {
           patterns: [
-            { group: ["node:*"], message: "numerics do no I/O and run in a browser too: only src/cli may." },
+            {
+              group: ["node:*"],
+              message: "numerics do no I/O and run in a browser too: only src/cli and src/threads may.",
+            },
             {
               group: ["@nestjs/*", "react", "react-dom", "drizzle-orm"],
               message: "numerics know no framework.",

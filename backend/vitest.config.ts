@@ -5,6 +5,7 @@ export default defineConfig({
   ssr: { resolve: { conditions: ["source"] } },
   test: {
     include: ["src/**/*.spec.ts"],
+    globalSetup: ["../kernels/bin/assemble.mjs"],
     environment: "node",
     // Each file opens embedded databases of its own; two at a time fit small machines.
     pool: "forks",

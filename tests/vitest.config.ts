@@ -9,6 +9,7 @@ export default defineConfig({
   test: {
     name: "tests",
     include: ["**/*.spec.ts"],
+    globalSetup: ["../kernels/bin/assemble.mjs"],
     environment: "node",
     pool: "threads",
     testTimeout: 120_000,

@@ -4,6 +4,7 @@ import { existsSync, mkdirSync, readdirSync, rmSync, statSync, utimesSync, write
 import { createRequire } from "node:module";
 import { join } from "node:path";
 import { fileURLToPath } from "node:url";
+import { ensureAssembled } from "./assemble.mjs";
 
 const folder = fileURLToPath(new URL("..", import.meta.url));
 const stamp = join(folder, "dist", ".built");
@@ -46,6 +47,7 @@ const takeLock = () => {
 
 /** Builds kernels/dist where it is missing or older than its source. Nothing is printed on standard output. */
 export const ensureBuilt = () => {
+  ensureAssembled();
   if (isFresh() || !takeLock()) return;
   try {
     const started = new Date();

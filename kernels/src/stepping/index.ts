@@ -2,3 +2,7 @@
 export * from "./engine.js";
 export { packArrays, unpackArrays } from "./packing.js";
 export { ReferenceEngine } from "./reference.js";
+export { loadKernel } from "./wasm/kernel.js";
+export type { KernelOutcome } from "./wasm/kernel.js";
+export { WasmEngine } from "./wasm/wasm-engine.js";
+export type { SpawnHelper, WasmOptions } from "./wasm/wasm-engine.js";

@@ -1,0 +1,344 @@
+/**
+ * The fast engine: fields, coefficients and layers in one shared memory, stepped by the WebAssembly kernel in many steps per sweep
+ * and, where helpers can be had, by several threads. In float32; the bits do not depend on the number of threads nor on how
+ * steps are dealt out.
+ */
+import type { FieldArray, Lattice } from "../../lattice/index.js";
+import type {
+  CoefficientSource,
+  DrivePoint,
+  Engine,
+  EngineField,
+  EngineFields,
+  EngineSetup,
+  RowCoefficients,
+  Tap,
+} from "../engine.js";
+import { rowCoefficients } from "../engine.js";
+import { packArrays, unpackArrays } from "../packing.js";
+import { Arena } from "./arena.js";
+import * as at from "./layout.js";
+import { readRuns, RunCutter } from "./runs.js";
+import { isLayerRow, layStrips, stripBytes } from "./strips.js";
+import type { LayerStrips } from "./strips.js";
+import type { KernelExports, KernelModule, SharedMemory } from "./web-assembly.js";
+import { platform } from "./web-assembly.js";
+
+/** Starts a thread that instantiates `module` on `memory` and calls its export `serve`, which returns after `quit`. */
+export type SpawnHelper = (task: { module: KernelModule; memory: SharedMemory }) => void;
+
+export interface WasmOptions {
+  /** At most this many threads, the caller's own among them; 1 where `spawn` is missing. */
+  threads?: number;
+  spawn?: SpawnHelper;
+  /** Most steps of one block; chosen by the size of a row where it is missing. */
+  blockSteps?: number;
+}
+
+/** Rows that one block works on should stay in a core's own cache. */
+const BLOCK_CACHE_BYTES = 1024 * 1024;
+const MOST_BLOCK_STEPS = 32;
+const MOST_THREADS = 64;
+/** Steps of one job; the kernel's signals and records have room for them. */
+const JOB_STEPS = 256;
+/** Looks at the memory before a waiting thread sleeps: some tens of microseconds. */
+const SPINS = 20_000;
+/** Epochs mark jobs in the upper half of a positive 32-bit number. */
+const LAST_EPOCH = 32_767;
+
+interface RowBlock {
+  address: number;
+  bytes: number;
+}
+
+export class WasmEngine implements Engine {
+  readonly name = "wasm";
+  readonly precision = "f32";
+  readonly threads: number;
+  readonly lattice: Lattice;
+  readonly fields: EngineFields;
+  private readonly arena: Arena;
+  private readonly kernel: KernelExports;
+  private readonly strips: LayerStrips;
+  private readonly cutter: RunCutter;
+  private readonly table: number;
+  private readonly energySums: number;
+  private readonly rowBlocks: (RowBlock | null)[];
+  private readonly layerRows: readonly boolean[];
+  private readonly fieldAddresses: Readonly<Record<EngineField, number>>;
+  private readonly blockSteps: number;
+  private readonly records: number;
+  private readonly recordsAt: number;
+  private drives: readonly DrivePoint[] = [];
+  private drivesBlock: RowBlock | null = null;
+  private signals = 0;
+  private signalsBlock: RowBlock | null = null;
+  private epoch = 0;
+  private stepsTaken = 0;
+
+  constructor(module: KernelModule, setup: EngineSetup, options: WasmOptions = {}) {
+    if (!platform) throw new RangeError("This platform has no WebAssembly.");
+    const { lattice, layers } = setup;
+    const { rows, stride, size } = lattice;
+    this.lattice = lattice;
+    this.threads = options.spawn ? Math.min(MOST_THREADS, Math.max(1, Math.floor(options.threads ?? 1))) : 1;
+    this.records = setup.records;
+    const rowBytes = stride * 4;
+    this.blockSteps =
+      options.blockSteps ??
+      Math.max(2, Math.min(MOST_BLOCK_STEPS, Math.floor(BLOCK_CACHE_BYTES / (3 * rowBytes))));
+
+    const tableBytes = (rows + 2) * at.ENTRY_BYTES;
+    const recordBytes = JOB_STEPS * setup.records * 8;
+    const known =
+      3 * (size * 4 + 2 * rowBytes + 4096) +
+      stripBytes(lattice, layers) +
+      tableBytes +
+      recordBytes +
+      rows * 8;
+    const arena = new Arena(at.CONTROL_END, known + 4096);
+    this.arena = arena;
+    this.table = arena.reserve(tableBytes, at.CACHE_LINE_BYTES);
+    this.energySums = arena.reserve((rows + 2) * 8, at.CACHE_LINE_BYTES);
+    this.recordsAt = arena.reserve(recordBytes, at.CACHE_LINE_BYTES);
+    this.strips = layStrips(arena, lattice, layers);
+    this.fieldAddresses = { f: this.reserveField(0), gx: this.reserveField(1), gy: this.reserveField(2) };
+    const view = (address: number): FieldArray => new Float32Array(arena.memory.buffer, address, size);
+    const { f, gx, gy } = this.fieldAddresses;
+    this.fields = { f: view(f), gx: view(gx), gy: view(gy) };
+
+    this.layerRows = Array.from({ length: rows + 2 }, (_, j) => isLayerRow(layers, j));
+    this.rowBlocks = Array.from({ length: rows + 2 }, () => null);
+    this.cutter = new RunCutter({ columns: lattice.columns, psiShifts: this.strips.psiShifts });
+    this.writeControl();
+    this.writeLayers();
+    this.setRows(0, rows + 1, setup.coefficients);
+    this.writeTaps(setup.taps);
+    this.setDrives(setup.drives, setup.signals);
+
+    this.kernel = new platform.Instance(module, { env: { memory: arena.memory } }).exports;
+    for (let helper = 1; helper < this.threads; helper += 1)
+      options.spawn?.({ module, memory: arena.memory });
+  }
+
+  get step(): number {
+    return this.stepsTaken;
+  }
+
+  /** Bytes of memory that the engine has taken. */
+  get bytes(): number {
+    return this.arena.used;
+  }
+
+  /** A field with a row of zeros before and after it, its start a third of a page from the field before. */
+  private reserveField(index: number): number {
+    const rowBytes = this.lattice.stride * 4;
+    const third = 21 * at.CACHE_LINE_BYTES;
+    const block = this.arena.reserve(this.lattice.size * 4 + 2 * rowBytes + 2 * third, 4096);
+    return block + index * third + rowBytes;
+  }
+
+  private writeControl(): void {
+    const { i32, f64 } = this.arena;
+    const { lattice } = this;
+    i32[at.FIELD_F / 4] = this.fieldAddresses.f;
+    i32[at.FIELD_GX / 4] = this.fieldAddresses.gx;
+    i32[at.FIELD_GY / 4] = this.fieldAddresses.gy;
+    i32[at.ROW_BYTES / 4] = lattice.stride * 4;
+    i32[at.LAST_ROW / 4] = lattice.rows;
+    i32[at.TABLE / 4] = this.table;
+    i32[at.RECORDS / 4] = this.recordsAt;
+    i32[at.RECORD_BYTES / 4] = this.records * 8;
+    i32[at.COLUMN_LAYERS / 4] = this.strips.columnParameters;
+    i32[at.ENERGY_SUMS / 4] = this.energySums;
+    f64[at.QUARTER_STEP / 8] = lattice.dt / 4;
+    i32[at.SPINS / 4] = this.threads > 1 ? SPINS : 0;
+  }
+
+  private entryWord(row: number, field: number): number {
+    return (this.table + row * at.ENTRY_BYTES + field) / 4;
+  }
+
+  private writeLayers(): void {
+    const { i32, f32 } = this.arena;
+    for (let j = 0; j <= this.lattice.rows + 1; j += 1) {
+      i32[this.entryWord(j, at.ENTRY_PSI_GY)] = this.strips.psiGyOf(j);
+      i32[this.entryWord(j, at.ENTRY_PSI_FX)] = this.strips.psiFxOf(j);
+      i32[this.entryWord(j, at.ENTRY_PSI_GX)] = this.strips.psiGxOf(j);
+      i32[this.entryWord(j, at.ENTRY_PSI_FY)] = this.strips.psiFyOf(j);
+      f32.set(this.strips.rowParameters(j), this.entryWord(j, at.ENTRY_LAYER));
+    }
+  }
+
+  setRows(first: number, last: number, source: CoefficientSource): void {
+    const row = rowCoefficients(this.lattice.stride);
+    for (let j = first; j <= last; j += 1) {
+      source(j, row);
+      this.cutter.cut(row, j, this.layerRows[j]);
+      this.placeRuns(j);
+    }
+    if (this.drives.length > 0) this.writeDrives();
+  }
+
+  private placeRuns(row: number): void {
+    const bytes = this.cutter.words * 4;
+    const block = this.fitting(this.rowBlocks[row], bytes);
+    this.rowBlocks[row] = block;
+    const { i32 } = this.arena;
+    i32.set(this.cutter.i32.subarray(0, this.cutter.words), block.address / 4);
+    i32[this.entryWord(row, at.ENTRY_RUNS)] = block.address;
+    i32[this.entryWord(row, at.ENTRY_RUNS_END)] = block.address + bytes;
+  }
+
+  /** The block itself where `bytes` fit into it, else another, the old one given back. */
+  private fitting(block: RowBlock | null, bytes: number): RowBlock {
+    if (block && bytes <= Arena.sizeOf(block.bytes)) return block;
+    if (block) this.arena.release(block.address, block.bytes);
+    return { address: this.arena.take(bytes), bytes };
+  }
+
+  readCoefficients(row: number, out: RowCoefficients): void {
+    const { i32, f32 } = this.arena;
+    const first = i32[this.entryWord(row, at.ENTRY_RUNS)] / 4;
+    const end = i32[this.entryWord(row, at.ENTRY_RUNS_END)] / 4;
+    readRuns(i32, f32, first, end, out);
+  }
+
+  setDrives(drives: readonly DrivePoint[], signals: number): void {
+    this.checkRows(drives);
+    this.drives = [...drives].sort((a, b) => a.row - b.row);
+    this.signals = signals;
+    this.drivesBlock = this.fitting(this.drivesBlock, drives.length * at.DRIVE_BYTES);
+    this.signalsBlock = this.fitting(this.signalsBlock, JOB_STEPS * signals * 8);
+    const { i32 } = this.arena;
+    i32[at.SIGNALS / 4] = this.signalsBlock.address;
+    i32[at.SIGNAL_BYTES / 4] = signals * 8;
+    this.writeDrives();
+  }
+
+  private checkRows(items: readonly { row: number; column: number }[]): void {
+    const { rows, columns } = this.lattice;
+    for (const { row, column } of items) {
+      if (!(row >= 0 && row <= rows + 1 && column >= 0 && column <= columns + 1)) {
+        throw new RangeError(
+          `Row ${row}, column ${column} lies outside the lattice of ${rows} rows, ${columns} columns.`,
+        );
+      }
+    }
+  }
+
+  /** Drives with their b·weight, which the coefficients of their rows decide. */
+  private writeDrives(): void {
+    const { i32, f64 } = this.arena;
+    const address = this.drivesBlock?.address ?? 0;
+    const row = rowCoefficients(this.lattice.stride);
+    let read = -1;
+    this.drives.forEach((drive, index) => {
+      if (drive.row !== read) this.readCoefficients(drive.row, row);
+      read = drive.row;
+      const entry = address + index * at.DRIVE_BYTES;
+      i32[entry / 4] = this.addressOf("f", drive.row, drive.column);
+      i32[entry / 4 + 1] = drive.signal * 8;
+      f64[entry / 8 + 1] = row.bF[drive.column] * drive.weight;
+    });
+    this.writeRanges(this.drives, address, at.DRIVE_BYTES, at.ENTRY_DRIVES, at.ENTRY_DRIVES_END);
+  }
+
+  private writeTaps(taps: readonly Tap[]): void {
+    this.checkRows(taps);
+    const sorted = [...taps].sort((a, b) => a.row - b.row);
+    const address = this.arena.take(sorted.length * at.TAP_BYTES);
+    const { i32, f64 } = this.arena;
+    sorted.forEach((tap, index) => {
+      const entry = address + index * at.TAP_BYTES;
+      i32[entry / 4] = this.addressOf(tap.field, tap.row, tap.column);
+      i32[entry / 4 + 1] = tap.record * 8;
+      f64[entry / 8 + 1] = tap.weight;
+    });
+    this.writeRanges(sorted, address, at.TAP_BYTES, at.ENTRY_TAPS, at.ENTRY_TAPS_END);
+  }
+
+  private addressOf(field: EngineField, row: number, column: number): number {
+    return this.fieldAddresses[field] + (row * this.lattice.stride + column) * 4;
+  }
+
+  /** Tells every row which entries of a list sorted by rows are its own. */
+  private writeRanges(
+    sorted: readonly { row: number }[],
+    address: number,
+    entryBytes: number,
+    first: number,
+    end: number,
+  ): void {
+    const { i32 } = this.arena;
+    let next = 0;
+    for (let j = 0; j <= this.lattice.rows + 1; j += 1) {
+      i32[this.entryWord(j, first)] = address + next * entryBytes;
+      while (next < sorted.length && sorted[next].row === j) next += 1;
+      i32[this.entryWord(j, end)] = address + next * entryBytes;
+    }
+  }
+
+  advance(steps: number, signals: Float64Array, records: Float64Array): void {
+    if (signals.length < steps * this.signals || records.length < steps * this.records) {
+      throw new RangeError(
+        `advance(${steps}) needs ${steps * this.signals} signals and room for ${steps * this.records} records.`,
+      );
+    }
+    for (let done = 0; done < steps; done += JOB_STEPS) {
+      this.runSteps(done, Math.min(JOB_STEPS, steps - done), signals, records);
+    }
+  }
+
+  private runSteps(done: number, steps: number, signals: Float64Array, records: Float64Array): void {
+    const { i32, f64 } = this.arena;
+    const signalsAt = (this.signalsBlock?.address ?? 0) / 8;
+    f64.set(signals.subarray(done * this.signals, (done + steps) * this.signals), signalsAt);
+    const kept = f64.subarray(this.recordsAt / 8, this.recordsAt / 8 + steps * this.records);
+    kept.fill(0);
+    i32[at.JOB / 4] = at.JOB_STEPS;
+    i32[at.STEPS / 4] = steps;
+    this.runJob(this.blocksOf(steps));
+    records.set(kept, done * this.records);
+    this.stepsTaken += steps;
+  }
+
+  /** Blocks of about equal length, as many for each thread. */
+  private blocksOf(steps: number): number {
+    const turns = Math.ceil(steps / (this.blockSteps * this.threads));
+    return Math.min(steps, turns * this.threads, at.MOST_BLOCKS);
+  }
+
+  private runJob(parts: number): void {
+    this.epoch = this.epoch === LAST_EPOCH ? 1 : this.epoch + 1;
+    this.kernel.run(this.epoch, parts);
+  }
+
+  energyOf(firstRow: number, lastRow: number, firstColumn: number, lastColumn: number): number {
+    const { i32, f64 } = this.arena;
+    i32[at.JOB / 4] = at.JOB_ENERGY;
+    i32[at.ENERGY_FIRST_ROW / 4] = firstRow;
+    i32[at.ENERGY_LAST_ROW / 4] = lastRow;
+    i32[at.ENERGY_FIRST_COLUMN / 4] = firstColumn;
+    i32[at.ENERGY_LAST_COLUMN / 4] = lastColumn;
+    this.runJob(Math.ceil((lastRow - firstRow + 1) / at.ENERGY_PART_ROWS));
+    const sums = f64.subarray(this.energySums / 8, this.energySums / 8 + lastRow - firstRow + 1);
+    return sums.reduce((energy, sum) => energy + sum, 0);
+  }
+
+  save(): Uint8Array {
+    const { f, gx, gy } = this.fields;
+    return packArrays([Float64Array.of(this.stepsTaken), f, gx, gy, ...this.strips.memory]);
+  }
+
+  load(bytes: Uint8Array): void {
+    const { f, gx, gy } = this.fields;
+    const step = new Float64Array(1);
+    unpackArrays(bytes, [step, f, gx, gy, ...this.strips.memory]);
+    this.stepsTaken = step[0];
+  }
+
+  dispose(): void {
+    if (this.threads > 1) this.kernel.quit();
+  }
+}
