@@ -46,6 +46,28 @@ function countBelow(space: ElementSpace, value: number, room: number): number {
   }
 }
 
+/** The widest gap about the last of `count` values: where a count is surest. */
+function gapBehind(
+  found: readonly Eigenpair[],
+  count: number,
+): { middle: number; width: number; below: number } {
+  const width = (n: number): number => found[n + 1].value - found[n].value;
+  const last = Math.min(found.length - 1, count + GUARD);
+  if (last < 1) return { middle: found[0].value * 1.001, width: found[0].value * 1e-3, below: 1 };
+  let at = Math.max(0, Math.min(count, last) - 1);
+  for (let n = at + 1; n < last; n += 1) if (width(n) > width(at)) at = n;
+  return { middle: found[at].value + width(at) / 2, width: width(at), below: at + 1 };
+}
+
+/** Runs a search to its end, yielding between its steps. */
+function* finish(search: Generator<number, Eigenpair[]>): Generator<void, Eigenpair[]> {
+  for (;;) {
+    const { done, value } = search.next();
+    if (done === true) return value;
+    yield;
+  }
+}
+
 /** Each value near its like from another mesh, so that none can have been passed over. */
 const agrees = (found: readonly Eigenpair[], other: readonly number[]): boolean =>
   found.length > 0 &&
@@ -75,33 +97,19 @@ export function* lowestModes(
     multiplyMass: (x: Float64Array, out: Float64Array): void => multiplyMass(space, x, out),
     solvePair: (x: Float64Array): void => factors.solvePair(x),
   };
-  const wanted = Math.min(available, count + GUARD);
+  let asked = Math.min(available, count + GUARD);
   let found: Eigenpair[] = [];
   for (let round = 0; round < ROUNDS; round += 1) {
     const locked = [...still, ...found.map(({ vector }) => vector)];
-    const asked = round === 0 ? wanted : Math.min(wanted, unknowns - locked.length);
-    const search = lowestEigenpairs(operator, asked, locked, round + 1);
-    for (;;) {
-      const step = search.next();
-      if (step.done === true) {
-        found = [...found, ...step.value].sort((p, q) => p.value - q.value);
-        break;
-      }
-      yield;
-    }
+    const more = yield* finish(lowestEigenpairs(operator, asked, locked, round + 1));
+    found = [...found, ...more].sort((p, q) => p.value - q.value);
     if (found.length >= available || agrees(found, known)) return found;
-    // The widest gap behind the modes asked for is where the count is surest.
-    const from = Math.min(count, found.length - 1);
-    let gapAfter = Math.max(0, from - 1);
-    const last = Math.min(found.length - 1, count + GUARD);
-    for (let n = gapAfter; n < last; n += 1)
-      if (found[n + 1].value - found[n].value > found[gapAfter + 1].value - found[gapAfter].value)
-        gapAfter = n;
-    const below = found[gapAfter].value;
-    const room = found[Math.min(gapAfter + 1, found.length - 1)].value - below;
-    const expected = still.length + gapAfter + 1;
-    if (countBelow(space, below + room / 2, room) === expected) return found;
+    const gap = gapBehind(found, count);
+    const missing = countBelow(space, gap.middle, gap.width) - (still.length + gap.below);
     yield;
+    if (missing === 0) return found;
+    // A mode of higher degeneracy than the block has vectors: its other members are the lowest of what is left.
+    asked = Math.min(available - found.length, Math.max(1, missing) + 1);
   }
   throw new Error("Some modes of the section could not be told apart; ask for fewer or refine the mesh.");
 }
