@@ -6,7 +6,6 @@ export function signInSentence(error: unknown): string {
   if (error.status === 401 || error.status === 403) {
     return "This e-mail address and password do not belong together. Check both; passwords are case-sensitive.";
   }
-  if (error.status === 429) return "Too many tries from here in a short time. Wait a minute, then try again.";
   if (error.status === 404) return "This way in is not offered here.";
   return error.message;
 }

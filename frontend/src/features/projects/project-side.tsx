@@ -42,15 +42,18 @@ export function Activity({ projectId }: { projectId: string }) {
       <ol>
         {activity.data?.map((entry) => (
           <li key={`${entry.at} ${entry.who.id} ${entry.sentence}`} className="side-entry">
-            {entry.sceneId === null ? (
-              entry.sentence
-            ) : (
-              <Link component={RouterLink} to={`/scenes/${entry.sceneId}`}>
-                {entry.sentence}
-              </Link>
-            )}
+            <span>
+              {entry.who.name}{" "}
+              {entry.sceneId === null ? (
+                entry.sentence
+              ) : (
+                <Link component={RouterLink} to={`/scenes/${entry.sceneId}`} underline="always">
+                  {entry.sentence}
+                </Link>
+              )}
+            </span>
             <span className="side-soft">
-              {entry.who.name}, <Moment at={entry.at} />
+              <Moment at={entry.at} />
             </span>
           </li>
         ))}

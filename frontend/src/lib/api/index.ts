@@ -1,5 +1,4 @@
 export { $api, api } from "./client";
 export { ApiError, problemsOf, sentenceOf, statusOf } from "./errors";
 export { request } from "./request";
-export type { components } from "./schema.gen";
 export { onSignedOut } from "./signed-out";
