@@ -76,10 +76,9 @@ function fillGround(pen: Pen, patch: ResolvedAreaPatch, hatching: Hatching): voi
 
 function fillHatch(pen: Pen, patch: ResolvedAreaPatch, hatching: Hatching): void {
   const { context, palette, patterns, pixelRatio, view } = pen;
-  const origin = { xPx: view.originXPx, yPx: view.originYPx };
   for (const strokes of hatching.strokes) {
     const halo = hatching.opaque ? null : palette.sheet;
-    const pattern = patterns.get(context, strokes, pixelRatio, { ink: palette.ink, halo }, origin);
+    const pattern = patterns.get(context, strokes, pixelRatio, { ink: palette.ink, halo }, view);
     if (pattern === null) continue;
     setInk(context, pattern);
     fillShape(context, patch);

@@ -1,15 +1,17 @@
 import type { ResolvedAreaPatch, ResolvedPatch } from "@heddle/kernels/scene";
-import { type BoxMm, boxesMeet } from "../geometry/points";
+import { type BoxMm, boxesMeet, joinBoxes } from "../geometry/points";
 import { patchBox } from "../geometry/shapes";
 
 /** Areas of one medium that are drawn as one body: outlined around their union, not where they meet. */
 export interface PaintGroup {
   medium: string;
   patches: ResolvedAreaPatch[];
+  /** Around all of them. */
+  box: BoxMm;
 }
 
 /** How many groups back a patch may look for its like; bounds the work on a scene of thousands. */
-const LOOK_BACK = 24;
+const LOOK_BACK = 16;
 
 const isArea = (patch: ResolvedPatch): patch is ResolvedAreaPatch => "medium" in patch;
 
@@ -37,12 +39,14 @@ export function groupPaint(paint: readonly ResolvedPatch[]): PaintGroup[] {
       const group = groups[i];
       if (group.medium === patch.medium) {
         group.patches.push(patch);
+        group.box = joinBoxes(group.box, box);
         joined = true;
         break;
       }
-      if (group.patches.some((other) => boxesMeet(boxOfPatch(other), box))) break;
+      if (boxesMeet(group.box, box) && group.patches.some((other) => boxesMeet(boxOfPatch(other), box)))
+        break;
     }
-    if (!joined) groups.push({ medium: patch.medium, patches: [patch] });
+    if (!joined) groups.push({ medium: patch.medium, patches: [patch], box });
   }
   return groups;
 }

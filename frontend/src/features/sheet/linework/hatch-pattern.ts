@@ -1,3 +1,4 @@
+import type { Viewport } from "../../../hooks/viewport";
 import type { Strokes } from "./hatch";
 
 /** Side of a seamless tile of 45° strokes, in device pixels: whole, so that strokes stay crisp at any pixel ratio. */
@@ -47,37 +48,48 @@ function drawTile(
   return canvas;
 }
 
+interface Kept {
+  pattern: CanvasPattern;
+  side: number;
+  /** The view that the pattern's transform was last set for. */
+  view: Viewport | null;
+}
+
 /** Keeps hatch patterns by what they look like; a few dozen at most exist at a time. */
 export class HatchPatterns {
-  readonly #kept = new Map<string, { pattern: CanvasPattern; side: number } | null>();
+  readonly #kept = new Map<string, Kept | null>();
 
-  /** The pattern, laid in device pixels and moved with the sheet; null where the browser gives none. */
+  /**
+   * The pattern for paths that are filled in millimetres under `view`: it undoes the view's transform, so that its
+   * tiles lie on whole device pixels, and moves with the sheet. Null where the browser gives none.
+   */
   get(
     context: CanvasRenderingContext2D,
     strokes: Strokes,
     pixelRatio: number,
     colours: { ink: string; halo: string | null },
-    origin: { xPx: number; yPx: number },
+    view: Viewport,
   ): CanvasPattern | null {
     const side = tileSide(strokes.spacingPx, pixelRatio);
     const key = [side, strokes.direction, strokes.paired, pixelRatio, colours.ink, colours.halo].join(" ");
-    let entry = this.#kept.get(key);
-    if (entry === undefined) {
-      const pattern = context.createPattern(
-        drawTile(side, strokes, pixelRatio, colours.ink, colours.halo),
-        "repeat",
-      );
-      entry = pattern === null ? null : { pattern, side };
-      this.#kept.set(key, entry);
+    let kept = this.#kept.get(key);
+    if (kept === undefined) {
+      const tile = drawTile(side, strokes, pixelRatio, colours.ink, colours.halo);
+      const pattern = context.createPattern(tile, "repeat");
+      kept = pattern === null ? null : { pattern, side, view: null };
+      this.#kept.set(key, kept);
     }
-    if (entry === null) return null;
-    // The path is filled under the view's transform; the pattern undoes it and moves by whole device pixels.
-    const shift = (px: number): number => Math.round(px * pixelRatio) % side;
-    const inverse = context.getTransform().invertSelf();
-    entry.pattern.setTransform(
-      inverse.multiplySelf(new DOMMatrix([1, 0, 0, 1, shift(origin.xPx), shift(origin.yPx)])),
-    );
-    return entry.pattern;
+    if (kept === null) return null;
+    if (kept.view !== view) {
+      const scale = view.pxPerMm * pixelRatio;
+      const [x, y] = [view.originXPx * pixelRatio, view.originYPx * pixelRatio];
+      const [left, top] = [Math.round(x) % side, Math.round(y) % side];
+      kept.pattern.setTransform(
+        new DOMMatrix([1 / scale, 0, 0, -1 / scale, (left - x) / scale, (y - top) / scale]),
+      );
+      kept.view = view;
+    }
+    return kept.pattern;
   }
 
   clear(): void {

@@ -1,12 +1,48 @@
-import { type KeyboardEvent, useDeferredValue, useId, useRef } from "react";
+import { type KeyboardEvent, memo, type MouseEvent, useDeferredValue, useId, useRef } from "react";
 import { deleteSelection } from "../document/commands";
+import { type Drawing, drawnItem, type DrawnItem } from "../document/drawing";
 import type { SheetEditor } from "../document/editor";
-import { allRefs, type ItemRef } from "../document/refs";
-import { useSheet } from "../surface/use-sheet";
+import { allRefs, findItem, type Item, type ItemRef } from "../document/refs";
 import { itemInWords } from "../surface/in-words";
+import { useSheet } from "../surface/use-sheet";
 
-/** As many rows as are laid out at a time around the selection; the rest is a count. */
+/** As many rows as are laid out at a time; the rest is a count. */
 const MOST_ROWS = 300;
+
+interface RowProps {
+  itemRef: ItemRef;
+  /** The item as written and as drawn: a row is written anew when one of them changes, and not before. */
+  item: Item | undefined;
+  drawn: DrawnItem | null;
+  media: Drawing["mediaById"];
+  words: () => string;
+  selected: boolean;
+  current: boolean;
+  broken: string | undefined;
+}
+
+const Row = memo(
+  ({ itemRef, words, selected, current, broken }: RowProps) => (
+    <li
+      role="option"
+      aria-selected={selected}
+      tabIndex={current ? 0 : -1}
+      data-ref={itemRef}
+      className={broken === undefined ? undefined : "broken"}
+      title={broken}
+    >
+      {words()}
+    </li>
+  ),
+  (before, after) =>
+    before.itemRef === after.itemRef &&
+    before.item === after.item &&
+    before.drawn === after.drawn &&
+    before.media === after.media &&
+    before.selected === after.selected &&
+    before.current === after.current &&
+    before.broken === after.broken,
+);
 
 /** All that is drawn, last painted first: the way to the drawing for those who do not see it or have no pointer. */
 export function PatchList({ editor }: { editor: SheetEditor }) {
@@ -21,6 +57,11 @@ export function PatchList({ editor }: { editor: SheetEditor }) {
   const current = first !== undefined && shown.includes(first) ? first : shown.at(0);
   const broken = new Map(drawing.undrawable.map(({ ref, sentence }) => [ref, sentence]));
 
+  const rowOf = (target: EventTarget): { ref: ItemRef; at: number } | null => {
+    const row = target instanceof Element ? target.closest<HTMLElement>("[data-ref]") : null;
+    const at = shown.findIndex((ref) => ref === row?.dataset["ref"]);
+    return at < 0 ? null : { ref: shown[at], at };
+  };
   const focusRow = (at: number): void => {
     const rows = list.current?.querySelectorAll<HTMLElement>("[role=option]");
     rows?.item(Math.min(Math.max(at, 0), rows.length - 1)).focus();
@@ -30,18 +71,25 @@ export function PatchList({ editor }: { editor: SheetEditor }) {
     else if (selection.has(ref)) editor.select([...selection].filter((other) => other !== ref));
     else editor.select([...selection, ref]);
   };
-  const onKeyDown = (event: KeyboardEvent, ref: ItemRef, at: number): void => {
-    const step = { ArrowDown: 1, ArrowUp: -1 }[event.key];
-    if (step !== undefined) {
-      const next = at + step < 0 ? undefined : shown.at(at + step);
-      if (next !== undefined && !event.ctrlKey && !event.shiftKey) editor.select([next]);
-      focusRow(at + step);
+  const onClick = (event: MouseEvent): void => {
+    const row = rowOf(event.target);
+    if (row !== null) pick(row.ref, event.ctrlKey || event.metaKey || event.shiftKey);
+  };
+  const onKeyDown = (event: KeyboardEvent): void => {
+    const row = rowOf(event.target);
+    if (row === null) return;
+    const { ref, at } = row;
+    if (event.key === "ArrowDown" || event.key === "ArrowUp") {
+      const to = at + (event.key === "ArrowDown" ? 1 : -1);
+      if (to >= 0 && to < shown.length && !event.ctrlKey && !event.shiftKey) editor.select([shown[to]]);
+      focusRow(to);
     } else if (event.key === "Home") focusRow(0);
     else if (event.key === "End") focusRow(shown.length - 1);
     else if (event.key === " " || event.key === "Enter") pick(ref, event.ctrlKey || event.shiftKey);
     else if (event.key === "Delete") {
       deleteSelection(editor);
-      queueMicrotask(() => {
+      // The row goes with its item; the one that takes its place gets the keyboard.
+      requestAnimationFrame(() => {
         focusRow(at);
       });
     } else return;
@@ -61,24 +109,26 @@ export function PatchList({ editor }: { editor: SheetEditor }) {
           Nothing yet. Choose a tool and draw, or press R and Enter for a rectangle.
         </p>
       ) : (
-        <ul ref={list} role="listbox" aria-multiselectable="true" aria-labelledby={titleId}>
-          {shown.map((ref, at) => (
-            <li
+        <ul
+          ref={list}
+          role="listbox"
+          aria-multiselectable="true"
+          aria-labelledby={titleId}
+          onClick={onClick}
+          onKeyDown={onKeyDown}
+        >
+          {shown.map((ref) => (
+            <Row
               key={ref}
-              role="option"
-              aria-selected={selection.has(ref)}
-              tabIndex={ref === current ? 0 : -1}
-              className={broken.has(ref) ? "broken" : undefined}
-              title={broken.get(ref)}
-              onClick={(event) => {
-                pick(ref, event.ctrlKey || event.metaKey || event.shiftKey);
-              }}
-              onKeyDown={(event) => {
-                onKeyDown(event, ref, at);
-              }}
-            >
-              {itemInWords(ref, drawing)}
-            </li>
+              itemRef={ref}
+              item={findItem(drawing.scene, ref)}
+              drawn={drawnItem(drawing, ref)}
+              media={drawing.mediaById}
+              words={() => itemInWords(ref, drawing)}
+              selected={selection.has(ref)}
+              current={ref === current}
+              broken={broken.get(ref)}
+            />
           ))}
         </ul>
       )}
