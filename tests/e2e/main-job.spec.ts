@@ -90,7 +90,9 @@ describe("the main job", () => {
       .getByText(/Magnetic sheet/)
       .first()
       .click();
-    await sheet.drag([233, 126], [233, 146], [233, 166]);
+    await page.getByLabel("Brush width").fill("20");
+    await page.getByLabel("Brush width").press("Enter");
+    await sheet.drag([238, 126], [238, 146], [238, 166]);
     const edited = await waitFor("the live edit", async () => {
       const latest = await latestRun(sceneId);
       return latest?.edited === true ? latest : undefined;
