@@ -1,23 +1,28 @@
 /** The options of `solve`, parsed and refused by name. */
 import { parseArgs } from "node:util";
 import type { Problem } from "../scene/index.js";
-import type { Precision } from "../solving/session.js";
+import type { EngineName, Precision } from "../solving/session.js";
 
 export interface SolveOptions {
   sceneFile: string;
   /** Where the result goes; null: standard output. */
   out: string | null;
   frequenciesGHz: number[] | null;
-  engine: "reference";
-  precision: Precision;
-  threads: number;
+  /** Undefined: the session's own choice. */
+  engine: EngineName | undefined;
+  precision: Precision | undefined;
+  /** Undefined: as many as the machine has cores. */
+  threads: number | undefined;
 }
 
 export const SOLVE_USAGE =
-  "npm run --silent solve -- SCENE.json [--out RESULT.json] [--frequencies 1,2.5,4] [--engine reference] [--precision f64|f32] [--threads N]";
+  "npm run --silent solve -- SCENE.json [--out RESULT.json] [--frequencies 1,2.5,4] [--engine wasm|reference] [--precision f32|f64] [--threads N]";
 
 const MOST_FREQUENCIES = 100_000;
 const MOST_THREADS = 64;
+
+const isEngine = (text: string): text is EngineName => text === "wasm" || text === "reference";
+const isPrecision = (text: string): text is Precision => text === "f32" || text === "f64";
 
 export type ParsedOptions = { ok: true; options: SolveOptions } | { ok: false; problems: Problem[] };
 
@@ -36,7 +41,7 @@ const parseFrequencies = (text: string): number[] | Problem => {
 };
 
 /** Options that the contract has but that nothing computes yet. */
-const notYet = (values: { shielding?: boolean; "two-mesh"?: boolean; engine?: string }): Problem[] => {
+const notYet = (values: { shielding?: boolean; "two-mesh"?: boolean }): Problem[] => {
   const problems: Problem[] = [];
   if (values.shielding === true)
     problems.push({
@@ -48,11 +53,6 @@ const notYet = (values: { shielding?: boolean; "two-mesh"?: boolean; engine?: st
       path: "--two-mesh",
       sentence:
         "The comparison of two meshes is not computed yet; solve with two values of mesh and compare.",
-    });
-  if (values.engine === "wasm")
-    problems.push({
-      path: "--engine",
-      sentence: "The wasm engine is not there yet; use --engine reference.",
     });
   return problems;
 };
@@ -86,11 +86,16 @@ export const parseSolveOptions = (args: readonly string[]): ParsedOptions => {
     problems.push({ path: "options", sentence: `Name the scene to solve. Usage: ${SOLVE_USAGE}` });
   if (more.length > 0)
     problems.push({ path: "options", sentence: `One scene at a time; "${more[0]}" is one too many.` });
-  if (values.engine !== undefined && !["reference", "wasm"].includes(values.engine))
-    problems.push({ path: "--engine", sentence: `There is no engine "${values.engine}"; use reference.` });
-  const precision = values.precision ?? "f64";
-  if (precision !== "f64" && precision !== "f32")
-    problems.push({ path: "--precision", sentence: `"${precision}" is no precision; use f64 or f32.` });
+  const { engine, precision } = values;
+  if (engine !== undefined && !isEngine(engine))
+    problems.push({ path: "--engine", sentence: `There is no engine "${engine}"; use wasm or reference.` });
+  if (precision !== undefined && !isPrecision(precision))
+    problems.push({ path: "--precision", sentence: `"${precision}" is no precision; use f32 or f64.` });
+  if (engine === "wasm" && precision === "f64")
+    problems.push({
+      path: "--precision",
+      sentence: "The wasm engine computes in f32; use --engine reference for f64.",
+    });
   const threads = Number(values.threads ?? "1");
   if (!Number.isInteger(threads) || threads < 1 || threads > MOST_THREADS)
     problems.push({
@@ -108,9 +113,9 @@ export const parseSolveOptions = (args: readonly string[]): ParsedOptions => {
       sceneFile,
       out: values.out ?? null,
       frequenciesGHz: frequencies,
-      engine: "reference",
-      precision: precision === "f32" ? "f32" : "f64",
-      threads,
+      engine: engine !== undefined && isEngine(engine) ? engine : undefined,
+      precision: precision !== undefined && isPrecision(precision) ? precision : undefined,
+      threads: values.threads === undefined ? undefined : threads,
     },
   };
 };

@@ -76,7 +76,7 @@ describe("solve", () => {
     expect(result).toMatchObject({
       scene: { name: "Small" },
       grid: { nx: 30, ny: 20 },
-      solver: { engine: "reference", precision: "f64" },
+      solver: { engine: "wasm", precision: "f32" },
     });
     expect(result.probes[0].trace.values.some((value) => value !== 0)).toBe(true);
   });
@@ -90,6 +90,16 @@ describe("solve", () => {
     const written = resultSchema.parse(JSON.parse(readFileSync(out, "utf8")));
     const printed = resultSchema.parse(JSON.parse((await run([path])).stdout));
     expect({ ...written, timing: null }).toEqual({ ...printed, timing: null });
+  });
+
+  it.each([
+    [["--engine", "reference"], "reference", "f64"],
+    [["--engine", "reference", "--precision", "f32"], "reference", "f32"],
+    [["--precision", "f64"], "reference", "f64"],
+    [["--engine", "wasm", "--threads", "2"], "wasm", "f32"],
+  ])("computes by the engine of %j", async (args, engine, precision) => {
+    const ran = await run([write("s.json", scene()), ...args]);
+    expect(resultSchema.parse(JSON.parse(ran.stdout)).solver).toMatchObject({ engine, precision });
   });
 
   it("takes frequencies in the order given, and a precision", async () => {
@@ -143,7 +153,7 @@ describe("solve refuses with status 2", () => {
   it.each([
     [["--shielding"], "--shielding: Shielding is not computed yet"],
     [["--two-mesh"], "--two-mesh: The comparison of two meshes is not computed yet"],
-    [["--engine", "wasm"], "--engine: The wasm engine is not there yet"],
+    [["--engine", "wasm", "--precision", "f64"], "--precision: The wasm engine computes in f32"],
     [["--engine", "steam"], '--engine: There is no engine "steam"'],
     [["--precision", "f16"], '--precision: "f16" is no precision'],
     [["--threads", "0"], '--threads: "0" is no number of threads'],

@@ -3,6 +3,7 @@ import type { Writable } from "node:stream";
 import { setImmediate as nextTurn } from "node:timers/promises";
 import { readScene, type Scene, SceneError } from "../scene/index.js";
 import type { SessionOptions, SolveSession } from "../solving/session.js";
+import { allThreads, spawnHelper } from "../threads/index.js";
 import { readSceneFile, say, sayProblems } from "./messages.js";
 import { parseSolveOptions, type SolveOptions } from "./options.js";
 import { OutputError, OutputFile, writeStream } from "./output.js";
@@ -53,9 +54,11 @@ const solveScene = async (
   file: OutputFile | null,
 ): Promise<ExitStatus> => {
   const session = await io.openSession(scene, {
-    engine: options.engine,
-    precision: options.precision,
-    threads: options.threads,
+    ...(options.engine && { engine: options.engine }),
+    ...(options.precision && { precision: options.precision }),
+    threads: options.threads ?? allThreads(),
+    spawnHelper,
+    log: (sentence) => say(io, sentence),
     ...(options.frequenciesGHz === null ? {} : { frequenciesGHz: options.frequenciesGHz }),
   });
   try {

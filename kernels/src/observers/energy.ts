@@ -7,12 +7,13 @@ import { rowCoefficients } from "../stepping/index.js";
 /** Joules per metre of height: ½ΣM·v² over the section, F at step·Δt and G half a step earlier. */
 export function storedEnergy(engine: Engine): number {
   const { lattice } = engine;
-  const { f, gx, gy } = engine.fields;
-  const row = rowCoefficients(lattice.stride);
   const left = firstColumn(lattice);
   const right = left + sectionColumns(lattice) - 1;
   const bottom = firstRow(lattice);
   const top = bottom + sectionRows(lattice) - 1;
+  if (engine.energyOf) return engine.energyOf(bottom - 1, top, left - 1, right);
+  const { f, gx, gy } = engine.fields;
+  const row = rowCoefficients(lattice.stride);
   let energy = 0;
   for (let j = bottom - 1; j <= top; j += 1) {
     engine.readCoefficients(j, row);

@@ -236,6 +236,7 @@ export class EngineSession implements SolveSession {
   private engineText(): string {
     const { engine, lattice } = this;
     return documentSha256({
+      engine: engine.name,
       precision: engine.precision,
       lattice: { ...lattice, edges: { ...lattice.edges } },
     });
@@ -267,7 +268,7 @@ export class EngineSession implements SolveSession {
     if (words.openedSha256 !== this.openedSha256)
       throw new RangeError("The snapshot belongs to another scene.");
     if (words.engineText !== this.engineText() || blocks.length !== 2) {
-      throw new RangeError("The snapshot belongs to another grid or precision.");
+      throw new RangeError("The snapshot belongs to another grid, engine or precision.");
     }
     const scene = words.scene ?? this.opened;
     this.apply(scene, resolveScene(scene));

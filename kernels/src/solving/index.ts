@@ -1,8 +1,8 @@
 /** The door to a run: a scene in, a session out. */
 import type { Scene } from "../scene/index.js";
 import { readScene, resolveScene, SceneError } from "../scene/index.js";
-import { ReferenceEngine } from "../stepping/index.js";
 import { EngineSession } from "./engine-session.js";
+import { chooseEngine } from "./engines.js";
 import { coefficientsOf, drivesOf, latticeOf, layersOf, probesOf } from "./plan.js";
 import type { SessionOptions, SolveSession } from "./session.js";
 
@@ -21,14 +21,8 @@ const evenly = (from: number, to: number, count: number): number[] =>
  * Rejects with a SceneError that lists every problem where the scene cannot be run, with a RangeError where an option
  * cannot be served.
  */
-export function openSession(scene: Scene, options: SessionOptions = {}): Promise<SolveSession> {
-  return Promise.resolve().then(() => open(scene, options));
-}
-
-function open(scene: Scene, options: SessionOptions): SolveSession {
-  if (options.engine === "wasm") {
-    throw new RangeError('The engine "wasm" is not built yet; leave the engine out or ask for "reference".');
-  }
+export async function openSession(scene: Scene, options: SessionOptions = {}): Promise<SolveSession> {
+  const makeEngine = await chooseEngine(options);
   if (options.frequenciesGHz?.some((frequency) => !(frequency > 0 && Number.isFinite(frequency)))) {
     throw new RangeError("Every frequency of a spectrum must be a positive number of GHz.");
   }
@@ -39,18 +33,15 @@ function open(scene: Scene, options: SessionOptions): SolveSession {
   const drives = drivesOf(resolved, lattice);
   const probes = probesOf(resolved, lattice);
   const coefficients = coefficientsOf(resolved, lattice);
-  const engine = new ReferenceEngine(
-    {
-      lattice,
-      coefficients: coefficients.row,
-      layers: layersOf(resolved, lattice),
-      drives: drives.points,
-      signals: drives.sources.length,
-      taps: probes.taps,
-      records: probes.probes.length,
-    },
-    options.precision ?? "f64",
-  );
+  const engine = makeEngine({
+    lattice,
+    coefficients: coefficients.row,
+    layers: layersOf(resolved, lattice),
+    drives: drives.points,
+    signals: drives.sources.length,
+    taps: probes.taps,
+    records: probes.probes.length,
+  });
   const { fromGHz, toGHz } = resolved.band;
   return new EngineSession({
     scene: read.scene,

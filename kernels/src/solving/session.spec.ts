@@ -70,16 +70,16 @@ describe("a session", () => {
     expect(valuesOf(many)).toEqual(valuesOf(one));
   });
 
-  it.each(["f64", "f32"] as const)(
-    "goes on bit for bit from a snapshot, layers and edits included (%s)",
-    async (precision) => {
-      const whole = await openSession(tez({ paint: [post] }), { precision });
+  it.each([{ engine: "wasm" }, { precision: "f64" }, { engine: "reference", precision: "f32" }] as const)(
+    "goes on bit for bit from a snapshot, layers and edits included (%j)",
+    async (options) => {
+      const whole = await openSession(tez({ paint: [post] }), options);
       whole.advance(150);
       whole.edit(tez({ paint: [post, { ...post, id: "coal", medium: "coal", x: 20 }] }));
       whole.advance(50);
       const snapshot = structuredClone(whole.snapshot());
       whole.advance(200);
-      const other = await openSession(tez({ paint: [post] }), { precision });
+      const other = await openSession(tez({ paint: [post] }), options);
       other.restore(snapshot);
       expect(other.step).toBe(200);
       expect(other.edits).toEqual(whole.edits);
@@ -95,8 +95,10 @@ describe("a session", () => {
     const snapshot = session.snapshot();
     const other = await openSession(sceneOf({ name: "Another" }));
     expect(() => other.restore(snapshot)).toThrow(/another scene/);
-    const single = await openSession(sceneOf(), { precision: "f32" });
-    expect(() => single.restore(snapshot)).toThrow(/precision/);
+    const double = await openSession(sceneOf(), { precision: "f64" });
+    expect(() => double.restore(snapshot)).toThrow(/precision/);
+    const single = await openSession(sceneOf(), { engine: "reference", precision: "f32" });
+    expect(() => single.restore(snapshot)).toThrow(/engine/);
     expect(() => session.restore({ ...snapshot, bytes: snapshot.bytes.slice(0, 500) })).toThrow(RangeError);
   });
 

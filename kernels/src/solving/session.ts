@@ -6,14 +6,11 @@
 import type { Problem, Scene } from "../scene/index.js";
 import type { SolveResult } from "../scene/result.js";
 import type { FieldQuantity, FieldSample, ViewRequest } from "../frames/index.js";
+import type { EngineOptions } from "./engines.js";
 
-export type EngineName = "reference" | "wasm";
-export type Precision = "f64" | "f32";
+export type { EngineName, Precision } from "./engines.js";
 
-export interface SessionOptions {
-  engine?: EngineName;
-  precision?: Precision;
-  threads?: number;
+export interface SessionOptions extends EngineOptions {
   /** Spectrum frequencies in GHz, in the order wanted; default 401 evenly over the scene's band. */
   frequenciesGHz?: readonly number[];
 }

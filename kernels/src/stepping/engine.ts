@@ -84,6 +84,11 @@ export interface Engine {
   save(): Uint8Array;
   /** Throws a RangeError where the bytes do not fit this engine. */
   load(bytes: Uint8Array): void;
+  /**
+   * Σ ½M·v² of all three fields over rows and columns, both ends counted, in J/m; missing where the engine has no quicker way than
+   * to read fields and coefficients.
+   */
+  energyOf?(firstRow: number, lastRow: number, firstColumn: number, lastColumn: number): number;
   dispose(): void;
 }
 

@@ -4,6 +4,7 @@ import { parentPort, workerData } from "node:worker_threads";
 import { encodeFrame, frameByteLength, type FieldSample } from "@heddle/kernels/frames";
 import { readScene, sceneSha256, type Scene } from "@heddle/kernels/scene";
 import { openSession } from "@heddle/kernels/solving";
+import { spawnHelper, threadsForOneRun } from "@heddle/kernels/threads";
 import type { FromThread, Problem, SolverTask, ToThread } from "./protocol.js";
 import { SolverLoop } from "./solver-loop.js";
 
@@ -69,7 +70,8 @@ async function open(task: SolverTask, post: Post): Promise<SolverLoop | null> {
       return null;
     }
     const { scene } = found;
-    const session = await openSession(scene);
+    const log = (sentence: string): void => console.error(sentence);
+    const session = await openSession(scene, { threads: threadsForOneRun(), spawnHelper, log });
     const now = (): number => performance.now();
     return new SolverLoop({ session, scene, post, read, encode, now }, task);
   } catch (error) {
