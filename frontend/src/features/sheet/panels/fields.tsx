@@ -2,6 +2,7 @@ import type { Length } from "@heddle/kernels/scene";
 import { type KeyboardEvent, type ReactNode, useId, useState } from "react";
 import { figure } from "../camera/lengths-in-words";
 import { type ParameterValues, parseTypedLength, readLength } from "../document/lengths";
+import "./fields.css";
 
 /** Fields of the panels: a label, a value as written, a unit. They commit on Enter and on leaving, Escape takes back. */
 
