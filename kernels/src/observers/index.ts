@@ -1,4 +1,6 @@
 /** What reads the fields. */
 export { storedEnergy } from "./energy.js";
+export { RunningTransform } from "./running-transform.js";
+export type { TransformChannel, TransformValues } from "./running-transform.js";
 export { engineFieldOf, firstSampleStep, pointProbeTaps, unitOf } from "./point-probe.js";
 export type { Component } from "./point-probe.js";
