@@ -13,7 +13,6 @@ const fileSchema = z.object({ entries: z.array(entrySchema) });
 export type ReferenceEntry = z.output<typeof entrySchema>;
 
 export const complexSchema = z.object({ re: z.number(), im: z.number() });
-export type ComplexNumber = z.output<typeof complexSchema>;
 
 /** Entries of `reference/<name>.json`. */
 export function referenceEntries(name: string): ReferenceEntry[] {

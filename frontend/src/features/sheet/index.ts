@@ -1,12 +1,9 @@
-export { createSheetEditor, type SheetEditor } from "./document/editor";
-export { GESTURE_REPORT_MS, type SheetState, type SheetStoreOptions, type ToolId } from "./document/store";
-export { type ItemRef, makeRef } from "./document/refs";
-export type { Drawing } from "./document/drawing";
+export type { SheetEditor } from "./document/editor";
+export { makeRef } from "./document/refs";
 export { Inspector } from "./panels/inspector";
-export { type LibraryMedium, MediaShelf } from "./panels/media-shelf";
+export { MediaShelf } from "./panels/media-shelf";
 export { MediumSwatch } from "./panels/medium-swatch";
 export { SectionThumb } from "./panels/section-thumb";
 export { ToolRail } from "./panels/tool-rail";
-export { SheetSurface, type SheetSurfaceProps } from "./surface/sheet-surface";
-export type { TitleBlockFacts } from "./surface/title-block";
+export { SheetSurface } from "./surface/sheet-surface";
 export { useSheet, useSheetEditor } from "./surface/use-sheet";

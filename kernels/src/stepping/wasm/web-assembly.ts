@@ -31,6 +31,6 @@ interface Platform {
 }
 
 /** Undefined where the platform has none. */
-export const platform = (globalThis as { WebAssembly?: Platform }).WebAssembly;
+export const platform = (globalThis as unknown as { WebAssembly?: Platform }).WebAssembly;
 export const hasSharedMemory =
   typeof (globalThis as { SharedArrayBuffer?: unknown }).SharedArrayBuffer === "function";

@@ -50,7 +50,7 @@ export interface SheetStoreOptions {
 }
 
 /** ms between two reports of a gesture under way. */
-export const GESTURE_REPORT_MS = 60;
+const GESTURE_REPORT_MS = 60;
 
 const DEFAULT_INSETS: Insets = { left: 24, top: 24, right: 24, bottom: 24 };
 

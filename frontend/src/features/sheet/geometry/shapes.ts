@@ -68,30 +68,6 @@ export function patchCovers(patch: ResolvedPatch, at: Xy, reachMm: number): bool
   }
 }
 
-/** The patch's outline as closed or open polylines, close enough for outlines of a few pixels. */
-export function patchOutline(patch: ResolvedPatch): { points: Xy[]; closed: boolean }[] {
-  switch (patch.kind) {
-    case "rectangle":
-      return [{ points: rectangleCorners(patch), closed: true }];
-    case "ellipse": {
-      const centre: Xy = [patch.x, patch.y];
-      const points = Array.from({ length: 64 }, (_, i): Xy => {
-        const phase = (i / 64) * 2 * Math.PI;
-        return turn(
-          [patch.x + patch.rx * Math.cos(phase), patch.y + patch.ry * Math.sin(phase)],
-          centre,
-          patch.angle,
-        );
-      });
-      return [{ points, closed: true }];
-    }
-    case "polygon":
-      return [patch.points, ...patch.holes].map((points) => ({ points, closed: true }));
-    default:
-      return [{ points: patch.points, closed: false }];
-  }
-}
-
 export function probeBox(probe: ResolvedProbe): BoxMm {
   if (probe.kind === "point") return boxOf([[probe.x, probe.y]]);
   if (probe.kind === "line") return boxOf([probe.from, probe.to]);
