@@ -36,7 +36,7 @@ export type Refinement = (typeof REFINEMENTS)[number];
 export type FeatureSet = ReadonlySet<Feature | Refinement>;
 
 /** What the engines compute today. */
-export const COMPUTED: FeatureSet = new Set<Feature | Refinement>(["limit-level"]);
+export const COMPUTED: FeatureSet = new Set<Feature | Refinement>(["limit-level", "limit-q", "plate-loss"]);
 
 const FEATURE_NAMES: Readonly<Record<Feature, string>> = {
   ports: "Waveguide ports are",
@@ -118,7 +118,7 @@ const limitRefinement = ({ of }: Limit): { refinement: Refinement; what: string 
   return { refinement: "limit-absorbed-share", what: "limits on the absorbed share" };
 };
 
-const outOfPlaneCautions = ({ outOfPlane }: Scene, computed: FeatureSet): Problem[] => {
+const outOfPlaneCautions = ({ outOfPlane, wallConductivity }: Scene, computed: FeatureSet): Problem[] => {
   const path = "outOfPlane";
   const cautions: Problem[] = [];
   switch (outOfPlane.kind) {
@@ -133,6 +133,11 @@ const outOfPlaneCautions = ({ outOfPlane }: Scene, computed: FeatureSet): Proble
         cautions.push({
           path,
           sentence: "The loss of the plates above and below is not yet added to any Q.",
+        });
+      else if (wallConductivity === undefined)
+        cautions.push({
+          path,
+          sentence: "The plates above and below are taken as lossless: no wall conductivity is given.",
         });
       return cautions;
     case "guide-width":

@@ -5,6 +5,8 @@ import type { Engine } from "../stepping/index.js";
 import type { DrivePlan, PlannedProbe } from "./plan.js";
 import { qualityOf } from "./quality.js";
 import type { EditLogEntry, GridSummary, StopReason } from "./session.js";
+import { judgeQ, resonancesInDocument } from "./resonances.js";
+import type { SpectrumInput } from "./spectra.js";
 import { spectraOf } from "./spectra.js";
 import { SOLVER_VERSION } from "./version.js";
 
@@ -29,7 +31,7 @@ export interface ResultInput {
 
 /**
  * Limits on the levels of point probes: 20·lg of V/m or A/m per unit source. None is judged on a trace that had not rung down, nor on a
- * run that was edited. Other kinds of limit are not computed yet; the warnings of the scene say so.
+ * run that was edited. Limits on Q are judged beside them; other kinds of limit are not computed yet, and the warnings of the scene say so.
  */
 function judgeLimits(
   input: ResultInput,
@@ -55,16 +57,17 @@ export function buildResult(input: ResultInput): SolveResult {
   const { engine, grid, probes } = input;
   const { dt } = engine.lattice;
   const edited = input.edits.length > 0;
-  const spectra = edited
-    ? null
-    : spectraOf({
-        probes,
-        drives: input.drives,
-        traces: input.traces,
-        dt,
-        steps: engine.step,
-        frequenciesGHz: input.frequenciesGHz,
-      });
+  const driven: SpectrumInput = {
+    probes,
+    drives: input.drives,
+    traces: input.traces,
+    dt,
+    steps: engine.step,
+    frequenciesGHz: input.frequenciesGHz,
+    band: input.resolved.band,
+  };
+  const spectra = edited ? null : spectraOf(driven);
+  const resonances = edited ? undefined : resonancesInDocument(driven, input.resolved);
   const results = probes.map(
     (probe, index): ProbeResult => ({
       id: probe.id,
@@ -80,7 +83,9 @@ export function buildResult(input: ResultInput): SolveResult {
       spectrum: spectra?.spectra[index] ?? null,
     }),
   );
-  const limits = spectra ? judgeLimits(input, results, spectra.unfinished) : [];
+  const limits = spectra
+    ? [...judgeLimits(input, results, spectra.unfinished), ...judgeQ(input.resolved, resonances)]
+    : [];
   const warnings = [...input.warnings, ...(spectra?.warnings ?? [])];
   if (edited) {
     warnings.push(
@@ -105,6 +110,7 @@ export function buildResult(input: ResultInput): SolveResult {
     },
     stopped: { reason: input.reason, decayDb },
     probes: results,
+    ...(resonances ? { resonances } : {}),
     ...(limits.length > 0 ? { limits } : {}),
     quality: qualityOf({ ...input, warnings }),
     ...(edited ? { edits: [...input.edits] } : {}),

@@ -1,11 +1,26 @@
 /** Spectra of point probes per unit source, with the sentences that belong to them. */
-import type { SampledSignal } from "../analysis/index.js";
-import { fallenDb, finalPeriods, fourierSum, quotient, tonePhasor } from "../analysis/index.js";
+import type { SampledSignal, WideBand } from "../analysis/index.js";
+import {
+  completeRingDown,
+  excitedBand,
+  fallenDb,
+  finalPeriods,
+  fourierSum,
+  quotient,
+  tonePhasor,
+} from "../analysis/index.js";
 import type { ComplexSpectrum } from "../scene/index.js";
 import type { DrivePlan, PlannedProbe } from "./plan.js";
 
-/** A trace that has not fallen by this much at the stop is cut off: its spectrum stands with a warning. */
+/** A trace that has not fallen by this much at the stop is cut off: its poles complete it, or its spectrum stands with a warning. */
 const RUNG_DOWN_DB = 40;
+/** The poles may leave this share of the tail; then no limit is judged. */
+const TAIL_LEFT = 0.01;
+/** Fits over all cut-off traces, and at least for each: the cost of completing them. */
+const PIECES = 64;
+const LEAST_PIECES = 1;
+/** The search for what the waveform excites ends at this many times the band's upper edge. */
+const EXCITED_TO = 4;
 /** A tone is taken over at most this many whole periods at the end. */
 const TONE_PERIODS = 20;
 /** Two successive windows of a tone that differ by more than this share are not steady. */
@@ -19,6 +34,7 @@ export interface SpectrumInput {
   dt: number;
   steps: number;
   frequenciesGHz: readonly number[];
+  band: { fromGHz: number; toGHz: number };
 }
 
 export interface Spectra {
@@ -36,7 +52,7 @@ const none = (probes: readonly PlannedProbe[], warning: string): Spectra => ({
 });
 
 /** w as it drove the steps: at (n+½)Δt, before the amplitude. */
-function waveformSignal(input: SpectrumInput): SampledSignal {
+export function waveformSignal(input: SpectrumInput): SampledSignal {
   const { waveform } = input.drives.sources[0];
   const { dt, steps } = input;
   const driven = Math.min(steps, Math.ceil(waveform.endSeconds / dt) + 1);
@@ -44,7 +60,7 @@ function waveformSignal(input: SpectrumInput): SampledSignal {
   return { start: 0.5 * dt, step: dt, values };
 }
 
-const traceSignal = (input: SpectrumInput, probe: number): SampledSignal => ({
+export const traceSignal = (input: SpectrumInput, probe: number): SampledSignal => ({
   start: input.probes[probe].firstSampleStep * input.dt,
   step: input.dt,
   values: input.traces(probe),
@@ -52,7 +68,8 @@ const traceSignal = (input: SpectrumInput, probe: number): SampledSignal => ({
 
 function pulseSpectra(input: SpectrumInput): Spectra {
   const frequencies = input.frequenciesGHz.map((frequency) => frequency * 1e9);
-  const divisor = fourierSum(waveformSignal(input), frequencies);
+  const waveform = waveformSignal(input);
+  const divisor = fourierSum(waveform, frequencies);
   const warnings: string[] = [];
   const unfinished = new Set<string>();
   const over = input.steps * input.dt >= input.drives.endSeconds;
@@ -60,16 +77,33 @@ function pulseSpectra(input: SpectrumInput): Spectra {
     warnings.push(
       "The run was stopped while its sources were still driving; its spectra are of what was driven until then.",
     );
+  const signals = input.probes.map((_, index) => traceSignal(input, index));
+  const fallen = signals.map(({ values }) => fallenDb(values));
+  const cut = fallen.filter((level) => level < RUNG_DOWN_DB).length;
+  const pieces = Math.max(LEAST_PIECES, Math.floor(PIECES / Math.max(1, cut)));
+  const excited: WideBand = excitedBand(waveform, EXCITED_TO * input.band.toGHz * 1e9);
   const spectra = input.probes.map((probe, index): ComplexSpectrum => {
-    const signal = traceSignal(input, index);
-    const fallen = fallenDb(signal.values);
-    if (!over || fallen < RUNG_DOWN_DB) {
-      unfinished.add(probe.id);
-      warnings.push(
-        `The trace of "${probe.id}" had fallen by ${fallen.toFixed(0)} dB only when the run stopped (${RUNG_DOWN_DB} dB are needed): sharp peaks of its spectrum read too low, and no limit is judged on it. Run longer.`,
-      );
+    const sum = fourierSum(signals[index], frequencies);
+    const GHz = [...input.frequenciesGHz];
+    if (over && fallen[index] >= RUNG_DOWN_DB) return { GHz, ...quotient(sum, divisor) };
+    const completion = over
+      ? completeRingDown(signals[index], excited, input.drives.endSeconds, frequencies, pieces)
+      : null;
+    if (completion && completion.left <= TAIL_LEFT) {
+      sum.re.forEach((_, n) => {
+        sum.re[n] += completion.tail.re[n];
+        sum.im[n] += completion.tail.im[n];
+      });
+      return { GHz, ...quotient(sum, divisor), completed: true };
     }
-    return { GHz: [...input.frequenciesGHz], ...quotient(fourierSum(signal, frequencies), divisor) };
+    unfinished.add(probe.id);
+    const why = completion
+      ? ` and its poles leave ${(100 * completion.left).toPrecision(2)} % of the rest untold`
+      : "";
+    warnings.push(
+      `The trace of "${probe.id}" had fallen by ${fallen[index].toFixed(0)} dB only when the run stopped (${RUNG_DOWN_DB} dB are needed)${why}: sharp peaks of its spectrum read too low, and no limit is judged on it. Run longer.`,
+    );
+    return { GHz, ...quotient(sum, divisor) };
   });
   return { spectra, unfinished, warnings };
 }

@@ -37,6 +37,9 @@ const PART = 0.8;
  */
 const FASTEST = 0.2;
 
+/** Single-precision coefficients decide no decay or frequency finer than this share of ω. */
+const ROUNDING_SHARE = 3e-8;
+
 /** Trace samples per decimated sample so that `length` of them give about WINDOW_SAMPLES. */
 export const factorFor = (length: number): number => Math.max(1, Math.floor(length / WINDOW_SAMPLES));
 
@@ -78,29 +81,34 @@ function nearest(fit: PencilFit, pole: Log): Log | null {
  * of what the window resolves; those that noise makes do not come back.
  *
  * @param values the trace from where nothing drives any more, at a spacing of `dt` seconds
+ * @param least amplitude of a cosine below which it does not count
  */
-export function bandPoles(values: Float64Array, dt: number, band: NarrowBand): Pole[] {
+export function bandPoles(values: Float64Array, dt: number, band: NarrowBand, least: number): Pole[] {
   const factor = factorFor(values.length);
   if (decimatedLength(values.length, factor, lowPass(factor).length) < LEAST_SAMPLES) return [];
   const centerTurn = 2 * Math.PI * band.center * dt;
   const { signal, taps } = decimate(values, centerTurn, factor);
   const samples = signal.re.length;
-  const whole = matrixPencil(signal);
-  if (whole.terms.length === 0) return [];
+  // A mode's phasor has half its amplitude.
+  if (!signal.re.some((re, n) => Math.hypot(re, signal.im[n]) >= least / 2)) return [];
+  const span = factor * dt;
+  const fit = matrixPencil(signal);
+  const inBand = fit.terms.filter(
+    ({ zRe, zIm }) => Math.abs(Math.atan2(zIm, zRe)) / (2 * Math.PI * span) <= band.halfWidth,
+  );
+  if (inBand.length === 0) return [];
   const length = Math.floor(samples * PART);
   const windows = [
     matrixPencil(part(signal, 0, length)),
     matrixPencil(part(signal, samples - length, samples)),
   ];
-  const span = factor * dt;
-  return whole.terms.flatMap((term): Pole[] => {
+  return inBand.flatMap((term): Pole[] => {
     const log = logOf(term.zRe, term.zIm);
-    if (Math.abs(log.turn) / (2 * Math.PI * span) > band.halfWidth) return [];
     const omega = 2 * Math.PI * band.center + log.turn / span;
     if (!(omega > 0) || (factor > 1 && -log.growth > FASTEST)) return [];
     const allowed = 0.25 * Math.abs(log.growth) + (0.05 * 2 * Math.PI) / samples;
     const found = windows
-      .map((fit) => nearest(fit, log))
+      .map((window) => nearest(window, log))
       .filter(
         (other): other is Log =>
           other !== null && Math.hypot(other.growth - log.growth, other.turn - log.turn) <= allowed,
@@ -109,30 +117,21 @@ export function bandPoles(values: Float64Array, dt: number, band: NarrowBand): P
     const spread = (of: (log: Log) => number): number =>
       Math.max(...found.map((other) => Math.abs(of(other) - of(log))));
     // Cramér–Rao bound of one exponential over the samples that it lasts.
-    const lasting = Math.max(
-      2,
-      Math.min(samples, 1 / Math.max(log.growth === 0 ? 0 : Math.abs(log.growth), 1e-12)),
-    );
-    const noise = (whole.residual / Math.hypot(term.re, term.im)) * Math.sqrt(6 / lasting ** 3);
+    const lasting = Math.max(2, Math.min(samples, 1 / Math.max(Math.abs(log.growth), 1e-12)));
+    const noise = (fit.residual / Math.hypot(term.re, term.im)) * Math.sqrt(6 / lasting ** 3);
     if (!(noise < 1)) return [];
     const [gr, gi] = filterGain(taps, log.growth / factor, log.turn / factor);
     const gain = gr * gr + gi * gi;
+    const rounding = ROUNDING_SHARE * omega;
+    if (2 * Math.hypot(term.re, term.im) < least * Math.sqrt(gain)) return [];
     return [
       {
         omega,
         alpha: -log.growth / span,
         re: (term.re * gr + term.im * gi) / gain,
         im: (term.im * gr - term.re * gi) / gain,
-        omegaUncertainty:
-          Math.hypot(
-            spread(({ turn }) => turn),
-            noise,
-          ) / span,
-        alphaUncertainty:
-          Math.hypot(
-            spread(({ growth }) => growth),
-            noise,
-          ) / span,
+        omegaUncertainty: Math.hypot(spread(({ turn }) => turn) / span, noise / span, rounding),
+        alphaUncertainty: Math.hypot(spread(({ growth }) => growth) / span, noise / span, rounding),
       },
     ];
   });

@@ -1,8 +1,10 @@
-import { describe, expect, it } from "vitest";
+import { describe, expect, it, vi } from "vitest";
 import { complexMatrix } from "./complex-matrix.js";
 import { complexEigenvalues } from "./eigenvalues.js";
 import { ringDownPoles } from "./index.js";
 import { rightSingular } from "./right-singular.js";
+
+vi.setConfig({ testTimeout: 60_000 });
 
 /** Evenly spread numbers in −1 … 1, the same each time (linear congruence of D. E. Knuth, TAOCP vol. 2). */
 function randomNumbers(seed: number): () => number {

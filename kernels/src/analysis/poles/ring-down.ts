@@ -37,11 +37,15 @@ export function polesOver(values: Float64Array, dt: number, band: WideBand, leng
   const used = values.subarray(0, length);
   let largest = 0;
   for (const value of values) largest = Math.max(largest, Math.abs(value));
-  return Array.from({ length: pieces }, (_, piece) =>
-    bandPoles(used, dt, { center: band.from + (piece + 0.5) * width, halfWidth: 0.505 * width }),
-  )
-    .flat()
-    .filter(({ re, im }) => 2 * Math.hypot(re, im) >= FLOOR * largest);
+  const found = Array.from({ length: pieces }, (_, piece) =>
+    bandPoles(
+      used,
+      dt,
+      { center: band.from + (piece + 0.5) * width, halfWidth: 0.505 * width },
+      FLOOR * largest,
+    ),
+  ).flat();
+  return distinct(found);
 }
 
 /** Pieces of a band of which each fills the pass band of its decimated signal. */
@@ -80,8 +84,13 @@ export function ringDownPoles(values: Float64Array, dt: number, band: WideBand, 
     found.push(...polesOver(values, dt, band, length));
     length = Math.floor(length * SHORTER);
   }
+  return distinct(found);
+}
+
+/** Each pole once, as the least uncertain of its sightings has it, in rising order. */
+function distinct(found: readonly Pole[]): Pole[] {
   const kept: Pole[] = [];
-  for (const pole of found.sort((a, b) => uncertainty(a) - uncertainty(b))) {
+  for (const pole of [...found].sort((a, b) => uncertainty(a) - uncertainty(b))) {
     if (!kept.some((other) => samePole(other, pole))) kept.push(pole);
   }
   return kept.sort((a, b) => a.omega - b.omega);
