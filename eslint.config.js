@@ -87,7 +87,9 @@ export default tseslint.config(
   {
     files: ["**/*.{ts,tsx}"],
     extends: [...tseslint.configs.strictTypeChecked],
-    languageOptions: { parserOptions: { projectService: true, tsconfigRootDir: root } },
+    languageOptions: {
+      parserOptions: { projectService: { allowDefaultProject: ["vitest.config.ts"] }, tsconfigRootDir: root },
+    },
     plugins: { "import-x": importX },
     settings: {
       "import-x/resolver-next": [
@@ -154,4 +156,5 @@ export default tseslint.config(
     },
   },
   { files: ["**/*.{js,mjs}"], languageOptions: { globals: { ...globals.node } } },
+  { files: ["frontend/public/*.js"], languageOptions: { globals: { ...globals.browser } } },
 );

@@ -22,7 +22,7 @@ export class SheetPage {
     const view = await this.paper.getAttribute("data-view");
     if (bounds === null || view === null) throw new Error("The sheet is not on the page.");
     const [pxPerMm, originX, originY] = view.split(" ").map(Number);
-    return { x: bounds.x + originX! + xMm * pxPerMm!, y: bounds.y + originY! - yMm * pxPerMm! };
+    return { x: bounds.x + originX + xMm * pxPerMm, y: bounds.y + originY - yMm * pxPerMm };
   }
 
   /** Presses a tool's letter with the sheet in focus. */
@@ -34,7 +34,7 @@ export class SheetPage {
   /** One gesture through the points, slowly enough to be drawn. */
   async drag(...points: PointMm[]): Promise<void> {
     const [first, ...rest] = points;
-    const start = await this.at(first!);
+    const start = await this.at(first);
     await this.page.mouse.move(start.x, start.y);
     await this.page.mouse.down();
     for (const point of rest) {
