@@ -30,6 +30,7 @@ import { createHoverStore } from "./hover-store";
 import { Readout } from "./readout";
 import { SaveNote } from "./save-note";
 import "./scene-page.css";
+import { RingPanel } from "./ring-panel";
 import { TrustPanel } from "./trust-panel";
 import { useAutosave } from "./use-autosave";
 import { useEstimate } from "./use-estimate";
@@ -208,6 +209,7 @@ export function SceneSheet({ scene, document }: { scene: SceneDto; document: Sce
       </div>
       <aside className="scene-side" aria-label="Media, dimensions and trust">
         <MediaShelf editor={editor} library={library.data ?? []} />
+        <RingPanel result={result.data ?? null} outdated={outdated} nameOf={nameOf} />
         <TrustPanel
           result={result.data ?? null}
           mediaById={drawing.mediaById}

@@ -2,6 +2,7 @@ import type { SolveResult } from "@heddle/kernels/scene";
 import { useLayoutEffect, useMemo, useRef, useState } from "react";
 import { figure, formatFixed, frequency, MINUS, THIN_SPACE } from "../../lib/figures";
 import { ticks } from "./decimate";
+import { ResonanceMarks } from "./resonance-marks";
 import type { LevelCurve } from "./spectrum";
 import { curvesOf, nearestIndex, rangeOf, whyNoSpectrum } from "./spectrum";
 import styles from "./traces.module.css";
@@ -116,6 +117,13 @@ export function SpectrumPanel({ result, previous, band, nameOf, selected, empty 
                 {label}
               </text>
             ))}
+            <ResonanceMarks
+              resonances={result?.resonances ?? []}
+              band={band}
+              x={x}
+              top={PAD.top}
+              bottom={height - PAD.bottom}
+            />
             <g clipPath="url(#spectrum-area)">
               {before.map((curve) => (
                 <Curve key={curve.probe} curve={curve} x={x} y={y} className={styles.before} dash="4 3" />
