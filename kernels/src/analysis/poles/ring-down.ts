@@ -15,7 +15,7 @@ export interface WideBand {
 const SHORTER = 1 / 6;
 /** Lengths are tried down to this many periods of the band's lower edge, */
 const LEAST_PERIODS = 4;
-/** … and to this product of time and bandwidth, below which a window tells no two frequencies apart. */
+/** … and, but for the longest, to this product of time and bandwidth, below which a window tells no two frequencies apart. */
 const LEAST_RESOLUTION = 3;
 /** Below this part of the ring-down's largest value a trace is rounding of the single-precision fields. */
 const FLOOR = 1e-5;
@@ -76,13 +76,12 @@ const uncertainty = (pole: Pole): number => Math.hypot(pole.omegaUncertainty, po
 export function ringDownPoles(values: Float64Array, dt: number, band: WideBand, pieces: number): Pole[] {
   const audible = audibleLength(values);
   const found: Pole[] = [];
-  let length = Math.min(audible, longestFor(dt, band, pieces));
-  while (
+  const longest = Math.min(audible, longestFor(dt, band, pieces));
+  const tells = (length: number): boolean =>
     length * dt * band.from >= LEAST_PERIODS &&
-    length * dt * (band.to - band.from) >= LEAST_RESOLUTION
-  ) {
+    (length === longest || length * dt * (band.to - band.from) >= LEAST_RESOLUTION);
+  for (let length = longest; tells(length); length = Math.floor(length * SHORTER)) {
     found.push(...polesOver(values, dt, band, length));
-    length = Math.floor(length * SHORTER);
   }
   return distinct(found);
 }
