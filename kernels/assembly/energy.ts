@@ -39,16 +39,24 @@ function squares(field: usize, from: usize, end: usize): f64 {
     const value: f64 = load<f32>(field + at);
     sum += value * value;
   }
-  let low = f64x2.splat(0);
-  let high = f64x2.splat(0);
-  for (; at + VECTOR_BYTES <= end; at += VECTOR_BYTES) {
-    const values = v128.load(field + at);
-    const first = f64x2.promote_low_f32x4(values);
-    const second = f64x2.promote_low_f32x4(v128.shuffle<i64>(values, values, 1, 0));
-    low = f64x2.add(low, f64x2.mul(first, first));
-    high = f64x2.add(high, f64x2.mul(second, second));
+  // Four sums side by side, for an addition must wait for the one before it.
+  let s0 = f64x2.splat(0);
+  let s1 = s0;
+  let s2 = s0;
+  let s3 = s0;
+  for (; at + 2 * VECTOR_BYTES <= end; at += 2 * VECTOR_BYTES) {
+    const first = v128.load(field + at);
+    const second = v128.load(field + at, VECTOR_BYTES);
+    const v0 = f64x2.promote_low_f32x4(first);
+    const v1 = f64x2.promote_low_f32x4(v128.shuffle<i64>(first, first, 1, 0));
+    const v2 = f64x2.promote_low_f32x4(second);
+    const v3 = f64x2.promote_low_f32x4(v128.shuffle<i64>(second, second, 1, 0));
+    s0 = f64x2.add(s0, f64x2.mul(v0, v0));
+    s1 = f64x2.add(s1, f64x2.mul(v1, v1));
+    s2 = f64x2.add(s2, f64x2.mul(v2, v2));
+    s3 = f64x2.add(s3, f64x2.mul(v3, v3));
   }
-  const both = f64x2.add(low, high);
+  const both = f64x2.add(f64x2.add(s0, s1), f64x2.add(s2, s3));
   sum += f64x2.extract_lane(both, 0) + f64x2.extract_lane(both, 1);
   for (; at < end; at += 4) {
     const value: f64 = load<f32>(field + at);

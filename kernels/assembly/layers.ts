@@ -2,16 +2,18 @@
 import { VARIED_BYTES, VECTOR_BYTES } from "../src/stepping/wasm/layout";
 
 class Layer {
-  /** A difference with the layer's memory: b·(ψ + stretch·d), with ψ stepped in place. */
+  /**
+   * What stands in for the difference d in a layer: stretch·d + ψ, with ψ ← decay·ψ + gain·d stepped in place. Stretch here is 1/κ.
+   */
   @inline
-  static share(memory: usize, decay: v128, gain: v128, stretch: v128, difference: v128, b: v128): v128 {
+  static stretched(memory: usize, decay: v128, gain: v128, stretch: v128, difference: v128): v128 {
     const psi = f32x4.add(f32x4.mul(decay, v128.load(memory)), f32x4.mul(gain, difference));
     v128.store(memory, psi);
-    return f32x4.mul(b, f32x4.add(psi, f32x4.mul(stretch, difference)));
+    return f32x4.add(f32x4.mul(stretch, difference), psi);
   }
 
   /**
-   * A run in a layer. `columns` points to the run's first six vectors of decay, gain, stretch of gy and of F; `row` to the same
+   * A run in a layer. `columns` points to the run's first six vectors of decay, gain, stretch of gy and of F; `rowLayer` to the same
    * six numbers of gx and of F of this row. Memory pointers belong to the run's first vector.
    */
   @inline
@@ -19,7 +21,7 @@ class Layer {
     varied: bool,
     alongX: bool,
     alongY: bool,
-    row: usize,
+    f: usize,
     gx: usize,
     gy: usize,
     stride: usize,
@@ -38,8 +40,25 @@ class Layer {
     let bGy = v128.load32_splat(numbers, 12);
     let aF = v128.load32_splat(numbers, 16);
     let bF = v128.load32_splat(numbers, 20);
+    let decayG = f32x4.splat(0);
+    let gainG = decayG;
+    let stretchG = decayG;
+    let decayF = decayG;
+    let gainF = decayG;
+    let stretchF = decayG;
+    if (alongY) {
+      decayG = v128.load32_splat(rowLayer, 0);
+      gainG = v128.load32_splat(rowLayer, 4);
+      stretchG = v128.load32_splat(rowLayer, 8);
+      decayF = v128.load32_splat(rowLayer, 12);
+      gainF = v128.load32_splat(rowLayer, 16);
+      stretchF = v128.load32_splat(rowLayer, 20);
+    }
+    let above = f + stride;
+    let below = gx - stride;
     let left = v128.load(gy - VECTOR_BYTES);
-    for (let at: usize = 0; at < bytes; at += VECTOR_BYTES) {
+    const end = f + bytes;
+    while (f < end) {
       if (varied) {
         aGx = v128.load(numbers, 0);
         bGx = v128.load(numbers, 16);
@@ -49,43 +68,45 @@ class Layer {
         bF = v128.load(numbers, 80);
         numbers += VARIED_BYTES;
       }
-      const here = v128.load(row + at);
-      const dy = f32x4.sub(v128.load(row + stride + at), here);
-      const dx = f32x4.sub(v128.load(row + at, 4), here);
-      let x = f32x4.sub(f32x4.mul(aGx, v128.load(gx + at)), f32x4.mul(bGx, dy));
-      let y = f32x4.add(f32x4.mul(aGy, v128.load(gy + at)), f32x4.mul(bGy, dx));
+      const here = v128.load(f);
+      let dy = f32x4.sub(v128.load(above), here);
+      let dx = f32x4.sub(v128.load(f, 4), here);
       if (alongX) {
-        const decay = v128.load(columns, 0);
-        y = f32x4.add(
-          y,
-          Layer.share(psiGy + at, decay, v128.load(columns, 16), v128.load(columns, 32), dx, bGy),
-        );
+        dx = Layer.stretched(psiGy, v128.load(columns), v128.load(columns, 16), v128.load(columns, 32), dx);
+        psiGy += VECTOR_BYTES;
       }
       if (alongY) {
-        const decay = v128.load32_splat(rowLayer, 0);
-        const gain = v128.load32_splat(rowLayer, 4);
-        x = f32x4.sub(x, Layer.share(psiGx + at, decay, gain, v128.load32_splat(rowLayer, 8), dy, bGx));
+        dy = Layer.stretched(psiGx, decayG, gainG, stretchG, dy);
+        psiGx += VECTOR_BYTES;
       }
-      v128.store(gx + at, x);
-      v128.store(gy + at, y);
-      const ddx = f32x4.sub(y, v128.shuffle<f32>(left, y, 3, 4, 5, 6));
-      const ddy = f32x4.sub(x, v128.load(gx + at - stride));
-      let f = f32x4.add(f32x4.mul(aF, here), f32x4.mul(bF, f32x4.sub(ddx, ddy)));
+      const x = f32x4.sub(f32x4.mul(aGx, v128.load(gx)), f32x4.mul(bGx, dy));
+      const y = f32x4.add(f32x4.mul(aGy, v128.load(gy)), f32x4.mul(bGy, dx));
+      v128.store(gx, x);
+      v128.store(gy, y);
+      dx = f32x4.sub(y, v128.shuffle<f32>(left, y, 3, 4, 5, 6));
+      dy = f32x4.sub(x, v128.load(below));
       if (alongX) {
-        const decay = v128.load(columns, 48);
-        f = f32x4.add(
-          f,
-          Layer.share(psiFx + at, decay, v128.load(columns, 64), v128.load(columns, 80), ddx, bF),
+        dx = Layer.stretched(
+          psiFx,
+          v128.load(columns, 48),
+          v128.load(columns, 64),
+          v128.load(columns, 80),
+          dx,
         );
+        psiFx += VECTOR_BYTES;
         columns += VARIED_BYTES;
       }
       if (alongY) {
-        const decay = v128.load32_splat(rowLayer, 12);
-        const gain = v128.load32_splat(rowLayer, 16);
-        f = f32x4.sub(f, Layer.share(psiFy + at, decay, gain, v128.load32_splat(rowLayer, 20), ddy, bF));
+        dy = Layer.stretched(psiFy, decayF, gainF, stretchF, dy);
+        psiFy += VECTOR_BYTES;
       }
-      v128.store(row + at, f);
+      v128.store(f, f32x4.add(f32x4.mul(aF, here), f32x4.mul(bF, f32x4.sub(dx, dy))));
       left = y;
+      f += VECTOR_BYTES;
+      above += VECTOR_BYTES;
+      gx += VECTOR_BYTES;
+      below += VECTOR_BYTES;
+      gy += VECTOR_BYTES;
     }
   }
 }

@@ -5,7 +5,7 @@
  *   gx ← aGx·gx − bGx·(F[above] − F)    gy ← aGy·gy + bGy·(F[right] − F)
  *   F  ← aF·F + bF·((gy − gy[left]) − (gx − gx[below]))
  *
- * and in the absorbing layers each difference d adds b·(ψ + stretch·d), ψ ← decay·ψ + gain·d.
+ * and in the absorbing layers a difference d is replaced by d/κ + ψ, ψ ← decay·ψ + gain·d.
  */
 import { VARIED_BYTES, VECTOR_BYTES } from "../src/stepping/wasm/layout";
 

@@ -19,7 +19,7 @@ import {
 } from "./layout.js";
 
 /** Fewer equal vectors than this are not worth a loop of their own. */
-const SHORTEST_UNIFORM = 6;
+const SHORTEST_UNIFORM = 8;
 
 export interface RowPlace {
   /** Columns 0 … columns hold coefficients, the rest of a row none. */

@@ -63,15 +63,12 @@ export function layStrips(arena: Arena, lattice: Lattice, layers: AbsorbingLayer
   const psiGx = arena.reserve(placeOf.size * rowBytes, CACHE_LINE_BYTES);
   const psiFy = arena.reserve(placeOf.size * rowBytes, CACHE_LINE_BYTES);
 
+  // The kernel knows 1/κ itself, the layers tell 1/κ − 1.
+  const whole = (stretch: Float64Array): Float64Array => stretch.map((value) => 1 + value);
   const { columnsG, columnsF } = layers;
-  const along = [
-    columnsG.decay,
-    columnsG.gain,
-    columnsG.stretch,
-    columnsF.decay,
-    columnsF.gain,
-    columnsF.stretch,
-  ];
+  const wholeG = whole(columnsG.stretch);
+  const wholeF = whole(columnsF.stretch);
+  const along = [columnsG.decay, columnsG.gain, wholeG, columnsF.decay, columnsF.gain, wholeF];
   for (let i = 0; i < Math.min(stride, columnsG.decay.length); i += 1) {
     const word = (columnParameters + Math.floor(i / LANES) * VARIED_BYTES) / 4 + (i % LANES);
     along.forEach((values, index) => {
@@ -93,8 +90,8 @@ export function layStrips(arena: Arena, lattice: Lattice, layers: AbsorbingLayer
     psiGxOf: (row) => inRow(psiGx, row),
     psiFyOf: (row) => inRow(psiFy, row),
     rowParameters: (row) => [
-      ...[rowsG.decay[row], rowsG.gain[row], rowsG.stretch[row]],
-      ...[rowsF.decay[row], rowsF.gain[row], rowsF.stretch[row]],
+      ...[rowsG.decay[row], rowsG.gain[row], 1 + rowsG.stretch[row]],
+      ...[rowsF.decay[row], rowsF.gain[row], 1 + rowsF.stretch[row]],
     ],
     memory: [
       view(psiGy, width * (rows + 2)),
