@@ -1,7 +1,7 @@
 /** The lowest modes of one mesh, checked for completeness by an inertia count. */
 import { PivotError } from "./algebra/factorization.js";
 import type { Factorization } from "./algebra/factorization.js";
-import type { Eigenpair } from "./algebra/lanczos.js";
+import type { Eigenpair, Search } from "./algebra/lanczos.js";
 import { lowestEigenpairs } from "./algebra/lanczos.js";
 import type { ElementSpace } from "./space.js";
 import { factorShifted, multiplyMass } from "./space.js";
@@ -46,21 +46,21 @@ function countBelow(space: ElementSpace, value: number, room: number): number {
   }
 }
 
-/** The widest gap about the last of `count` values: where a count is surest. */
+/** The widest gap about the last of `count` rising values: where a count is surest. */
 function gapBehind(
-  found: readonly Eigenpair[],
+  values: readonly number[],
   count: number,
 ): { middle: number; width: number; below: number } {
-  const width = (n: number): number => found[n + 1].value - found[n].value;
-  const last = Math.min(found.length - 1, count + GUARD);
-  if (last < 1) return { middle: found[0].value * 1.001, width: found[0].value * 1e-3, below: 1 };
+  const width = (n: number): number => values[n + 1] - values[n];
+  const last = Math.min(values.length - 1, count + GUARD);
+  if (last < 1) return { middle: values[0] * 1.001, width: values[0] * 1e-3, below: 1 };
   let at = Math.max(0, Math.min(count, last) - 1);
   for (let n = at + 1; n < last; n += 1) if (width(n) > width(at)) at = n;
-  return { middle: found[at].value + width(at) / 2, width: width(at), below: at + 1 };
+  return { middle: values[at] + width(at) / 2, width: width(at), below: at + 1 };
 }
 
 /** Runs a search to its end, yielding between its steps. */
-function* finish(search: Generator<number, Eigenpair[]>): Generator<void, Eigenpair[]> {
+function* finish(search: Generator<number, Search>): Generator<void, Search> {
   for (;;) {
     const { done, value } = search.next();
     if (done === true) return value;
@@ -75,7 +75,7 @@ const agrees = (found: readonly Eigenpair[], other: readonly number[]): boolean 
   found.every(({ value }, n) => Math.abs(value / other[n] - 1) < ALIKE);
 
 /**
- * The lowest `count` solutions of K x = λ M x above the static ones, rising, and up to GUARD more; fewer where the mesh has
+ * The lowest `count` solutions of K x = λ M x above the static ones, rising, and perhaps some more; fewer where the mesh has
  * fewer. That none is missing is proven by an inertia count, or, where `known` is given, by agreement with the complete list
  * of another mesh. Yields between steps of about a tenth of a second.
  */
@@ -97,19 +97,20 @@ export function* lowestModes(
     multiplyMass: (x: Float64Array, out: Float64Array): void => multiplyMass(space, x, out),
     solvePair: (x: Float64Array): void => factors.solvePair(x),
   };
-  let asked = Math.min(available, count + GUARD);
+  let asked = Math.min(available, count);
   let found: Eigenpair[] = [];
   for (let round = 0; round < ROUNDS; round += 1) {
     const locked = [...still, ...found.map(({ vector }) => vector)];
-    const more = yield* finish(lowestEigenpairs(operator, asked, locked, round + 1));
-    found = [...found, ...more].sort((p, q) => p.value - q.value);
+    const search = yield* finish(lowestEigenpairs(operator, asked, GUARD, locked, round + 1));
+    found = [...found, ...search.pairs].sort((p, q) => p.value - q.value);
     if (found.length >= available || agrees(found, known)) return found;
-    const gap = gapBehind(found, count);
+    const values = [...found.map(({ value }) => value), ...search.guards].sort((p, q) => p - q);
+    const gap = gapBehind(values, count);
     const missing = countBelow(space, gap.middle, gap.width) - (still.length + gap.below);
     yield;
     if (missing === 0) return found;
     // A mode of higher degeneracy than the block has vectors: its other members are the lowest of what is left.
-    asked = Math.min(available - found.length, Math.max(1, missing) + 1);
+    asked = Math.max(1, missing);
   }
   throw new Error("Some modes of the section could not be told apart; ask for fewer or refine the mesh.");
 }

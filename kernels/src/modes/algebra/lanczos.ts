@@ -19,16 +19,29 @@ export interface Eigenpair {
   vector: Float64Array;
 }
 
-/** A pair has settled when its residual is this share of its own 1/(λ − shift). */
-const SETTLED = 1e-7;
+export interface Search {
+  /** Settled, rising. */
+  pairs: Eigenpair[];
+  /** The next eigenvalues behind them, roughly. */
+  guards: number[];
+}
+
+/**
+ * A pair has settled when its residual is this share of its own 1/(λ − shift); its eigenvalue is then right to about the square.
+ * Of the guards behind the pairs asked for only the eigenvalues are used, and those to three digits.
+ */
+const SETTLED = 1e-6;
+const SETTLED_GUARD = 1e-2;
 const LARGEST_BASIS = 400;
 /** Blocks between two looks at the Ritz values. */
 const CHECK_EVERY = 2;
 /** Vectors of the two newest blocks. */
 const NEWEST = 4;
+/** A vector of which a pass leaves less than this is orthogonalized again (B. N. Parlett, The Symmetric Eigenvalue Problem, 1980, §6-9). */
+const AGAIN = 0.5;
 const NOTHING = new Float64Array(0);
 /** What is left of a vector, after taking out the basis, when it lay in it. */
-const DEPENDENT = 1e-10;
+const DEPENDENT = 1e-11;
 
 function dot(a: Float64Array, b: Float64Array): number {
   let s0 = 0;
@@ -75,27 +88,36 @@ class Basis {
   }
 
   /**
-   * Takes locked and basis vectors out of x: first the newest, which a Lanczos step brings most of, then all. Returns the
-   * coefficients on the basis and the M-norm of x before and after; `massTimes` then holds M x.
+   * Takes locked and basis vectors out of x: first the newest, which a Lanczos step brings most of, then all, and once more
+   * where that took much out, for rounding then shows. Returns the coefficients on the basis and the M-norm of x
+   * before and after; `massTimes` then holds M x.
    */
   orthogonalize(x: Float64Array): { coefficients: Float64Array; norm: number; before: number } {
-    const { operator, massTimes, vectors, locked } = this;
+    const { operator, massTimes, vectors, locked, images } = this;
     const coefficients = new Float64Array(vectors.length);
-    const takeOut = (from: number): void => {
-      for (let n = from; n < vectors.length; n += 1) {
-        const c = dot(vectors[n], massTimes);
+    const massNorm = (): number => Math.sqrt(Math.max(0, dot(x, massTimes)));
+    operator.multiplyMass(x, massTimes);
+    const before = massNorm();
+    for (let n = Math.max(0, vectors.length - NEWEST); n < vectors.length; n += 1) {
+      const c = dot(vectors[n], massTimes);
+      coefficients[n] += c;
+      subtract(x, c, vectors[n]);
+      subtract(massTimes, c, images[n]);
+    }
+    let norm = massNorm();
+    for (let pass = 0; pass < 3; pass += 1) {
+      const previous = norm;
+      for (const q of locked) subtract(x, dot(q, massTimes), q);
+      vectors.forEach((q, n) => {
+        const c = dot(q, massTimes);
         coefficients[n] += c;
-        subtract(x, c, vectors[n]);
-      }
-    };
-    operator.multiplyMass(x, massTimes);
-    const before = Math.sqrt(Math.max(0, dot(x, massTimes)));
-    takeOut(Math.max(0, vectors.length - NEWEST));
-    operator.multiplyMass(x, massTimes);
-    for (const q of locked) subtract(x, dot(q, massTimes), q);
-    takeOut(0);
-    operator.multiplyMass(x, massTimes);
-    return { coefficients, norm: Math.sqrt(Math.max(0, dot(x, massTimes))), before };
+        subtract(x, c, q);
+      });
+      operator.multiplyMass(x, massTimes);
+      norm = massNorm();
+      if (norm > AGAIN * previous) break;
+    }
+    return { coefficients, norm, before };
   }
 
   /** Adds x, as `orthogonalize` has just left it, of the given norm. */
@@ -104,13 +126,12 @@ class Basis {
     for (let i = 0; i < x.length; i += 1) x[i] *= scale;
     this.vectors.push(x);
     this.images.push(this.massTimes.map((value) => value * scale));
+    if (this.images.length > NEWEST) this.images[this.images.length - 1 - NEWEST] = NOTHING;
   }
 
-  /** M times vector n, once. */
-  takeImage(n: number): Float64Array {
-    const image = this.images[n];
-    this.images[n] = NOTHING;
-    return image;
+  /** M times vector n, which must be one of the newest. */
+  image(n: number): Float64Array {
+    return this.images[n];
   }
 
   /** Adds a vector at random; false where the space is used up. */
@@ -130,23 +151,24 @@ class Basis {
 }
 
 /**
- * The `wanted` eigenvalues above and nearest to the shift, rising, in the M-orthogonal complement of `locked`; fewer where the
+ * The `wanted` eigenvalues and `guards` rough ones above and nearest to the shift, rising, in the M-orthogonal complement of `locked`; fewer where the
  * space has fewer. A generator: it yields after every block, so that the caller may show progress or stop.
  */
 export function* lowestEigenpairs(
   operator: ShiftedOperator,
   wanted: number,
+  guards: number,
   locked: readonly Float64Array[],
   seed: number,
-): Generator<number, Eigenpair[]> {
+): Generator<number, Search> {
   const { unknowns, shift } = operator;
   const room = Math.min(unknowns - locked.length, LARGEST_BASIS);
-  if (room <= 0 || wanted <= 0) return [];
+  if (room <= 0 || wanted <= 0) return { pairs: [], guards: [] };
   const basis = new Basis(operator, locked, seed);
   const projected: Float64Array[] = [];
   const pair = new Float64Array(2 * unknowns);
   const q0 = basis.pushRandom();
-  if (!q0) return [];
+  if (!q0) return { pairs: [], guards: [] };
   if (room > 1) basis.pushRandom();
   let done = 0;
   for (let block = 1; ; block += 1) {
@@ -155,7 +177,7 @@ export function* lowestEigenpairs(
     const fresh = vectors.slice(done, done + 2);
     for (let n = 0; n < 2; n += 1) {
       if (n < fresh.length) {
-        const image = basis.takeImage(done + n);
+        const image = basis.image(done + n);
         for (let i = 0; i < unknowns; i += 1) pair[2 * i + n] = image[i];
       } else for (let i = 0; i < unknowns; i += 1) pair[2 * i + n] = 0;
     }
@@ -183,14 +205,19 @@ export function* lowestEigenpairs(
     }
     const last = done >= room || done >= vectors.length;
     if (last || (done >= 2 * wanted && block % CHECK_EVERY === 0)) {
-      const found = settled(projected, done, vectors, wanted, last);
+      const found = settled(projected, done, vectors, wanted, guards, last);
       if (found !== null) {
-        return found
-          .map(({ theta, weights }) => ({
-            value: shift + 1 / theta,
-            vector: combine(vectors, weights, unknowns),
-          }))
-          .sort((p, q) => p.value - q.value);
+        const value = ({ theta }: { theta: number }): number => shift + 1 / theta;
+        const pairs = found
+          .slice(0, wanted)
+          .map((pair) => ({ value: value(pair), vector: combine(vectors, pair.weights, unknowns) }));
+        return {
+          pairs: pairs.sort((p, q) => p.value - q.value),
+          guards: found
+            .slice(wanted)
+            .map(value)
+            .sort((p, q) => p - q),
+        };
       }
       if (last) throw new Error("The eigenvalues did not settle.");
     }
@@ -204,6 +231,7 @@ function settled(
   done: number,
   vectors: readonly Float64Array[],
   wanted: number,
+  guards: number,
   last: boolean,
 ): { theta: number; weights: Float64Array }[] | null {
   const matrix = new Float64Array(done * done);
@@ -217,7 +245,7 @@ function settled(
   }
   const { values, vectors: ritz } = symmetricEigen(matrix, done);
   const found: { theta: number; weights: Float64Array }[] = [];
-  for (let n = 0; n < done && found.length < wanted && values[n] > 0; n += 1) {
+  for (let n = 0; n < done && found.length < wanted + guards && values[n] > 0; n += 1) {
     // A q_i reaches beyond the first `done` vectors by its components on the newest ones.
     let residual = 0;
     for (let beyond = done; beyond < vectors.length; beyond += 1) {
@@ -226,11 +254,12 @@ function settled(
         component += (projected[i][beyond] ?? 0) * ritz[n][i];
       residual += component * component;
     }
-    if (!last && Math.sqrt(residual) > SETTLED * values[n]) return null;
-    if (Math.sqrt(residual) > 1e3 * SETTLED * values[n]) return null;
+    const allowed = found.length < wanted ? SETTLED : SETTLED_GUARD;
+    // At the end of the room a rougher pair is still a pair; one rougher than that is none.
+    if (Math.sqrt(residual) > (last ? Math.max(allowed, 1e-4) : allowed) * values[n]) return null;
     found.push({ theta: values[n], weights: ritz[n] });
   }
-  return last || found.length === wanted ? found : null;
+  return last || found.length === wanted + guards ? found : null;
 }
 
 function combine(vectors: readonly Float64Array[], weights: Float64Array, unknowns: number): Float64Array {
