@@ -1,5 +1,7 @@
 /** What reads the fields. */
 export { storedEnergy } from "./energy.js";
+export { LinePower } from "./line-power.js";
+export { powerTaps, voltageTaps } from "./line-probe.js";
 export { RunningTransform } from "./running-transform.js";
 export type { TransformChannel, TransformValues } from "./running-transform.js";
 export { engineFieldOf, firstSampleStep, pointProbeTaps, unitOf } from "./point-probe.js";

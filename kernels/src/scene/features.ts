@@ -36,7 +36,12 @@ export type Refinement = (typeof REFINEMENTS)[number];
 export type FeatureSet = ReadonlySet<Feature | Refinement>;
 
 /** What the engines compute today. */
-export const COMPUTED: FeatureSet = new Set<Feature | Refinement>(["limit-level", "limit-q", "plate-loss"]);
+export const COMPUTED: FeatureSet = new Set<Feature | Refinement>([
+  "line-probe",
+  "limit-level",
+  "limit-q",
+  "plate-loss",
+]);
 
 const FEATURE_NAMES: Readonly<Record<Feature, string>> = {
   ports: "Waveguide ports are",

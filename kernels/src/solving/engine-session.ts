@@ -10,8 +10,10 @@ import { rowCoefficients } from "../stepping/index.js";
 import { packBlocks, unpackBlocks } from "./blocks.js";
 import { changedBox, editProblems } from "./editing.js";
 import { nonFiniteFailure } from "./failure.js";
-import type { DrivePlan, ProbePlan } from "./plan.js";
+import type { DrivePlan } from "./plan.js";
 import { coefficientsOf, drivesOf } from "./plan.js";
+import type { ProbePlan } from "./probe-plan.js";
+import { loadSums, samplesOf, saveSums } from "./probe-plan.js";
 import { buildResult } from "./result.js";
 import { quantitiesOf, sampleQuantity } from "./sampling.js";
 import type {
@@ -139,9 +141,9 @@ export class EngineSession implements SolveSession {
         if (!(Math.abs(value) <= largest[index])) largest[index] = Math.abs(value);
       });
     }
-    const records = new Float64Array(steps * this.parts.probes.probes.length);
+    const records = new Float64Array(steps * this.parts.probes.records);
     this.engine.advance(steps, signals, records);
-    this.traces.append(records, steps);
+    this.traces.append(samplesOf(this.parts.probes, records, steps), steps);
     const atEnd = this.engine.step >= this.grid.maxSteps;
     if (this.engine.step % CHECK_INTERVAL === 0 || atEnd) this.check(largest);
     if (atEnd && !this.failure) this.stopReason ??= "time";
@@ -255,9 +257,11 @@ export class EngineSession implements SolveSession {
       scene: this.editLog.length > 0 ? this.scene : null,
     };
     const traces = this.traces.save();
+    const sums = saveSums(this.parts.probes.probes);
     const bytes = packBlocks(header, [
       this.engine.save(),
       new Uint8Array(traces.buffer, traces.byteOffset, traces.byteLength),
+      new Uint8Array(sums.buffer, sums.byteOffset, sums.byteLength),
     ]);
     return { version: 1, step: this.engine.step, bytes };
   }
@@ -267,13 +271,14 @@ export class EngineSession implements SolveSession {
     const words = header as SnapshotHeader;
     if (words.openedSha256 !== this.openedSha256)
       throw new RangeError("The snapshot belongs to another scene.");
-    if (words.engineText !== this.engineText() || blocks.length !== 2) {
+    if (words.engineText !== this.engineText() || blocks.length !== 3) {
       throw new RangeError("The snapshot belongs to another grid, engine or precision.");
     }
     const scene = words.scene ?? this.opened;
     this.apply(scene, resolveScene(scene));
     this.engine.load(blocks[0]);
     this.traces.load(new Float64Array(blocks[1].slice().buffer), words.samples);
+    loadSums(this.parts.probes.probes, new Float64Array(blocks[2].slice().buffer));
     this.energy = words.energy;
     this.energyMax = words.energyMax;
     this.stopReason = words.stopReason;

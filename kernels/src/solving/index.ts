@@ -3,7 +3,8 @@ import type { Scene } from "../scene/index.js";
 import { readScene, resolveScene, SceneError } from "../scene/index.js";
 import { EngineSession } from "./engine-session.js";
 import { chooseEngine } from "./engines.js";
-import { coefficientsOf, drivesOf, latticeOf, layersOf, probesOf } from "./plan.js";
+import { coefficientsOf, drivesOf, latticeOf, layersOf } from "./plan.js";
+import { probesOf } from "./probe-plan.js";
 import type { SessionOptions, SolveSession } from "./session.js";
 
 export * from "./session.js";
@@ -31,7 +32,9 @@ export async function openSession(scene: Scene, options: SessionOptions = {}): P
   const resolved = resolveScene(read.scene);
   const { grid, lattice } = latticeOf(resolved);
   const drives = drivesOf(resolved, lattice);
-  const probes = probesOf(resolved, lattice);
+  const { fromGHz, toGHz } = resolved.band;
+  const frequenciesGHz = options.frequenciesGHz ?? evenly(fromGHz, toGHz, DEFAULT_FREQUENCIES);
+  const probes = probesOf(resolved, lattice, frequenciesGHz);
   const coefficients = coefficientsOf(resolved, lattice);
   const engine = makeEngine({
     lattice,
@@ -40,9 +43,8 @@ export async function openSession(scene: Scene, options: SessionOptions = {}): P
     drives: drives.points,
     signals: drives.sources.length,
     taps: probes.taps,
-    records: probes.probes.length,
+    records: probes.records,
   });
-  const { fromGHz, toGHz } = resolved.band;
   return new EngineSession({
     scene: read.scene,
     resolved,
@@ -52,6 +54,6 @@ export async function openSession(scene: Scene, options: SessionOptions = {}): P
     coefficients,
     drives,
     probes,
-    frequenciesGHz: options.frequenciesGHz ?? evenly(fromGHz, toGHz, DEFAULT_FREQUENCIES),
+    frequenciesGHz,
   });
 }

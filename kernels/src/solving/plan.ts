@@ -1,4 +1,4 @@
-/** A scene compiled for an engine: lattice, coefficients, drives, probes. */
+/** A scene compiled for an engine: lattice, coefficients, drives. */
 import { absorbingLayers } from "../boundaries/index.js";
 import type { AbsorbingLayers } from "../boundaries/index.js";
 import type { CompiledWaveform } from "../drives/index.js";
@@ -8,11 +8,9 @@ import type { Lattice, Side } from "../lattice/index.js";
 import { buildLattice } from "../lattice/index.js";
 import type { LatticeBox, SectionMedia, SolverMedium } from "../media/index.js";
 import { propertiesOf, SectionCoefficients } from "../media/index.js";
-import type { Component } from "../observers/index.js";
-import { engineFieldOf, firstSampleStep, pointProbeTaps, unitOf } from "../observers/index.js";
 import type { Grid, Medium, ResolvedScene } from "../scene/index.js";
 import { canonicalJson, gridOf, isPerfect } from "../scene/index.js";
-import type { DrivePoint, Tap } from "../stepping/index.js";
+import type { DrivePoint } from "../stepping/index.js";
 
 export interface PlannedSource {
   id: string;
@@ -22,24 +20,11 @@ export interface PlannedSource {
   waveformText: string;
 }
 
-export interface PlannedProbe {
-  id: string;
-  component: Component;
-  unit: string;
-  /** Time of sample 0 over Δt. */
-  firstSampleStep: number;
-}
-
 export interface DrivePlan {
   sources: readonly PlannedSource[];
   points: readonly DrivePoint[];
   /** Seconds after which no source drives any more; infinite with a tone. */
   endSeconds: number;
-}
-
-export interface ProbePlan {
-  probes: readonly PlannedProbe[];
-  taps: readonly Tap[];
 }
 
 const solverMedium = (medium: Medium): SolverMedium =>
@@ -117,25 +102,4 @@ export function drivesOf(scene: ResolvedScene, lattice: Lattice): DrivePlan {
   }
   const endSeconds = sources.reduce((latest, source) => Math.max(latest, source.waveform.endSeconds), 0);
   return { sources, points, endSeconds };
-}
-
-export function probesOf(scene: ResolvedScene, lattice: Lattice): ProbePlan {
-  const probes: PlannedProbe[] = [];
-  const taps: Tap[] = [];
-  for (const probe of scene.probes) {
-    if (probe.kind !== "point") throw new RangeError(`The probe "${probe.id}" is of a kind no engine reads.`);
-    const place = engineFieldOf(lattice, probe.field);
-    if (!place)
-      throw new RangeError(
-        `The probe "${probe.id}" reads ${probe.field}, which ${scene.polarization} lacks.`,
-      );
-    taps.push(...pointProbeTaps(lattice, probe.field, probe.x, probe.y, probes.length));
-    probes.push({
-      id: probe.id,
-      component: probe.field,
-      unit: unitOf(probe.field),
-      firstSampleStep: firstSampleStep(place.field),
-    });
-  }
-  return { probes, taps };
 }

@@ -34,7 +34,10 @@ export function resonancesInDocument(input: SpectrumInput, scene: ResolvedScene)
   const { sources, endSeconds } = input.drives;
   const first = sources.at(0);
   if (!first || !Number.isFinite(endSeconds) || input.steps === 0) return undefined;
-  const traces = input.probes.map(({ id }, index) => ({ id, signal: traceSignal(input, index) }));
+  // A power rings at sums and differences of the fields' frequencies.
+  const traces = input.probes.flatMap(({ id, power }, index) =>
+    power ? [] : [{ id, signal: traceSignal(input, index) }],
+  );
   const band = { from: scene.band.fromGHz * 1e9, to: scene.band.toGHz * 1e9 };
   if (!ringDownLasts(traces, band, endSeconds)) return undefined;
   const alike = sources.every(({ waveformText }) => waveformText === first.waveformText);

@@ -1,8 +1,17 @@
 /** The result document of a session. */
 import { judgeLevels } from "../analysis/index.js";
-import type { LimitResult, ProbeResult, ResolvedScene, Scene, SolveResult } from "../scene/index.js";
+import type {
+  ComplexSpectrum,
+  LimitResult,
+  PowerSpectrum,
+  ProbeResult,
+  ResolvedScene,
+  Scene,
+  SolveResult,
+} from "../scene/index.js";
 import type { Engine } from "../stepping/index.js";
-import type { DrivePlan, PlannedProbe } from "./plan.js";
+import type { DrivePlan } from "./plan.js";
+import type { PlannedProbe } from "./probe-plan.js";
 import { qualityOf } from "./quality.js";
 import type { EditLogEntry, GridSummary, StopReason } from "./session.js";
 import { judgeQ, resonancesInDocument } from "./resonances.js";
@@ -29,8 +38,17 @@ export interface ResultInput {
   cellStepsPerSecond: number;
 }
 
+/** 20·lg of fields and voltages, 10·lg of the magnitude of powers; null where undefined. */
+const levelsOf = (spectrum: ComplexSpectrum | PowerSpectrum): (number | null)[] =>
+  "re" in spectrum
+    ? spectrum.re.map((re, index) => {
+        const im = spectrum.im[index];
+        return re === null || im === null ? null : 20 * Math.log10(Math.hypot(re, im));
+      })
+    : spectrum.value.map((value) => (value === null ? null : 10 * Math.log10(Math.abs(value))));
+
 /**
- * Limits on the levels of point probes: 20·lg of V/m or A/m per unit source. None is judged on a trace that had not rung down, nor on a
+ * Limits on the levels of probes: 20·lg of V/m, A/m or V, 10·lg of W/m per unit source. None is judged on a trace that had not rung down, nor on a
  * run that was edited. Limits on Q are judged beside them; other kinds of limit are not computed yet, and the warnings of the scene say so.
  */
 function judgeLimits(
@@ -42,13 +60,10 @@ function judgeLimits(
     if (!("points" in limit) || !("probe" in limit.of)) return [];
     const id = limit.of.probe;
     const spectrum = results.find((probe) => probe.id === id)?.spectrum ?? null;
-    if (!spectrum || !("re" in spectrum) || unfinished.has(id)) {
+    if (!spectrum || unfinished.has(id)) {
       return [{ id: limit.id, holds: null, margin: null, atGHz: null, uncertainty: null }];
     }
-    const levels = spectrum.re.map((re, index) => {
-      const im = spectrum.im[index];
-      return re === null || im === null ? null : 20 * Math.log10(Math.hypot(re, im));
-    });
+    const levels = levelsOf(spectrum);
     return [{ id: limit.id, ...judgeLevels(limit, spectrum.GHz, levels), uncertainty: null }];
   });
 }
@@ -72,8 +87,8 @@ export function buildResult(input: ResultInput): SolveResult {
     (probe, index): ProbeResult => ({
       id: probe.id,
       drive: null,
-      kind: "point",
-      quantity: probe.component,
+      kind: probe.kind,
+      quantity: probe.quantity,
       unit: probe.unit,
       trace: {
         startNs: probe.firstSampleStep * dt * 1e9,

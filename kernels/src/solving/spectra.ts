@@ -9,8 +9,9 @@ import {
   quotient,
   tonePhasor,
 } from "../analysis/index.js";
-import type { ComplexSpectrum } from "../scene/index.js";
-import type { DrivePlan, PlannedProbe } from "./plan.js";
+import type { ComplexSpectrum, PowerSpectrum } from "../scene/index.js";
+import type { DrivePlan } from "./plan.js";
+import type { PlannedProbe } from "./probe-plan.js";
 
 /** A trace that has not fallen by this much at the stop is cut off: its poles complete it, or its spectrum stands with a warning. */
 const RUNG_DOWN_DB = 40;
@@ -39,7 +40,7 @@ export interface SpectrumInput {
 
 export interface Spectra {
   /** By probe. */
-  spectra: (ComplexSpectrum | null)[];
+  spectra: (ComplexSpectrum | PowerSpectrum | null)[];
   /** Probes whose trace was cut off before it had rung down, or was not steady. */
   unfinished: ReadonlySet<string>;
   warnings: string[];
@@ -78,17 +79,27 @@ function pulseSpectra(input: SpectrumInput): Spectra {
       "The run was stopped while its sources were still driving; its spectra are of what was driven until then.",
     );
   const signals = input.probes.map((_, index) => traceSignal(input, index));
-  const fallen = signals.map(({ values }) => fallenDb(values));
+  // A power falls twice as fast as the fields that make it.
+  const fallen = signals.map(({ values }, index) => fallenDb(values) / (input.probes[index].power ? 2 : 1));
   const cut = fallen.filter((level) => level < RUNG_DOWN_DB).length;
   const pieces = Math.max(LEAST_PIECES, Math.floor(PIECES / Math.max(1, cut)));
   const excited: WideBand = excitedBand(waveform, EXCITED_TO * input.band.toGHz * 1e9);
-  const spectra = input.probes.map((probe, index): ComplexSpectrum => {
+  const powerSpectrum = (powers: readonly number[]): PowerSpectrum => ({
+    GHz: [...input.frequenciesGHz],
+    value: powers.map((power, n) => {
+      const value = power / (divisor.re[n] ** 2 + divisor.im[n] ** 2);
+      return Number.isFinite(value) ? value : null;
+    }),
+  });
+  const spectra = input.probes.map((probe, index): ComplexSpectrum | PowerSpectrum => {
+    if (probe.power && over && fallen[index] >= RUNG_DOWN_DB) return powerSpectrum(probe.power.powers());
     const sum = fourierSum(signals[index], frequencies);
     const GHz = [...input.frequenciesGHz];
     if (over && fallen[index] >= RUNG_DOWN_DB) return { GHz, ...quotient(sum, divisor) };
-    const completion = over
-      ? completeRingDown(signals[index], excited, input.drives.endSeconds, frequencies, pieces)
-      : null;
+    const completion =
+      over && !probe.power
+        ? completeRingDown(signals[index], excited, input.drives.endSeconds, frequencies, pieces)
+        : null;
     if (completion && completion.left <= TAIL_LEFT) {
       sum.re.forEach((_, n) => {
         sum.re[n] += completion.tail.re[n];
@@ -103,7 +114,7 @@ function pulseSpectra(input: SpectrumInput): Spectra {
     warnings.push(
       `The trace of "${probe.id}" had fallen by ${fallen[index].toFixed(0)} dB only when the run stopped (${RUNG_DOWN_DB} dB are needed)${why}: sharp peaks of its spectrum read too low, and no limit is judged on it. Run longer.`,
     );
-    return { GHz, ...quotient(sum, divisor) };
+    return probe.power ? powerSpectrum(probe.power.powers()) : { GHz, ...quotient(sum, divisor) };
   });
   return { spectra, unfinished, warnings };
 }
@@ -130,7 +141,10 @@ function toneSpectra(input: SpectrumInput, hz: number): Spectra {
   );
   const warnings: string[] = [];
   const unfinished = new Set<string>();
-  const spectra = probes.map((probe, index): ComplexSpectrum => {
+  if (probes.some(({ power }) => power))
+    warnings.push("With a tone, probes of power have a trace but no average; drive with a pulse for it.");
+  const spectra = probes.map((probe, index): ComplexSpectrum | null => {
+    if (probe.power) return null;
     const signal = traceSignal(input, index);
     const last = tonePhasor(signal, hz, steps - window, steps);
     const before = tonePhasor(signal, hz, steps - 2 * window, steps - window);
