@@ -38,7 +38,7 @@ const rate = Number(values.rate);
 const sleep = (ms: number): Promise<void> => new Promise((resolve) => setTimeout(resolve, ms));
 
 /** Cells of 1 mm; 20 of them in a wavelength. */
-const box = (n: number): SceneInput => ({
+const box = (n: number, liningShare = 0.2): SceneInput => ({
   format: "heddle-scene",
   version: 1,
   name: "Bench box",
@@ -54,7 +54,7 @@ const box = (n: number): SceneInput => ({
       kind: "rectangle",
       x: 0.1 * n,
       y: 0.1 * n,
-      width: 0.2 * n,
+      width: liningShare * n,
       height: 0.8 * n,
       medium: "lining",
     },
@@ -95,6 +95,22 @@ try {
     }),
   );
 
+  /** From sending an edit to the first frame that shows it, in rising order. */
+  const editLatenciesMs = async (times: number): Promise<number[]> => {
+    const taken: number[] = [];
+    const [watching] = open;
+    for (let n = 1; watching !== undefined && n <= times; n++) {
+      const sentAt = performance.now();
+      const answer = await owner.send<{ step: number }>("POST", `/api/runs/${run.id}/edits`, {
+        document: box(cells, 0.2 + n * 0.02),
+      });
+      if (answer.status !== 200) throw new Error(`The edit was answered with ${answer.status}.`);
+      await until(() => (watching.frames.at(-1)?.step ?? 0) > answer.body.step);
+      taken.push(performance.now() - sentAt);
+    }
+    return taken.sort((a, b) => a - b);
+  };
+
   await sleep(2_000);
   counts.fill(0);
   bytes = 0;
@@ -107,6 +123,7 @@ try {
   const steps = (await get()).step - stepBefore;
   const mean = counts.reduce((sum, count) => sum + count, 0) / Math.max(1, counts.length) / tookS;
   const worst = counts.length === 0 ? 0 : Math.min(...counts) / tookS;
+  const answered = await editLatenciesMs(9);
   const { p50, p99, max } = after.eventLoopDelayMs;
   const lines = [
     `lattice              ${cells} × ${cells}, ${steps} steps in ${tookS.toFixed(1)} s`,
@@ -116,6 +133,7 @@ try {
     `stream               ${(bytes / tookS / 1e6).toFixed(1)} MB/s`,
     `event loop delay     p50 ${p50.toFixed(1)} ms, p99 ${p99.toFixed(1)} ms, max ${max.toFixed(1)} ms`,
     `server processor     ${(((after.cpuMs - before.cpuMs) / (tookS * 1000)) * 100).toFixed(0)} % of one core, solver included`,
+    `live edit to frame   ${answered.at(4)?.toFixed(0) ?? "–"} ms median, ${answered.at(-1)?.toFixed(0) ?? "–"} ms worst of ${answered.length}`,
     `server memory        ${(after.residentBytes / 1e6).toFixed(0)} MB resident`,
   ];
   process.stdout.write(`${lines.join("\n")}\n`);
