@@ -20,9 +20,15 @@ export interface RowCoefficients {
 export type CoefficientSource = (row: number, out: RowCoefficients) => void;
 
 /**
- * A share of a line current at one point of F: F −= bF·weight·signal, the signal in A (TMz) or V (TEz) at (n+½)Δt.
+ * A share of a source at one field point: v −= b·weight·signal with the point's own b.
+ *
+ * On F the signal is a line current in A (TMz) or V (TEz) at (n+½)Δt, taken off at the end of the step. On gx or gy it is what the
+ * difference of F along the field lacks, at nΔt, and F of the same step already feels it: so an incident field is put on
+ * one side of a line. Points of gx and gy must lie outside the absorbing layers.
  */
 export interface DrivePoint {
+  /** Default: F. */
+  field?: EngineField;
   row: number;
   column: number;
   weight: number;

@@ -176,10 +176,19 @@ export class ReferenceEngine implements Engine {
       const base = j * stride;
       stepG(f, gx, gy, aGx, bGx, aGy, bGy, base, columns, stride);
       memory.correctG(j, this.fields, bGx, bGy);
+      const drives = this.drivesByRow[j];
+      for (const drive of drives) {
+        if (drive.field === undefined || drive.field === "f") continue;
+        const b = drive.field === "gx" ? bGx : bGy;
+        const field = this.fields[drive.field];
+        const k = base + drive.column;
+        field[k] = field[k] - b[k] * drive.weight * signals[signalBase + drive.signal];
+      }
       if (j > 0) {
         stepF(f, gx, gy, aF, bF, base, columns, stride);
         memory.correctF(j, this.fields, bF);
-        for (const drive of this.drivesByRow[j]) {
+        for (const drive of drives) {
+          if (drive.field === "gx" || drive.field === "gy") continue;
           const k = base + drive.column;
           const signal = signals[signalBase + drive.signal];
           f[k] = f[k] - bF[k] * drive.weight * signal;

@@ -1,7 +1,7 @@
 import { afterEach, describe, expect, it } from "vitest";
 import { buildLattice, ETA0 } from "../../lattice/index.js";
 import { storedEnergy } from "../../observers/index.js";
-import type { CoefficientSource, Engine } from "../index.js";
+import type { CoefficientSource, DrivePoint, Engine } from "../index.js";
 import { loadKernel, ReferenceEngine, rowCoefficients, WasmEngine } from "../index.js";
 import type { Case } from "../testing.js";
 import { BOX, edgesOf, empty, OPEN, run, setupOf, STEPS } from "../testing.js";
@@ -169,6 +169,29 @@ describe("the wasm engine against the reference", () => {
       if (j === 0) for (const values of [b.aF, b.bF]) values.fill(0);
       for (const values of [b.aF, b.bF]) values[0] = 0;
       expect(a).toEqual(b);
+    }
+  });
+
+  it.each(["TMz", "TEz"] as const)("on drives of gx and gy in and between media (%s)", (polarization) => {
+    const setup = setupOf({ polarization, edges: OPEN, nx: 50, ny: 41 });
+    const { rows, columns, dx, dy } = setup.lattice;
+    const strength = polarization === "TMz" ? 1 : 1e-3;
+    const drives: DrivePoint[] = [];
+    for (let n = 14; n < 46; n += 1) {
+      drives.push({ field: "gy", row: n, column: 22, weight: strength * dy, signal: 0 });
+      drives.push({ field: "gx", row: 25, column: n, weight: -strength * dx, signal: 1 });
+      drives.push({ row: n, column: 23, weight: 0.01, signal: 1 });
+    }
+    const fast = keep(new WasmEngine(module, { ...setup, drives }));
+    expectSame(fast, new ReferenceEngine({ ...setup, drives }, "f64"));
+    for (const [row, column] of [
+      [3, 30],
+      [rows - 2, 30],
+      [30, 12],
+      [30, columns - 3],
+    ] as const) {
+      const inLayer: DrivePoint = { field: "gy", row, column, weight: 1, signal: 0 };
+      expect(() => fast.setDrives([inLayer], 2)).toThrow(/absorbing layer/);
     }
   });
 

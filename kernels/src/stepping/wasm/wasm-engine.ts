@@ -3,6 +3,7 @@
  * and, where helpers can be had, by several threads. In float32; the bits do not depend on the number of threads nor on how
  * steps are dealt out.
  */
+import type { AbsorbingLayers } from "../../boundaries/index.js";
 import type { FieldArray, Lattice } from "../../lattice/index.js";
 import type {
   CoefficientSource,
@@ -17,6 +18,7 @@ import type {
 import { rowCoefficients } from "../engine.js";
 import { packArrays, unpackArrays } from "../packing.js";
 import { Arena } from "./arena.js";
+import { checkOutsideLayers, driveShares } from "./drive-shares.js";
 import * as at from "./layout.js";
 import { readRuns, RunCutter } from "./runs.js";
 import { isLayerRow, layStrips, stripBytes } from "./strips.js";
@@ -39,8 +41,10 @@ export interface WasmOptions {
 const BLOCK_CACHE_BYTES = 1024 * 1024;
 const MOST_BLOCK_STEPS = 32;
 const MOST_THREADS = 64;
-/** Steps of one job; the kernel's signals and records have room for them. */
-const JOB_STEPS = 256;
+/** Most steps of one job, fewer where their records would take more room than this. */
+const MOST_JOB_STEPS = 256;
+const LEAST_JOB_STEPS = 32;
+const RECORDS_BYTES = 8 * 1024 * 1024;
 /** Looks at the memory before a waiting thread sleeps: some tens of microseconds. */
 const SPINS = 20_000;
 /** Epochs mark jobs in the upper half of a positive 32-bit number. */
@@ -68,6 +72,8 @@ export class WasmEngine implements Engine {
   private readonly fieldAddresses: Readonly<Record<EngineField, number>>;
   private readonly blockSteps: number;
   private readonly records: number;
+  private readonly jobSteps: number;
+  private readonly layers: AbsorbingLayers;
   private readonly recordsAt: number;
   private drives: readonly DrivePoint[] = [];
   private drivesBlock: RowBlock | null = null;
@@ -83,13 +89,16 @@ export class WasmEngine implements Engine {
     this.lattice = lattice;
     this.threads = options.spawn ? Math.min(MOST_THREADS, Math.max(1, Math.floor(options.threads ?? 1))) : 1;
     this.records = setup.records;
+    this.layers = layers;
+    const fitting = Math.floor(RECORDS_BYTES / (8 * Math.max(1, setup.records)));
+    this.jobSteps = Math.max(LEAST_JOB_STEPS, Math.min(MOST_JOB_STEPS, fitting));
     const rowBytes = stride * 4;
     this.blockSteps =
       options.blockSteps ??
       Math.max(2, Math.min(MOST_BLOCK_STEPS, Math.floor(BLOCK_CACHE_BYTES / (3 * rowBytes))));
 
     const tableBytes = (rows + 2) * at.ENTRY_BYTES;
-    const recordBytes = JOB_STEPS * setup.records * 8;
+    const recordBytes = this.jobSteps * setup.records * 8;
     const known =
       3 * (size * 4 + 2 * rowBytes + 4096) +
       stripBytes(lattice, layers) +
@@ -206,10 +215,10 @@ export class WasmEngine implements Engine {
 
   setDrives(drives: readonly DrivePoint[], signals: number): void {
     this.checkRows(drives);
+    checkOutsideLayers(drives, this.layers);
     this.drives = [...drives].sort((a, b) => a.row - b.row);
     this.signals = signals;
-    this.drivesBlock = this.fitting(this.drivesBlock, drives.length * at.DRIVE_BYTES);
-    this.signalsBlock = this.fitting(this.signalsBlock, JOB_STEPS * signals * 8);
+    this.signalsBlock = this.fitting(this.signalsBlock, this.jobSteps * signals * 8);
     const { i32 } = this.arena;
     i32[at.SIGNALS / 4] = this.signalsBlock.address;
     i32[at.SIGNAL_BYTES / 4] = signals * 8;
@@ -227,21 +236,19 @@ export class WasmEngine implements Engine {
     }
   }
 
-  /** Drives with their b·weight, which the coefficients of their rows decide. */
+  /** Drives as what they take off of single numbers, which the coefficients of their rows decide. */
   private writeDrives(): void {
+    const shares = driveShares(this, this.drives);
+    this.drivesBlock = this.fitting(this.drivesBlock, shares.length * at.DRIVE_BYTES);
+    const { address } = this.drivesBlock;
     const { i32, f64 } = this.arena;
-    const address = this.drivesBlock?.address ?? 0;
-    const row = rowCoefficients(this.lattice.stride);
-    let read = -1;
-    this.drives.forEach((drive, index) => {
-      if (drive.row !== read) this.readCoefficients(drive.row, row);
-      read = drive.row;
+    shares.forEach(({ field, row, column, signal, factor }, index) => {
       const entry = address + index * at.DRIVE_BYTES;
-      i32[entry / 4] = this.addressOf("f", drive.row, drive.column);
-      i32[entry / 4 + 1] = drive.signal * 8;
-      f64[entry / 8 + 1] = row.bF[drive.column] * drive.weight;
+      i32[entry / 4] = this.addressOf(field, row, column);
+      i32[entry / 4 + 1] = signal * 8;
+      f64[entry / 8 + 1] = factor;
     });
-    this.writeRanges(this.drives, address, at.DRIVE_BYTES, at.ENTRY_DRIVES, at.ENTRY_DRIVES_END);
+    this.writeRanges(shares, address, at.DRIVE_BYTES, at.ENTRY_DRIVES, at.ENTRY_DRIVES_END);
   }
 
   private writeTaps(taps: readonly Tap[]): void {
@@ -285,8 +292,8 @@ export class WasmEngine implements Engine {
         `advance(${steps}) needs ${steps * this.signals} signals and room for ${steps * this.records} records.`,
       );
     }
-    for (let done = 0; done < steps; done += JOB_STEPS) {
-      this.runSteps(done, Math.min(JOB_STEPS, steps - done), signals, records);
+    for (let done = 0; done < steps; done += this.jobSteps) {
+      this.runSteps(done, Math.min(this.jobSteps, steps - done), signals, records);
     }
   }
 
