@@ -130,6 +130,16 @@ describe("poles of a ring-down", () => {
     });
   });
 
+  it("are no more than there are where a short look would take several for one", () => {
+    const many = [1.31, 1.58, 1.676, 2.119, 2.134, 2.303, 2.46, 2.498, 2.608, 2.702].map((GHz, index) => ({
+      GHz,
+      q: 1e9,
+      amplitude: 1 / (1 + index),
+    }));
+    const found = find(trace(many, 20_000));
+    expect(found.map(({ GHz }) => GHz.toFixed(6))).toEqual(many.map(({ GHz }) => GHz.toFixed(6)));
+  });
+
   it("are none in silence, in noise alone, or in a mode outside the band", () => {
     expect(find(new Float64Array(20_000))).toEqual([]);
     expect(find(trace([], 20_000, 1))).toEqual([]);

@@ -17,6 +17,11 @@ const SHORTER = 1 / 6;
 const LEAST_PERIODS = 4;
 /** … and, but for the longest, to this product of time and bandwidth, below which a window tells no two frequencies apart. */
 const LEAST_RESOLUTION = 3;
+/**
+ * A shorter length adds only what dies in it by this many nepers: the rest is told by a longer one, and a shorter one may take two of it
+ * for one.
+ */
+const DYING = 3;
 /** Below this part of the ring-down's largest value a trace is rounding of the single-precision fields. */
 const FLOOR = 1e-5;
 
@@ -81,7 +86,8 @@ export function ringDownPoles(values: Float64Array, dt: number, band: WideBand, 
     length * dt * band.from >= LEAST_PERIODS &&
     (length === longest || length * dt * (band.to - band.from) >= LEAST_RESOLUTION);
   for (let length = longest; tells(length); length = Math.floor(length * SHORTER)) {
-    found.push(...polesOver(values, dt, band, length));
+    const dying = length === longest ? Number.NEGATIVE_INFINITY : DYING / (length * dt);
+    found.push(...polesOver(values, dt, band, length).filter(({ alpha }) => alpha >= dying));
   }
   return distinct(found);
 }
