@@ -61,6 +61,6 @@ export const ensureAssembled = () => {
 };
 
 /** For the test runner, which wants it before it reads a source. */
-export default ensureAssembled;
+export const setup = () => ensureAssembled();
 
 if (process.argv[1] === fileURLToPath(import.meta.url)) ensureAssembled();

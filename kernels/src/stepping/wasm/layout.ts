@@ -8,9 +8,11 @@ export const LANES = 4;
 export const VECTOR_BYTES = 16;
 export const CACHE_LINE_BYTES = 64;
 
-/** The control block; what threads write often lies in cache lines of its own. */
-export const CONTROL = 1024;
-/** Raised by one for each job; helpers sleep on it. */
+/**
+ * The control block, from here to CONTROL_END: what threads write often lies in cache lines of its own.
+ *
+ * COMMAND is raised by one for each job; helpers sleep on it.
+ */
 export const COMMAND = 1024;
 /** 1: helpers return. */
 export const QUIT = 1028;
@@ -49,7 +51,7 @@ export const ENERGY_LAST_COLUMN = 1344;
 export const ENERGY_SUMS = 1348;
 /** Δt/4 in seconds, a float64. */
 export const QUARTER_STEP = 1352;
-/** Bytes that a sleeping thread spins before it sleeps, in looks at the memory. */
+/** How often a waiting thread looks before it sleeps. */
 export const SPINS = 1360;
 
 /** Progress of each block of steps: rows done by its last step, and whether somebody sleeps on it. */
