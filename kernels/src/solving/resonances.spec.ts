@@ -60,6 +60,31 @@ describe("resonances of a run", () => {
     });
   });
 
+  it("are all the modes of a lossless box over a wide band, each once, and no other", async () => {
+    const { resonances = [] } = await solve({
+      section: { widthMm: 300, heightMm: 200 },
+      band: { fromGHz: 0.5, toGHz: 3 },
+      mesh: { cellMm: 2 },
+      background: "air",
+      sources: [{ kind: "line", id: "wire", x: 110, y: 70 }],
+      probes: [
+        { kind: "point", id: "middle", x: 150, y: 100, field: "Ez" },
+        { kind: "point", id: "corner", x: 250, y: 160, field: "Ez" },
+        { kind: "point", id: "quarter", x: 80, y: 60, field: "Ez" },
+      ],
+      stop: { maxTimeNs: 100, decayDb: 60 },
+    });
+    const modes = [1, 2, 3, 4, 5, 6]
+      .flatMap((m) => [1, 2, 3, 4].map((n) => (C0 / 2e9) * Math.hypot(m / 0.3, n / 0.2)))
+      .filter((f) => f < 3)
+      .sort((a, b) => a - b);
+    expect(modes).toHaveLength(13);
+    expect(resonances).toHaveLength(13);
+    resonances.forEach(({ GHz }, index) => {
+      expect(Math.abs(GHz / modes[index] - 1)).toBeLessThan(5e-3);
+    });
+  });
+
   it("are not looked for with a tone, and not invented in open space", async () => {
     const tone = await solve({
       sources: [{ kind: "line", id: "wire", x: 17, y: 13, waveform: { kind: "tone", GHz: 5 } }],
