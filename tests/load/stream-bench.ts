@@ -98,7 +98,7 @@ try {
   /** From sending an edit to the first frame that shows it, in rising order. */
   const editLatenciesMs = async (times: number): Promise<number[]> => {
     const taken: number[] = [];
-    const [watching] = open;
+    const watching = open.at(0);
     for (let n = 1; watching !== undefined && n <= times; n++) {
       const sentAt = performance.now();
       const answer = await owner.send<{ step: number }>("POST", `/api/runs/${run.id}/edits`, {
