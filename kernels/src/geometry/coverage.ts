@@ -27,6 +27,14 @@ export interface MediumShare {
   share: number;
 }
 
+/** A part of a row between two heights in which edges are straight and do not cross. Do not keep. */
+export interface Slab {
+  low: number;
+  high: number;
+  /** Where the visible medium changes, from left to right: x at `low` and at `high`, and the medium to the right. */
+  changes: readonly { a: number; b: number; medium: number }[];
+}
+
 const MAX_SPLITS = 4096;
 /** Slabs thinner and shares smaller than this are rounding. */
 const NOTHING = 1e-12;
@@ -52,8 +60,16 @@ export class CoverageSweep {
   private splits = 0;
   private filled = false;
 
-  /** @param background index of the medium where nothing is painted */
-  constructor(areas: readonly PaintedArea[], background: number, raster: Raster) {
+  /**
+   * @param background index of the medium where nothing is painted
+   * @param onSlab called for every slab of a row from below upward, before `row` returns; not for rows without edges
+   */
+  constructor(
+    areas: readonly PaintedArea[],
+    background: number,
+    raster: Raster,
+    private readonly onSlab?: (slab: Slab) => void,
+  ) {
     this.columns = raster.columns;
     this.rows = raster.rows;
     this.background = background;
@@ -167,7 +183,7 @@ export class CoverageSweep {
         return;
       }
     }
-    this.walk(edges, high - low);
+    this.walk(edges, low, high);
   }
 
   /** Where in the slab (0…1) two neighbours cross; null where none do. */
@@ -183,8 +199,10 @@ export class CoverageSweep {
     return null;
   }
 
-  private walk(edges: readonly { edge: number; a: number; b: number }[], height: number): void {
+  private walk(edges: readonly { edge: number; a: number; b: number }[], low: number, high: number): void {
     const { stack } = this;
+    const height = high - low;
+    const changes: { a: number; b: number; medium: number }[] = [];
     stack.reset();
     let current = this.background;
     let filledTo = 0;
@@ -193,6 +211,7 @@ export class CoverageSweep {
       stack.cross(edge);
       const next = stack.medium;
       if (next === current) continue;
+      if (this.onSlab) changes.push({ a, b, medium: next });
       this.addRightOf(this.sumOf(current), a, b, -height);
       this.addRightOf(this.sumOf(next), a, b, height);
       if (!this.filled) {
@@ -204,6 +223,7 @@ export class CoverageSweep {
     }
     if (!this.filled) this.medium.fill(current, filledTo, this.columns);
     this.filled = true;
+    this.onSlab?.({ low, high, changes });
   }
 
   private sumOf(medium: number): Float64Array {

@@ -1,5 +1,7 @@
 /** Shapes and what they cover: areas of cells, lengths along lines. Pure; also drives the editor's preview. */
 export { CoverageSweep } from "./coverage.js";
+export { areaOf, commonLength, continued, OpenCellSweep, SLIVER, spansOf } from "./open-cells.js";
+export type { CutCell, OpenCell } from "./open-cells.js";
 export type { MediumShare, PaintedRow } from "./coverage.js";
 export { LineCutter } from "./cuts.js";
 export type { Interval } from "./cuts.js";

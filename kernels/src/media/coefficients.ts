@@ -15,15 +15,19 @@ import type { PairKind, Quarter } from "./averaging.js";
 import { arithmeticMean, inPlaneMean } from "./averaging.js";
 import type { ConductorInput, LatticeBox } from "./conductors.js";
 import { ConductorMap, FIXED_F, FIXED_GX, FIXED_GY } from "./conductors.js";
+import { conformalCuts } from "./conformal.js";
+import type { CutCells } from "./cut-cells.js";
 import type { Pair, Properties, SolverMedium } from "./properties.js";
 import type { QuarterRow } from "./quarters.js";
 import { QuarterRaster } from "./quarters.js";
-import { updateOf } from "./update.js";
+import { scaledStorage, updateOf } from "./update.js";
 
 export interface SectionMedia extends Omit<ConductorInput, "kinds"> {
   media: readonly SolverMedium[];
   /** rad/s at which means along a field are exact: the band's middle. */
   omega: number;
+  /** How electric conductors are cut; default "staircase". Magnetic ones are always staircases. */
+  metal?: "conformal" | "staircase";
 }
 
 interface MediumUpdates {
@@ -38,6 +42,7 @@ interface MediumUpdates {
 export class SectionCoefficients {
   private readonly quarters: QuarterRaster;
   private readonly conductors: ConductorMap;
+  private readonly cuts: CutCells | null;
   private readonly updates: readonly MediumUpdates[];
   private readonly kindF: PairKind;
   private readonly kindG: PairKind;
@@ -62,12 +67,16 @@ export class SectionCoefficients {
     this.geometryGx = dx / dy;
     this.geometryGy = dy / dx;
     this.quarters = new QuarterRaster(areas, background, media, { widthMm, heightMm, nx, ny });
-    const kinds = media.map(({ kind }) => (kind === "fill" ? "none" : kind === this.kindF ? "f" : "g"));
+    const conformal = section.metal === "conformal";
+    const kinds = media.map(({ kind }) =>
+      kind === "fill" || (conformal && kind === "electric") ? "none" : kind === this.kindF ? "f" : "g",
+    );
     this.conductors = new ConductorMap(
       lattice,
-      { ...section, kinds },
-      previous && { map: previous.coefficients.conductors, box: previous.box },
+      { ...section, kinds, walls: conformal ? [] : section.walls },
+      conformal ? undefined : previous && { map: previous.coefficients.conductors, box: previous.box },
     );
+    this.cuts = conformal ? conformalCuts(lattice, section, this.conductors) : null;
     this.columnShares = Float64Array.from({ length: lattice.columns + 2 }, (_, i) => columnShare(lattice, i));
     this.hasShares = this.columnShares.some((share) => share !== 1);
     this.updates = media.map((medium) =>
@@ -104,6 +113,7 @@ export class SectionCoefficients {
     }
     if (this.hasGx(j)) this.writeGx(here, above, out);
     this.applyWalls(j, out);
+    this.applyCuts(j, out);
     this.applyConductors(j, out);
   };
 
@@ -244,6 +254,23 @@ export class SectionCoefficients {
     if (j === 0 || j === rows) {
       const magnetic = isMagnetic(j === 0 ? "bottom" : "top");
       for (let i = 1; i <= columns; i += 1) side(magnetic, out.aGx, out.bGx, i);
+    }
+  }
+
+  /** Lengths and storages of what conformal metal cuts. */
+  private applyCuts(j: number, out: RowCoefficients): void {
+    const { cuts, conductors } = this;
+    if (!cuts || conductors.touched[j] === 0) return;
+    const base = j * this.lattice.stride;
+    for (let i = 0; i <= this.lattice.columns; i += 1) {
+      const k = base + i;
+      out.bGx[i] *= cuts.lengthGx.get(k) ?? 1;
+      out.bGy[i] *= cuts.lengthGy.get(k) ?? 1;
+      const storage = cuts.storage.get(k);
+      if (storage === undefined || out.bF[i] === 0) continue;
+      const update = scaledStorage({ a: out.aF[i], b: out.bF[i] }, storage, cuts.scalesLoss);
+      out.aF[i] = update.a;
+      out.bF[i] = update.b;
     }
   }
 

@@ -91,11 +91,17 @@ export class ConductorMap {
       this.cutAlong("y");
     }
     for (const wall of input.walls) this.drawWall(wall);
+    this.markTouched();
+  }
+
+  /** To be called after flags were raised from outside. */
+  markTouched(rowsBesides: Iterable<number> = []): void {
+    const { stride } = this.lattice;
     for (let j = 0; j < this.touched.length; j += 1) {
-      const base = j * lattice.stride;
-      const row = this.flags.subarray(base, base + lattice.stride);
+      const row = this.flags.subarray(j * stride, (j + 1) * stride);
       this.touched[j] = row.some((flag) => flag !== 0) ? 1 : 0;
     }
+    for (const j of rowsBesides) this.touched[j] = 1;
   }
 
   private clearBox(): void {

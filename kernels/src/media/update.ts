@@ -35,3 +35,12 @@ export const halfStorage = (a: number, b: number, dt: number): number =>
 
 /** Loss of a field point from its coefficients: dissipated power is this times v². Zero on a conductor. */
 export const lossOf = (a: number, b: number): number => (b === 0 ? 0 : (1 - a) / b);
+
+/** The update with `factor` times the storage, and times the loss too where that is meant. */
+export function scaledStorage({ a, b }: Update, factor: number, withLoss: boolean): Update {
+  if (withLoss) return { a, b: b / factor };
+  // In units of Δt/2: M = (1 + a)/b and loss = (1 − a)/b.
+  const storage = ((1 + a) / b) * factor;
+  const loss = (1 - a) / b;
+  return { a: (storage - loss) / (storage + loss), b: 2 / (storage + loss) };
+}

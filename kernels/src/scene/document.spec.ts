@@ -159,11 +159,29 @@ describe("the grid", () => {
   });
 
   it("steps at 0.99 of the two-dimensional limit and counts steps up to the last", () => {
-    const g = gridOf(resolved({ mesh: { cellMm: 1 }, stop: { maxTimeNs: 10 } }));
+    const g = gridOf(resolved({ mesh: { cellMm: 1, metal: "staircase" }, stop: { maxTimeNs: 10 } }));
     // 1 mm / (c √2), in ps; c = 0.299792458 mm/ps.
     expect(g.stepPs).toBeCloseTo((0.99 * 1) / (0.299792458 * Math.SQRT2), 12);
     expect(g.maxSteps).toBe(Math.ceil(10_000 / g.stepPs));
     expect(g.courant).toBe(0.99);
+  });
+
+  it("steps at 0.82 of the limit where conformal metal cuts cells of TEz, and only there", () => {
+    const courant = (polarization: "TMz" | "TEz", x: number, medium = "pec", more: object = {}): number =>
+      gridOf(
+        resolved({
+          polarization,
+          mesh: { cellMm: 1 },
+          sources: [],
+          probes: [],
+          paint: [{ kind: "rectangle", id: "block", medium, x, y: 3, width: 6, height: 4, ...more }],
+        }),
+      ).courant;
+    expect(courant("TEz", 5.3)).toBe(0.82);
+    expect(courant("TEz", 5)).toBe(0.99);
+    expect(courant("TEz", 5, "pec", { angle: 10 })).toBe(0.82);
+    expect(courant("TEz", 5.3, "air")).toBe(0.99);
+    expect(courant("TMz", 5.3)).toBe(0.99);
   });
 
   it("takes the shortest wavelength among media that are used and not too lossy", () => {

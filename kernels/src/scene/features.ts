@@ -37,6 +37,7 @@ export type FeatureSet = ReadonlySet<Feature | Refinement>;
 
 /** What the engines compute today. */
 export const COMPUTED: FeatureSet = new Set<Feature | Refinement>([
+  "conformal-metal",
   "line-probe",
   "limit-level",
   "limit-q",

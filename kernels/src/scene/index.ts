@@ -10,11 +10,13 @@ export {
   type CostEstimate,
   cellsPerWavelength,
   countedWavelengthsMm,
+  COURANT,
   estimateCost,
   type Grid,
   gridOf,
   shortestWavelengthMm,
 } from "./grid.js";
+export { hasConformalMetal } from "./metal-cuts.js";
 export { canonicalJson, documentSha256, resultSha256, sceneSha256 } from "./hash.js";
 export * from "./media-figures.js";
 export { mediumAt, patchContains } from "./contains.js";

@@ -33,6 +33,12 @@ export function editProblems(running: ResolvedScene, edited: ResolvedScene, grid
       `The edited media ask for ${wanted.nx} × ${wanted.ny} cells; the run has ${grid.nx} × ${grid.ny} and keeps them. Give the mesh as a cell size, or ${anew}.`,
     );
   }
+  if (wanted.courant < grid.courant) {
+    refuse(
+      "paint",
+      `With this edit metal would cut cells off the mesh lines, which needs a time step of ${wanted.courant} of the stability limit; the run has ${grid.courant} and keeps it. Put the metal on mesh lines, choose staircase metal, or ${anew}.`,
+    );
+  }
   return problems;
 }
 
@@ -73,8 +79,8 @@ function boxOf(patch: ResolvedPatch): MmBox {
   return box;
 }
 
-/** Field points this far (in cells) outside a changed patch may change with it. */
-const REACH_CELLS = 2;
+/** Field points this far (in cells) outside a changed patch may change with it: cut cells borrow area from the next but one. */
+const REACH_CELLS = 5;
 
 /**
  * The part of the lattice whose coefficients an edit can change; null where it changes none. Paint of the two scenes is compared

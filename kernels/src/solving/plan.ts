@@ -9,7 +9,7 @@ import { buildLattice } from "../lattice/index.js";
 import type { LatticeBox, SectionMedia, SolverMedium } from "../media/index.js";
 import { propertiesOf, SectionCoefficients } from "../media/index.js";
 import type { Grid, Medium, ResolvedScene } from "../scene/index.js";
-import { canonicalJson, gridOf, isPerfect } from "../scene/index.js";
+import { canonicalJson, gridOf, hasConformalMetal, isPerfect } from "../scene/index.js";
 import type { DrivePoint } from "../stepping/index.js";
 
 export interface PlannedSource {
@@ -70,6 +70,7 @@ export function coefficientsOf(
     walls,
     widthMm: scene.section.widthMm,
     heightMm: scene.section.heightMm,
+    metal: hasConformalMetal(scene) ? "conformal" : "staircase",
     omega: Math.PI * (scene.band.fromGHz + scene.band.toGHz) * 1e9,
   };
   return new SectionCoefficients(lattice, section, previous);

@@ -2,7 +2,7 @@
 import { layerReflectionDb } from "../boundaries/index.js";
 import { C0, SIDES, worstDispersionError } from "../lattice/index.js";
 import type { ResolvedScene, SolveResult } from "../scene/index.js";
-import { cellsPerWavelength, isPerfect, shortestWavelengthMm } from "../scene/index.js";
+import { COURANT, cellsPerWavelength, isPerfect, shortestWavelengthMm } from "../scene/index.js";
 import type { Engine } from "../stepping/index.js";
 import { layersOf } from "./plan.js";
 import type { GridSummary } from "./session.js";
@@ -52,6 +52,11 @@ export function qualityOf(input: QualityInput): SolveResult["quality"] {
   const speed = Math.min(C0, (shortestWavelengthMm(resolved) / 1000) * hz);
   const dispersion = worstDispersionError(lattice, speed, 2 * Math.PI * hz);
   const warnings = [...input.warnings];
+  if (grid.courant < COURANT) {
+    warnings.push(
+      `The time step is ${grid.courant} of the stability limit in place of ${COURANT}, because metal cuts cells off the mesh lines.`,
+    );
+  }
   const reflection = boundaryReflectionDb(input);
   if (reflection === null && SIDES.some((side) => lattice.edges[side] === "absorbing")) {
     warnings.push(

@@ -40,6 +40,8 @@ const tez = (changes: Partial<SceneInput> = {}): Scene =>
     ...changes,
   });
 const post = { kind: "ellipse", id: "post", medium: "pec", x: 40, y: 25, rx: 6, ry: 4 } as const;
+/** Metal off the mesh lines from the start: the run has the time step that more of it needs. */
+const pin = { ...post, id: "pin", x: 12, y: 30, rx: 1.3, ry: 1.2 } as const;
 
 const valuesOf = (session: SolveSession): number[][] =>
   session.tracesSince(0).map(({ values }) => [...values]);
@@ -103,8 +105,8 @@ describe("a session", () => {
   });
 
   it("takes an edit that paints as if the paint had always been there, where nothing has arrived yet", async () => {
-    const painted = tez({ paint: [post] });
-    const edited = await openSession(tez());
+    const painted = tez({ paint: [pin, post] });
+    const edited = await openSession(tez({ paint: [pin] }));
     expect(edited.edit(painted)).toEqual({ kind: "applied", step: 0 });
     edited.advance(300);
     const clean = await openSession(painted);
@@ -112,11 +114,46 @@ describe("a session", () => {
     expect(valuesOf(edited)).toEqual(valuesOf(clean));
     // And back: removing it restores every coefficient.
     const back = await openSession(painted);
-    back.edit(tez());
+    back.edit(tez({ paint: [pin] }));
     back.advance(300);
-    const plain = await openSession(tez());
+    const plain = await openSession(tez({ paint: [pin] }));
     plain.advance(300);
     expect(valuesOf(back)).toEqual(valuesOf(plain));
+  });
+
+  it("refuses an edit whose cut metal needs a smaller time step, and takes the same one as a staircase or in TMz", async () => {
+    const staircase = { cellMm: 1, metal: "staircase" } as const;
+    const block = {
+      kind: "rectangle",
+      id: "block",
+      medium: "pec",
+      x: 40,
+      y: 20,
+      width: 6,
+      height: 4,
+    } as const;
+    const session = await openSession(tez());
+    expect(session.edit(tez({ paint: [block] }))).toEqual({ kind: "applied", step: 0 });
+    const outcome = session.edit(tez({ paint: [post] }));
+    if (outcome.kind !== "refused") throw new Error("the edit was applied");
+    expect(outcome.problems.map(({ path }) => path)).toEqual(["paint"]);
+    expect(outcome.problems[0].sentence).toMatch(/0\.82 of the stability limit/);
+    expect(session.grid.courant).toBe(0.99);
+    const plain = await openSession(tez({ mesh: staircase }));
+    expect(plain.edit(tez({ mesh: staircase, paint: [post] })).kind).toBe("applied");
+    const tmz = await openSession(sceneOf());
+    expect(tmz.edit(sceneOf({ paint: [post] })).kind).toBe("applied");
+  });
+
+  it("says when metal asked for a smaller time step", async () => {
+    const warningsOf = async (scene: Scene): Promise<string> => {
+      const session = await openSession(scene);
+      session.advance(10);
+      session.cancel();
+      return session.result().quality.warnings.join(" ");
+    };
+    expect(await warningsOf(tez({ paint: [post] }))).toMatch(/0\.82 of the stability limit/);
+    expect(await warningsOf(tez())).not.toMatch(/stability limit/);
   });
 
   it("lets painted absorber draw the field down, and an edited run has no spectra", async () => {
