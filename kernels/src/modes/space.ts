@@ -2,7 +2,7 @@
 import { dissect } from "./algebra/dissection.js";
 import type { Part } from "./algebra/dissection.js";
 import { Factorization } from "./algebra/factorization.js";
-import { ELEMENT_NUMBERS, elementMatrix, elementNumbers, MASS } from "./algebra/quadratic.js";
+import { ELEMENT_NUMBERS, elementMatrix, elementNumbers } from "./algebra/quadratic.js";
 import type { SectionMesh } from "./mesh/section-mesh.js";
 import { ELECTRIC, MAGNETIC } from "./mesh/section-mesh.js";
 
@@ -157,29 +157,32 @@ export function factorShifted(space: ElementSpace, shift: number): Factorization
   );
 }
 
-/** out = M x. */
+/** out = M x, by the mass matrix of `algebra/quadratic` with its sums taken once an element. */
 export function multiplyMass(space: ElementSpace, x: Float64Array, out: Float64Array): void {
   const { dofs, numbers } = space;
-  const m = MASS;
   out.fill(0);
-  const local = new Float64Array(NODES);
   for (let e = 0, at = 0; at < dofs.length; e += 1, at += NODES) {
-    const area = numbers[ELEMENT_NUMBERS * e + 3];
-    for (let k = 0; k < NODES; k += 1) {
-      const dof = dofs[at + k];
-      local[k] = dof < 0 ? 0 : area * x[dof];
-    }
-    for (let k = 0; k < NODES; k += 1) {
-      const dof = dofs[at + k];
-      if (dof < 0) continue;
-      const row = NODES * k;
-      out[dof] +=
-        m[row] * local[0] +
-        m[row + 1] * local[1] +
-        m[row + 2] * local[2] +
-        m[row + 3] * local[3] +
-        m[row + 4] * local[4] +
-        m[row + 5] * local[5];
-    }
+    const c0 = dofs[at];
+    const c1 = dofs[at + 1];
+    const c2 = dofs[at + 2];
+    const m0 = dofs[at + 3];
+    const m1 = dofs[at + 4];
+    const m2 = dofs[at + 5];
+    const v0 = c0 < 0 ? 0 : x[c0];
+    const v1 = c1 < 0 ? 0 : x[c1];
+    const v2 = c2 < 0 ? 0 : x[c2];
+    const w0 = m0 < 0 ? 0 : x[m0];
+    const w1 = m1 < 0 ? 0 : x[m1];
+    const w2 = m2 < 0 ? 0 : x[m2];
+    const area = numbers[ELEMENT_NUMBERS * e + 3] / 180;
+    const corners = v0 + v1 + v2;
+    const middles = 16 * (w0 + w1 + w2);
+    // Side k lies opposite to corner k + 2.
+    if (c0 >= 0) out[c0] += area * (7 * v0 - corners - 4 * w1);
+    if (c1 >= 0) out[c1] += area * (7 * v1 - corners - 4 * w2);
+    if (c2 >= 0) out[c2] += area * (7 * v2 - corners - 4 * w0);
+    if (m0 >= 0) out[m0] += area * (16 * w0 + middles - 4 * v2);
+    if (m1 >= 0) out[m1] += area * (16 * w1 + middles - 4 * v0);
+    if (m2 >= 0) out[m2] += area * (16 * w2 + middles - 4 * v1);
   }
 }

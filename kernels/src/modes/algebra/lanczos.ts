@@ -63,6 +63,18 @@ function subtract(x: Float64Array, c: number, q: Float64Array): void {
   for (let i = 0; i < x.length; i += 1) x[i] -= c * q[i];
 }
 
+/** x −= Σ cₙqₙ, four vectors in one pass over x. */
+function subtractAll(x: Float64Array, c: ArrayLike<number>, vectors: readonly Float64Array[]): void {
+  const length = x.length;
+  let n = 0;
+  for (; n + 3 < vectors.length; n += 4) {
+    const [q0, q1, q2, q3] = [vectors[n], vectors[n + 1], vectors[n + 2], vectors[n + 3]];
+    const [c0, c1, c2, c3] = [c[n], c[n + 1], c[n + 2], c[n + 3]];
+    for (let i = 0; i < length; i += 1) x[i] -= c0 * q0[i] + c1 * q1[i] + c2 * q2[i] + c3 * q3[i];
+  }
+  for (; n < vectors.length; n += 1) subtract(x, c[n], vectors[n]);
+}
+
 /** Numbers between −½ and ½ that are the same in every run (a linear congruential generator). */
 function fillAtRandom(x: Float64Array, seed: number): void {
   let state = seed >>> 0;
@@ -107,11 +119,15 @@ class Basis {
     let norm = massNorm();
     for (let pass = 0; pass < 3; pass += 1) {
       const previous = norm;
-      for (const q of locked) subtract(x, dot(q, massTimes), q);
-      vectors.forEach((q, n) => {
-        const c = dot(q, massTimes);
+      subtractAll(
+        x,
+        locked.map((q) => dot(q, massTimes)),
+        locked,
+      );
+      const found = vectors.map((q) => dot(q, massTimes));
+      subtractAll(x, found, vectors);
+      found.forEach((c, n) => {
         coefficients[n] += c;
-        subtract(x, c, q);
       });
       operator.multiplyMass(x, massTimes);
       norm = massNorm();
@@ -264,8 +280,7 @@ function settled(
 
 function combine(vectors: readonly Float64Array[], weights: Float64Array, unknowns: number): Float64Array {
   const x = new Float64Array(unknowns);
-  weights.forEach((weight, n) => {
-    subtract(x, -weight, vectors[n]);
-  });
+  const minus = weights.map((weight) => -weight);
+  subtractAll(x, minus, vectors.slice(0, weights.length));
   return x;
 }

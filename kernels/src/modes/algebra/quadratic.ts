@@ -10,7 +10,7 @@
 export const ELEMENT_NUMBERS = 4;
 
 /** Corner i and the middles it meets: side k runs from corner k to corner k + 1 and has its middle at 3 + k. */
-export const MASS: Float64Array = massMatrix();
+const MASS: Float64Array = massMatrix();
 
 function massMatrix(): Float64Array {
   const mass = new Float64Array(36);
