@@ -49,7 +49,12 @@ export class Yardsticks {
     return null;
   }
 
-  measureTextbook(cells: number): void {
+  measure(cells: number): void {
+    this.measureTextbook(cells);
+    this.measureTriad();
+  }
+
+  private measureTextbook(cells: number): void {
     if (this.folder === null) return;
     const text = output(join(this.folder, "textbook"), [String(cells)]);
     for (const [n, rate] of figuresOf(text, "n", "mcells")) {
@@ -57,7 +62,7 @@ export class Yardsticks {
     }
   }
 
-  measureTriad(): void {
+  private measureTriad(): void {
     if (this.folder === null) return;
     for (const [threads, rate] of figuresOf(output(join(this.folder, "triad"), []), "threads", "gbs")) {
       this.triad.set(threads, Math.max(rate, this.triad.get(threads) ?? 0));

@@ -84,12 +84,22 @@ const round = (
   }
 };
 
-const measure = async (
-  bench: BenchCase,
-  polarization: BenchPolarization,
-  threads: number,
-  pace: BenchPace,
-): Promise<BenchFigure> => {
+interface Variant {
+  bench: BenchCase;
+  polarization: BenchPolarization;
+  threads: number;
+}
+
+interface OpenVariant extends Variant {
+  session: SolveSession;
+  transforms: ProbeTransforms;
+  openSeconds: number;
+  rates: number[];
+  steps: number;
+}
+
+const openVariant = async (variant: Variant): Promise<OpenVariant> => {
+  const { bench, polarization, threads } = variant;
   const started = performance.now();
   const session = await openSession(benchScene(bench.kind, bench.cells, polarization), {
     engine: "wasm",
@@ -97,28 +107,61 @@ const measure = async (
     spawnHelper,
   });
   const openSeconds = (performance.now() - started) / 1000;
+  return { ...variant, session, transforms: new ProbeTransforms(session), openSeconds, rates: [], steps: 0 };
+};
+
+const figureOf = ({
+  bench,
+  polarization,
+  threads,
+  session,
+  openSeconds,
+  rates,
+  steps,
+}: OpenVariant): BenchFigure => {
+  const sorted = [...rates].sort((a, b) => a - b);
+  const { nx, ny } = session.grid;
+  return {
+    case: bench.name,
+    polarization,
+    engine: "wasm",
+    threads,
+    nx,
+    ny,
+    cells: nx * ny,
+    steps,
+    millionCellStepsPerSecond: sorted[sorted.length - 1],
+    medianMillionCellStepsPerSecond: sorted[Math.floor(sorted.length / 2)],
+    openSeconds,
+  };
+};
+
+/**
+ * Times variants in turns, round by round, with their yardsticks before, amid and after, so that all see the same machine even
+ * where others use it too.
+ */
+const measureTogether = async (
+  variants: readonly Variant[],
+  yardsticks: Yardsticks,
+  pace: BenchPace,
+): Promise<BenchFigure[]> => {
+  const opened: OpenVariant[] = [];
   try {
-    const transforms = new ProbeTransforms(session);
+    for (const variant of variants) opened.push(await openVariant(variant));
     // Warm: the optimizing compiler has had its turn, the wave fills a part of the section.
-    round(session, transforms, pace.roundSeconds);
-    const rounds = Array.from({ length: pace.rounds }, () => round(session, transforms, pace.roundSeconds));
-    const rates = rounds.map(({ rate }) => rate).sort((a, b) => a - b);
-    const { nx, ny } = session.grid;
-    return {
-      case: bench.name,
-      polarization,
-      engine: "wasm",
-      threads,
-      nx,
-      ny,
-      cells: nx * ny,
-      steps: rounds[0].steps,
-      millionCellStepsPerSecond: rates[rates.length - 1],
-      medianMillionCellStepsPerSecond: rates[Math.floor(rates.length / 2)],
-      openSeconds,
-    };
+    for (const { session, transforms } of opened) round(session, transforms, pace.roundSeconds);
+    for (let turn = 0; turn < pace.rounds; turn += 1) {
+      if (turn === 0 || turn === Math.floor(pace.rounds / 2)) yardsticks.measure(variants[0].bench.cells);
+      for (const variant of opened) {
+        const { steps, rate } = round(variant.session, variant.transforms, pace.roundSeconds);
+        variant.rates.push(rate);
+        variant.steps = steps;
+      }
+    }
+    yardsticks.measure(variants[0].bench.cells);
+    return opened.map(figureOf);
   } finally {
-    session.dispose();
+    for (const { session } of opened) session.dispose();
   }
 };
 
@@ -131,7 +174,9 @@ const figureLine = (figure: BenchFigure): string =>
     `(median ${figure.medianMillionCellStepsPerSecond.toFixed(0)})`,
   ].join("  ");
 
-/** Cases in order of size, each size between two runs of its yardstick, so that both see the same machine. */
+/** Sections of more cells are not held in memory in both polarizations at once. */
+const MOST_CELLS_TOGETHER = 2048;
+
 const measureAll = async (
   chosen: readonly BenchCase[],
   yardsticks: Yardsticks,
@@ -139,22 +184,16 @@ const measureAll = async (
   say: (line: string) => void,
 ): Promise<BenchFigure[]> => {
   const figures: BenchFigure[] = [];
-  for (const cells of BENCH_SIZES) {
-    const cases = chosen.filter((bench) => bench.cells === cells);
-    if (cases.length === 0) continue;
-    yardsticks.measureTextbook(cells);
-    yardsticks.measureTriad();
-    for (const bench of cases) {
-      for (const polarization of BENCH_POLARIZATIONS) {
-        for (const threads of pace.threads) {
-          const figure = await measure(bench, polarization, threads, pace);
-          figures.push(figure);
-          say(figureLine(figure));
-        }
-      }
+  for (const bench of chosen) {
+    const of = (polarization: BenchPolarization): Variant[] =>
+      pace.threads.map((threads) => ({ bench, polarization, threads }));
+    const groups =
+      bench.cells > MOST_CELLS_TOGETHER ? BENCH_POLARIZATIONS.map(of) : [BENCH_POLARIZATIONS.flatMap(of)];
+    for (const group of groups) {
+      const measured = await measureTogether(group, yardsticks, pace);
+      for (const figure of measured) say(figureLine(figure));
+      figures.push(...measured);
     }
-    yardsticks.measureTextbook(cells);
-    yardsticks.measureTriad();
   }
   return figures;
 };
