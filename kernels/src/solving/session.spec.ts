@@ -121,28 +121,16 @@ describe("a session", () => {
     expect(valuesOf(back)).toEqual(valuesOf(plain));
   });
 
-  it("refuses an edit whose cut metal needs a smaller time step, and takes the same one as a staircase or in TMz", async () => {
-    const staircase = { cellMm: 1, metal: "staircase" } as const;
-    const block = {
-      kind: "rectangle",
-      id: "block",
-      medium: "pec",
-      x: 40,
-      y: 20,
-      width: 6,
-      height: 4,
-    } as const;
+  it("takes an edit whose cut metal would have a smaller time step in a new run, and stays stable", async () => {
     const session = await openSession(tez());
-    expect(session.edit(tez({ paint: [block] }))).toEqual({ kind: "applied", step: 0 });
-    const outcome = session.edit(tez({ paint: [post] }));
-    if (outcome.kind !== "refused") throw new Error("the edit was applied");
-    expect(outcome.problems.map(({ path }) => path)).toEqual(["paint"]);
-    expect(outcome.problems[0].sentence).toMatch(/0\.82 of the stability limit/);
+    expect(session.edit(tez({ paint: [post] }))).toEqual({ kind: "applied", step: 0 });
     expect(session.grid.courant).toBe(0.99);
-    const plain = await openSession(tez({ mesh: staircase }));
-    expect(plain.edit(tez({ mesh: staircase, paint: [post] })).kind).toBe("applied");
-    const tmz = await openSession(sceneOf());
-    expect(tmz.edit(sceneOf({ paint: [post] })).kind).toBe("applied");
+    const plain = await openSession(tez());
+    const largest = (of: SolveSession): number => {
+      expect(of.advance(6_000).kind).not.toBe("failed");
+      return Math.max(...of.tracesSince(0).flatMap(({ values }) => Array.from(values, Math.abs)));
+    };
+    expect(largest(session)).toBeLessThan(10 * largest(plain));
   });
 
   it("says when metal asked for a smaller time step", async () => {
