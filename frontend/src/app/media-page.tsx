@@ -5,7 +5,14 @@ import { PageHeader } from "../components/page-header";
 import { hasNothing, QueryProblem } from "../components/query-problem";
 import { SearchField } from "../components/search-field";
 import type { LibraryMedium } from "../features/media";
-import { DeleteMediumDialog, FigureField, MediaTable, MediumDialog, useMedia } from "../features/media";
+import {
+  DeleteMediumDialog,
+  FigureField,
+  MediaTable,
+  MediumDialog,
+  StackPanel,
+  useMedia,
+} from "../features/media";
 import { useMay } from "../hooks/session";
 import { frequency, readNumber } from "../lib/figures";
 import { counted } from "../lib/words";
@@ -78,6 +85,7 @@ export function MediaPage() {
           onDelete={(entry) => setOpen({ what: "delete", entry })}
         />
       )}
+      {media.data === undefined ? null : <StackPanel media={media.data.map(({ medium }) => medium)} />}
       {open?.what === "new" || open?.what === "edit" ? (
         <MediumDialog
           entry={open.what === "edit" ? open.entry : null}

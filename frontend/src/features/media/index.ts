@@ -4,3 +4,4 @@ export { DeleteMediumDialog } from "./delete-medium-dialog";
 export { FigureField } from "./figure-field";
 export { MediaTable } from "./media-table";
 export { MediumDialog } from "./medium-dialog";
+export { StackPanel } from "./stack/stack-panel";
