@@ -9,6 +9,9 @@ import {
   ENERGY_FIRST_ROW,
   ENERGY_LAST_ROW,
   ENERGY_PART_ROWS,
+  FLUSH_BYTES,
+  FLUSH_LIMIT_F,
+  FLUSHES,
   CACHE_LINE_BYTES,
   COMMAND,
   JOB,
@@ -27,6 +30,7 @@ import {
   WAITING,
 } from "../src/stepping/wasm/layout";
 import { rowEnergy } from "./energy";
+import { flushRow } from "./flush";
 import { stepRow } from "./row";
 
 /** Nobody sleeps longer than this without a look, in ns: a guard, not a way to be woken. */
@@ -62,6 +66,7 @@ function stepBlock(block: i32, first: i32, last: i32): void {
   const recordBytes: usize = load<usize>(RECORD_BYTES);
   const signals = load<usize>(SIGNALS) + <usize>first * signalBytes;
   const records = load<usize>(RECORDS) + <usize>first * recordBytes;
+  const plans = load<usize>(FLUSHES) + <usize>first * FLUSH_BYTES;
   const progress: usize = PROGRESS + block * CACHE_LINE_BYTES;
   const before: usize = progress - CACHE_LINE_BYTES;
   const count = last - first;
@@ -75,7 +80,10 @@ function stepBlock(block: i32, first: i32, last: i32): void {
     const from = max(0, wave - lastRow);
     const to = min(count - 1, wave);
     for (let step = from; step <= to; step++) {
-      stepRow(<usize>(wave - step), signals + <usize>step * signalBytes, records + <usize>step * recordBytes);
+      const row: usize = wave - step;
+      stepRow(row, signals + <usize>step * signalBytes, records + <usize>step * recordBytes);
+      const plan = plans + <usize>step * FLUSH_BYTES;
+      if (load<f32>(plan, FLUSH_LIMIT_F) > 0) flushRow(row, plan);
     }
     if (wave >= count - 1) announce(progress, wave - count + 2);
   }

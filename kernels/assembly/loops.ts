@@ -7,15 +7,12 @@
  *
  * and in the absorbing layers a difference d is replaced by d/κ + ψ, ψ ← decay·ψ + gain·d.
  */
-import { VARIED_BYTES, VECTOR_BYTES } from "../src/stepping/wasm/layout";
+import { TURN_VECTORS, VARIED_BYTES, VECTOR_BYTES } from "../src/stepping/wasm/layout";
 
 /** What is known of a run when its loop is compiled. */
 const LOSSLESS: i32 = 0;
 const UNIFORM: i32 = 1;
 const VARIED: i32 = 2;
-
-/** Vectors of one turn of an unrolled loop, in bytes. */
-const TURN: usize = 4 * VECTOR_BYTES;
 
 /** Places of the vectors of a turn, as types: an address's offset must be known when a generic function is made. */
 @unmanaged
@@ -124,27 +121,21 @@ class Update {
       bF = v128.load32_splat(numbers, 20);
     }
     let left = v128.load(gy - VECTOR_BYTES);
-    const turns = f + (bytes & ~(TURN - 1));
     const end = f + bytes;
-    while (f < turns) {
-      left = Update.plain<First>(kind, f, above, gx, below, gy, left, varied, aGx, bGx, aGy, bGy, aF, bF);
-      left = Update.plain<Second>(kind, f, above, gx, below, gy, left, varied, aGx, bGx, aGy, bGy, aF, bF);
-      left = Update.plain<Third>(kind, f, above, gx, below, gy, left, varied, aGx, bGx, aGy, bGy, aF, bF);
-      left = Update.plain<Fourth>(kind, f, above, gx, below, gy, left, varied, aGx, bGx, aGy, bGy, aF, bF);
-      f += TURN;
-      above += TURN;
-      gx += TURN;
-      below += TURN;
-      gy += TURN;
-      if (kind == VARIED) varied += 4 * VARIED_BYTES;
-    }
+    // Runs of one medium are cut to whole turns; those whose coefficients vary are short.
     while (f < end) {
       left = Update.plain<First>(kind, f, above, gx, below, gy, left, varied, aGx, bGx, aGy, bGy, aF, bF);
-      f += VECTOR_BYTES;
-      above += VECTOR_BYTES;
-      gx += VECTOR_BYTES;
-      below += VECTOR_BYTES;
-      gy += VECTOR_BYTES;
+      if (kind != VARIED) {
+        left = Update.plain<Second>(kind, f, above, gx, below, gy, left, varied, aGx, bGx, aGy, bGy, aF, bF);
+        left = Update.plain<Third>(kind, f, above, gx, below, gy, left, varied, aGx, bGx, aGy, bGy, aF, bF);
+        left = Update.plain<Fourth>(kind, f, above, gx, below, gy, left, varied, aGx, bGx, aGy, bGy, aF, bF);
+      }
+      const turn = kind == VARIED ? VECTOR_BYTES : TURN_VECTORS * VECTOR_BYTES;
+      f += turn;
+      above += turn;
+      gx += turn;
+      below += turn;
+      gy += turn;
       if (kind == VARIED) varied += VARIED_BYTES;
     }
   }

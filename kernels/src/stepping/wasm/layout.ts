@@ -7,6 +7,8 @@
 export const LANES = 4;
 export const VECTOR_BYTES = 16;
 export const CACHE_LINE_BYTES = 64;
+/** Vectors of one turn of a loop over one medium outside the layers: its runs are whole turns. */
+export const TURN_VECTORS = 4;
 
 /**
  * The control block, from here to CONTROL_END: what threads write often lies in cache lines of its own.
@@ -51,6 +53,10 @@ export const ENERGY_LAST_COLUMN = 1344;
 export const ENERGY_SUMS = 1348;
 /** Δt/4 in seconds, a float64. */
 export const QUARTER_STEP = 1352;
+/** What to set to zero after each step of the job, FLUSH_BYTES a step. */
+export const FLUSHES = 1364;
+/** Bytes of a row's ψ along x. */
+export const STRIP_BYTES = 1376;
 /** How often a waiting thread looks before it sleeps. */
 export const SPINS = 1360;
 
@@ -63,6 +69,12 @@ export const CONTROL_END = 18432;
 
 /** Rows of one part of an energy job. */
 export const ENERGY_PART_ROWS = 64;
+
+/** A step's plan: below which magnitude numbers of the three fields become zero, as float32; 0 for no flush. */
+export const FLUSH_BYTES = 16;
+export const FLUSH_LIMIT_F = 0;
+export const FLUSH_LIMIT_GX = 4;
+export const FLUSH_LIMIT_GY = 8;
 
 /** An entry of the row table. */
 export const ENTRY_BYTES = 80;

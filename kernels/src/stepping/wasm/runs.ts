@@ -14,6 +14,7 @@ import {
   RUN_VARIED,
   RUN_ZERO,
   SCALARS_BYTES,
+  TURN_VECTORS,
   VARIED_BYTES,
   VECTOR_BYTES,
 } from "./layout.js";
@@ -72,15 +73,15 @@ export class RunCutter {
   }
 
   private cutZone(from: number, end: number, layerY: boolean): void {
+    const inLayer = layerY || this.place.psiShifts[from] !== null;
     let open = from;
     for (let v = from; v < end; ) {
       const equal = this.equalUntil(v, end);
-      const whole = v === from && equal === end;
-      if (equal - v >= SHORTEST_UNIFORM || whole) {
+      const turned = inLayer ? equal : equal - ((equal - v) % TURN_VECTORS);
+      if (turned - v >= SHORTEST_UNIFORM || (inLayer && v === from && equal === end)) {
         if (v > open) this.write(RUN_VARIED, open, v, layerY);
-        const inLayer = layerY || this.place.psiShifts[v] !== null;
-        this.write(this.uniformKind(v, inLayer), v, equal, layerY);
-        open = equal;
+        this.write(this.uniformKind(v, inLayer), v, turned, layerY);
+        open = turned;
       }
       v = Math.max(equal, v + 1);
     }

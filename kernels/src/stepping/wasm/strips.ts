@@ -10,6 +10,8 @@ const inRanges = (stretch: AxisStretch, index: number): boolean =>
 export interface LayerStrips {
   /** By vector of a row: bytes from its place in the row to its ψ in a row of the strips; null outside the layers along x. */
   readonly psiShifts: readonly (number | null)[];
+  /** Bytes of a row's strips along x. */
+  readonly stripBytes: number;
   /** Address of the parameters along x. */
   readonly columnParameters: number;
   /** Row j's strips along x: address of what belongs to vector 0 at shift 0. */
@@ -84,6 +86,7 @@ export function layStrips(arena: Arena, lattice: Lattice, layers: AbsorbingLayer
   const { rowsG, rowsF } = layers;
   return {
     psiShifts,
+    stripBytes: width,
     columnParameters,
     psiGyOf: (row) => psiGy + row * width,
     psiFxOf: (row) => psiFx + row * width,

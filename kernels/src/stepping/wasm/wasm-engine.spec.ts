@@ -4,7 +4,7 @@ import { storedEnergy } from "../../observers/index.js";
 import type { CoefficientSource, DrivePoint, Engine } from "../index.js";
 import { loadKernel, ReferenceEngine, rowCoefficients, WasmEngine } from "../index.js";
 import type { Case } from "../testing.js";
-import { BOX, edgesOf, empty, OPEN, run, setupOf, STEPS } from "../testing.js";
+import { BOX, edgesOf, empty, OPEN, run, setupOf, signalsFor, STEPS } from "../testing.js";
 
 const kernel = await loadKernel();
 if (!("module" in kernel)) throw new Error(`These tests need ${kernel.missing}.`);
@@ -212,6 +212,52 @@ describe("the wasm engine against the reference", () => {
       expect(difference(fast.fields.f, slow.fields.f) / scale).toBeLessThan(roundings(STEPS));
     }
     expect(scale).toBeGreaterThan(0);
+  });
+});
+
+describe("small numbers in the wasm engine", () => {
+  const LEAST_NORMAL = 2 ** -126;
+  const subnormal = (engine: Engine): number =>
+    FIELDS.reduce(
+      (count, field) =>
+        count +
+        (engine.fields[field] as Float32Array).filter((v) => v !== 0 && Math.abs(v) < LEAST_NORMAL).length,
+      0,
+    );
+
+  it.each(["TMz", "TEz"] as const)("are zero before they make a processor slow (%s)", (polarization) => {
+    const setup = setupOf({ polarization, edges: OPEN, nx: 340, ny: 330 });
+    const fast = keep(new WasmEngine(module, setup));
+    const slow = new ReferenceEngine(setup, "f32");
+    let found = 0;
+    for (let from = 0; from < 272; from += 34) {
+      run(fast, 34, from);
+      run(slow, 34, from);
+      expect(subnormal(fast)).toBe(0);
+      found += subnormal(slow);
+    }
+    expect(found).toBeGreaterThan(1000);
+  });
+
+  it("are those far below every wave, whatever its amplitude", () => {
+    const setup = setupOf({ polarization: "TMz", edges: OPEN, nx: 60, ny: 50 });
+    const [loud, quiet] = [keep(new WasmEngine(module, setup)), keep(new WasmEngine(module, setup))];
+    const signals = signalsFor(200);
+    const faint = signals.map((value) => value * 2 ** -60);
+    loud.advance(200, signals, new Float64Array(600));
+    quiet.advance(200, faint, new Float64Array(600));
+    const scaled = (quiet.fields.f as Float32Array).map((value) => value * 2 ** 60);
+    expect(largest(loud.fields.f)).toBeGreaterThan(0);
+    expect(difference(loud.fields.f, scaled)).toBeLessThan(1e-6 * largest(loud.fields.f));
+  });
+
+  it("do not hide a field that is no number", () => {
+    const engine = keep(new WasmEngine(module, setupOf({ polarization: "TMz", edges: BOX, nx: 20, ny: 20 })));
+    run(engine, 20);
+    engine.fields.f[10 * engine.lattice.stride + 10] = Number.NaN;
+    run(engine, 40, 20);
+    expect(engine.fields.f.filter((value) => Number.isNaN(value)).length).toBeGreaterThan(10);
+    expect(storedEnergy(engine)).toBeNaN();
   });
 });
 

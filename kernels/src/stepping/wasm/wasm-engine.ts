@@ -19,6 +19,7 @@ import { rowCoefficients } from "../engine.js";
 import { packArrays, unpackArrays } from "../packing.js";
 import { Arena } from "./arena.js";
 import { checkOutsideLayers, driveShares } from "./drive-shares.js";
+import { Flushing } from "./flushing.js";
 import * as at from "./layout.js";
 import { readRuns, RunCutter } from "./runs.js";
 import { isLayerRow, layStrips, stripBytes } from "./strips.js";
@@ -64,6 +65,7 @@ export class WasmEngine implements Engine {
   private readonly arena: Arena;
   private readonly kernel: KernelExports;
   private readonly strips: LayerStrips;
+  private readonly flushing: Flushing;
   private readonly cutter: RunCutter;
   private readonly table: number;
   private readonly energySums: number;
@@ -100,6 +102,7 @@ export class WasmEngine implements Engine {
     const tableBytes = (rows + 2) * at.ENTRY_BYTES;
     const recordBytes = this.jobSteps * setup.records * 8;
     const known =
+      this.jobSteps * at.FLUSH_BYTES +
       3 * (size * 4 + 2 * rowBytes + 4096) +
       stripBytes(lattice, layers) +
       tableBytes +
@@ -111,6 +114,7 @@ export class WasmEngine implements Engine {
     this.energySums = arena.reserve((rows + 2) * 8, at.CACHE_LINE_BYTES);
     this.recordsAt = arena.reserve(recordBytes, at.CACHE_LINE_BYTES);
     this.strips = layStrips(arena, lattice, layers);
+    this.flushing = new Flushing(arena, lattice, this.jobSteps, this.strips.stripBytes);
     this.fieldAddresses = { f: this.reserveField(0), gx: this.reserveField(1), gy: this.reserveField(2) };
     const view = (address: number): FieldArray => new Float32Array(arena.memory.buffer, address, size);
     const { f, gx, gy } = this.fieldAddresses;
@@ -239,6 +243,7 @@ export class WasmEngine implements Engine {
   /** Drives as what they take off of single numbers, which the coefficients of their rows decide. */
   private writeDrives(): void {
     const shares = driveShares(this, this.drives);
+    this.flushing.setDrives(shares, this.signals);
     this.drivesBlock = this.fitting(this.drivesBlock, shares.length * at.DRIVE_BYTES);
     const { address } = this.drivesBlock;
     const { i32, f64 } = this.arena;
@@ -300,7 +305,9 @@ export class WasmEngine implements Engine {
   private runSteps(done: number, steps: number, signals: Float64Array, records: Float64Array): void {
     const { i32, f64 } = this.arena;
     const signalsAt = (this.signalsBlock?.address ?? 0) / 8;
-    f64.set(signals.subarray(done * this.signals, (done + steps) * this.signals), signalsAt);
+    const own = signals.subarray(done * this.signals, (done + steps) * this.signals);
+    f64.set(own, signalsAt);
+    this.flushing.plan(this.stepsTaken, steps, own);
     const kept = f64.subarray(this.recordsAt / 8, this.recordsAt / 8 + steps * this.records);
     kept.fill(0);
     i32[at.JOB / 4] = at.JOB_STEPS;
@@ -335,13 +342,20 @@ export class WasmEngine implements Engine {
 
   save(): Uint8Array {
     const { f, gx, gy } = this.fields;
-    return packArrays([Float64Array.of(this.stepsTaken), f, gx, gy, ...this.strips.memory]);
+    return packArrays([
+      Float64Array.of(this.stepsTaken),
+      f,
+      gx,
+      gy,
+      ...this.strips.memory,
+      this.flushing.largest,
+    ]);
   }
 
   load(bytes: Uint8Array): void {
     const { f, gx, gy } = this.fields;
     const step = new Float64Array(1);
-    unpackArrays(bytes, [step, f, gx, gy, ...this.strips.memory]);
+    unpackArrays(bytes, [step, f, gx, gy, ...this.strips.memory, this.flushing.largest]);
     this.stepsTaken = step[0];
   }
 
