@@ -53,7 +53,11 @@ export type RunDto = z.infer<typeof RunDto>;
 
 /** Starts the scene's given revision. */
 export const StartRunBody = z
-  .strictObject({ revision: z.int().min(1), paused: z.boolean().default(false) })
+  .strictObject({
+    revision: z.int().min(1),
+    paused: z.boolean().default(false),
+    pacePsPerSecond: z.number().positive().max(1e9).nullable().default(null),
+  })
   .meta({ id: "StartRunBody" });
 
 /** POST /api/runs/:runId/commands -> RunDto; 409 "wrong-state" where the state does not allow it. */

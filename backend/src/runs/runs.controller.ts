@@ -49,7 +49,7 @@ export class RunsController {
     @Param("sceneId", new IdPipe("scene")) sceneId: string,
     @Body({ schema: StartRunBody }) body: z.output<typeof StartRunBody>,
   ): Promise<RunDto> {
-    return this.runs.start(actor, sceneId, body.revision, body.paused);
+    return this.runs.start(actor, sceneId, body);
   }
 
   /** The scene's runs, newest first. */

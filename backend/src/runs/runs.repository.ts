@@ -87,6 +87,8 @@ export interface Entrance {
   revision: number;
   personId: string;
   startPaused: boolean;
+  /** Picoseconds of field time a second; left out or null: as fast as the server goes. */
+  pacePsPerSecond?: number | null;
   memoryBytes: number;
 }
 

@@ -1,8 +1,9 @@
 import { Inject, Injectable } from "@nestjs/common";
 import { estimateCost, readScene, resolveScene } from "@heddle/kernels/scene";
+import type { z } from "zod";
 import type { Actor } from "../common/actor.js";
 import { notFound, Refusal } from "../common/refusal.js";
-import { isOver, type RunCommand, type RunDto, type RunState } from "../contract/runs.js";
+import { isOver, type RunCommand, type RunDto, type RunState, type StartRunBody } from "../contract/runs.js";
 import { Dispatcher } from "./live/dispatcher.js";
 import { NoAnswer, type LiveRun } from "./live/live-run.js";
 import { gigabytes, QUEUE_LIMITS, type QueueLimits } from "./queue/queue-limits.js";
@@ -34,14 +35,22 @@ export class RunsService {
   ) {}
 
   /** @throws Refusal "not-found", "scene-refused", "too-large" or "queue-full" */
-  async start(actor: Actor, sceneId: string, revision: number, startPaused: boolean): Promise<RunDto> {
+  async start(actor: Actor, sceneId: string, wanted: z.output<typeof StartRunBody>): Promise<RunDto> {
+    const { revision, paused: startPaused, pacePsPerSecond } = wanted;
     if (!(await this.repository.sceneExists(sceneId, actor.workspace.id))) throw notFound("scene");
     const document = await this.repository.document(sceneId, revision);
     if (document === null)
       throw new Refusal("not-found", `This scene has no revision ${revision}: save it first.`);
 
     const entered = await this.repository.enter(
-      { sceneId, revision, personId: actor.person.id, startPaused, memoryBytes: this.memoryFor(document) },
+      {
+        sceneId,
+        revision,
+        personId: actor.person.id,
+        startPaused,
+        pacePsPerSecond,
+        memoryBytes: this.memoryFor(document),
+      },
       this.limits,
     );
     if ("full" in entered) throw queueFull(entered.full, entered.queued);

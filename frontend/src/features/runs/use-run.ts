@@ -141,12 +141,7 @@ export function useRun({ sceneId, sinks, view, save }: UseRunOptions): RunHandle
     async (paused: boolean) => {
       const revision = await save();
       if (revision === null) return;
-      // A paced run is started paused, so that it does not rush off before its pace is known.
-      const told = await startRun(sceneId, { revision, paused: paused || chosenPace !== null });
-      tellRun(client, told);
-      if (chosenPace === null) return;
-      tellRun(client, await commandRun(told.id, { kind: "pace", picosecondsPerSecond: chosenPace }));
-      if (!paused) tellRun(client, await commandRun(told.id, { kind: "resume" }));
+      tellRun(client, await startRun(sceneId, { revision, paused, pacePsPerSecond: chosenPace }));
     },
     [save, sceneId, chosenPace, client],
   );

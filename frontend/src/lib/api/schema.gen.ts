@@ -782,6 +782,8 @@ export interface components {
             message: string;
         };
         StartRunBody: {
+            /** @default null */
+            pacePsPerSecond: number | null;
             /** @default false */
             paused: boolean;
             revision: number;

@@ -33,7 +33,7 @@ export const useResult = (run: RunDto | null) => {
 /** @throws {ApiError} */
 export async function startRun(
   sceneId: string,
-  body: { revision: number; paused: boolean },
+  body: { revision: number; paused: boolean; pacePsPerSecond: number | null },
 ): Promise<RunDto> {
   const { data } = await api.POST("/api/scenes/{sceneId}/runs", { params: { path: { sceneId } }, body });
   return present(data);
