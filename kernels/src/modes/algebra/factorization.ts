@@ -11,6 +11,7 @@ export class PivotError extends Error {
   override name = "PivotError";
 }
 
+/** Of what stood on the diagonal when the part's elimination began. */
 const SMALLEST_PIVOT = 1e-13;
 
 export class Factorization {
@@ -70,7 +71,7 @@ export class Factorization {
     const matrix = new Float64Array(perElement * perElement);
     let top = 0;
     let negative = 0;
-    let scale = 0;
+    const diagonal = new Float64Array(largest);
     parts.forEach((part, index) => {
       const { first, count: k, border } = part;
       const m = k + border.length;
@@ -88,11 +89,11 @@ export class Factorization {
         top -= child.length ** 2;
         addChild(front, m, stack, top, child, place);
       }
-      for (let n = 0; n < k; n += 1) scale = Math.max(scale, Math.abs(front[n * m + n]));
+      for (let n = 0; n < k; n += 1) diagonal[n] = Math.abs(front[n * m + n]);
       eliminate(front, m, k);
       for (let n = 0; n < k; n += 1) {
         const pivot = front[n * m + n];
-        if (!(Math.abs(pivot) > SMALLEST_PIVOT * scale)) throw new PivotError("A pivot vanished.");
+        if (!(Math.abs(pivot) > SMALLEST_PIVOT * diagonal[n])) throw new PivotError("A pivot vanished.");
         if (pivot < 0) negative += 1;
         d[first + n] = pivot;
       }

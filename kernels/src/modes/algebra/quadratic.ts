@@ -6,6 +6,9 @@
  * integrated here anew with ∫L₁ᵃL₂ᵇL₃ᶜ = 2A·a!b!c!/(a+b+c+2)!).
  */
 
+/** Twice the area of the flattest triangle over the square of its longest side. */
+const FLATTEST = 1e-7;
+
 /** Numbers kept per element: k01, k12, k20, m·A. */
 export const ELEMENT_NUMBERS = 4;
 
@@ -75,10 +78,16 @@ export function elementNumbers(
 ): void {
   const [ax, ay, bx, by, cx, cy] = corner;
   const twice = (bx - ax) * (cy - ay) - (cx - ax) * (by - ay);
-  // ∇L of a corner is the opposite side, turned, over twice the area.
-  const scale = s / (2 * twice);
+  const longest = Math.max(
+    (bx - ax) ** 2 + (by - ay) ** 2,
+    (cx - bx) ** 2 + (cy - by) ** 2,
+    (ax - cx) ** 2 + (ay - cy) ** 2,
+  );
+  // ∇L of a corner is the opposite side, turned, over twice the area. A triangle flatter than rounding can tell only ties its middle
+  // corner to the line between the others; stiffer than this it would drown the rest.
+  const scale = s / (2 * Math.max(twice, FLATTEST * longest));
   numbers[at] = scale * ((cx - bx) * (ax - cx) + (cy - by) * (ay - cy));
   numbers[at + 1] = scale * ((ax - cx) * (bx - ax) + (ay - cy) * (by - ay));
   numbers[at + 2] = scale * ((bx - ax) * (cx - bx) + (by - ay) * (cy - by));
-  numbers[at + 3] = (m * twice) / 2;
+  numbers[at + 3] = (m * Math.max(twice, 0)) / 2;
 }

@@ -30,15 +30,17 @@ export interface Drawing {
   edges: Readonly<Record<SectionSide, "absorbing" | "electric" | "magnetic">>;
 }
 
-/** Chords of curves are about this many element legs long. */
+/** Chords of curves are at most about this many element legs, and this many radii, long. */
 const CHORD_LEGS = 0.7;
+const CHORD_RADII = 0.3;
 
 /**
  * How far a chord of length c may leave a curve of radius r: c²/8r. With polygons of the curve's own area the first-order
  * effect of the chords on an eigenvalue cancels, so what is left is of fourth order in the leg.
  */
 function toleranceMm(radiusMm: number, legMm: number): number {
-  return (CHORD_LEGS * legMm) ** 2 / (8 * Math.max(radiusMm, legMm / 4));
+  const chord = Math.min(CHORD_LEGS * legMm, CHORD_RADII * radiusMm);
+  return chord ** 2 / (8 * radiusMm);
 }
 
 function radiusOf(shape: AreaShape): number {
