@@ -11,6 +11,7 @@ import {
   statSync,
   writeFileSync,
 } from "node:fs";
+import { createRequire } from "node:module";
 import { dirname, join } from "node:path";
 import { fileURLToPath } from "node:url";
 
@@ -33,9 +34,9 @@ const isFresh = () =>
   existsSync(target) &&
   Math.max(...sources().map((path) => statSync(path).mtimeMs)) <= statSync(target).mtimeMs;
 
-/** asc's script: it stands beside the entry that the package exports. */
+/** asc's script, found beside the one entry of its package that may be required. */
 const compiler = () =>
-  join(dirname(fileURLToPath(import.meta.resolve("assemblyscript/asc"))), "..", "bin", "asc.js");
+  join(dirname(createRequire(import.meta.url).resolve("assemblyscript/transform")), "..", "bin", "asc.js");
 
 /** Compiles the kernel where its module is missing or older than a source. Throws with the compiler's words. */
 export const ensureAssembled = () => {
