@@ -1,4 +1,6 @@
 /** What drives the fields. */
+export { loadGenerators, saveGenerators, waveformSignals } from "./generators.js";
+export type { SignalGenerator } from "./generators.js";
 export { lineSourcePoints } from "./line-source.js";
 export { bilinear } from "./spreading.js";
 export type { LatticeShare, PointAxis } from "./spreading.js";

@@ -1,4 +1,5 @@
 /** The session: one engine, its scene, what it records, and when it ends. */
+import { loadGenerators, saveGenerators } from "../drives/index.js";
 import type { FieldQuantity, FieldSample, ViewRequest } from "../frames/index.js";
 import type { FieldArray, Lattice } from "../lattice/index.js";
 import type { SectionCoefficients } from "../media/index.js";
@@ -129,30 +130,26 @@ export class EngineSession implements SolveSession {
   }
 
   private takeSteps(steps: number): void {
-    const { sources } = this.drives;
-    const { dt } = this.lattice;
-    const signals = new Float64Array(steps * sources.length);
-    const largest = new Float64Array(sources.length);
-    for (let t = 0; t < steps; t += 1) {
-      const time = (this.engine.step + t + 0.5) * dt;
-      sources.forEach((source, index) => {
-        const value = source.amplitude * source.waveform.valueAt(time);
-        signals[t * sources.length + index] = value;
-        if (!(Math.abs(value) <= largest[index])) largest[index] = Math.abs(value);
-      });
+    const { sources, signals: width } = this.drives;
+    const signals = new Float64Array(steps * width);
+    let column = 0;
+    for (const { generator } of sources) {
+      generator.write(this.engine.step, steps, signals, width, column);
+      column += generator.signals;
     }
     const records = new Float64Array(steps * this.parts.probes.records);
     this.engine.advance(steps, signals, records);
     this.traces.append(samplesOf(this.parts.probes, records, steps), steps);
     const atEnd = this.engine.step >= this.grid.maxSteps;
-    if (this.engine.step % CHECK_INTERVAL === 0 || atEnd) this.check(largest);
+    if (this.engine.step % CHECK_INTERVAL === 0 || atEnd) this.check(signals);
     if (atEnd && !this.failure) this.stopReason ??= "time";
   }
 
-  private check(largestSignals: Float64Array): void {
+  /** @param signals those of the last steps */
+  private check(signals: Float64Array): void {
     this.energy = storedEnergy(this.engine);
     if (!Number.isFinite(this.energy)) {
-      this.failure = nonFiniteFailure(this.engine, this.resolved, this.drives.sources, largestSignals);
+      this.failure = nonFiniteFailure(this.engine, this.resolved, this.drives, signals);
       return;
     }
     this.energyMax = Math.max(this.energyMax, this.energy);
@@ -204,8 +201,8 @@ export class EngineSession implements SolveSession {
       const clearing = this.clearOverdamped(this.coefficients.row);
       engine.setRows(box.firstRow, box.lastRow, clearing);
     }
-    this.drives = drivesOf(resolved, lattice);
-    engine.setDrives(this.drives.points, this.drives.sources.length);
+    this.drives = drivesOf(resolved, lattice, this.drives);
+    engine.setDrives(this.drives.points, this.drives.signals);
     this.scene = scene;
     this.resolved = resolved;
   }
@@ -258,10 +255,12 @@ export class EngineSession implements SolveSession {
     };
     const traces = this.traces.save();
     const sums = saveSums(this.parts.probes.probes);
+    const driving = saveGenerators(this.drives.sources.map(({ generator }) => generator));
     const bytes = packBlocks(header, [
       this.engine.save(),
       new Uint8Array(traces.buffer, traces.byteOffset, traces.byteLength),
       new Uint8Array(sums.buffer, sums.byteOffset, sums.byteLength),
+      new Uint8Array(driving.buffer, driving.byteOffset, driving.byteLength),
     ]);
     return { version: 1, step: this.engine.step, bytes };
   }
@@ -271,7 +270,7 @@ export class EngineSession implements SolveSession {
     const words = header as SnapshotHeader;
     if (words.openedSha256 !== this.openedSha256)
       throw new RangeError("The snapshot belongs to another scene.");
-    if (words.engineText !== this.engineText() || blocks.length !== 3) {
+    if (words.engineText !== this.engineText() || blocks.length !== 4) {
       throw new RangeError("The snapshot belongs to another grid, engine or precision.");
     }
     const scene = words.scene ?? this.opened;
@@ -279,6 +278,10 @@ export class EngineSession implements SolveSession {
     this.engine.load(blocks[0]);
     this.traces.load(new Float64Array(blocks[1].slice().buffer), words.samples);
     loadSums(this.parts.probes.probes, new Float64Array(blocks[2].slice().buffer));
+    loadGenerators(
+      this.drives.sources.map(({ generator }) => generator),
+      new Float64Array(blocks[3].slice().buffer),
+    );
     this.energy = words.energy;
     this.energyMax = words.energyMax;
     this.stopReason = words.stopReason;

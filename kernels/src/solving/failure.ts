@@ -4,7 +4,7 @@ import { cellOfColumn, cellOfRow } from "../lattice/index.js";
 import type { ResolvedScene } from "../scene/index.js";
 import { mediumAt } from "../scene/index.js";
 import type { Engine } from "../stepping/index.js";
-import type { PlannedSource } from "./plan.js";
+import type { DrivePlan, PlannedSource } from "./plan.js";
 import type { RunFailure } from "./session.js";
 
 /** Index of the first field point that is not finite; null where all are. */
@@ -22,20 +22,38 @@ const placeMm = (lattice: Lattice, row: number, column: number): [number, number
   Math.min(lattice.ny, Math.max(0, cellOfRow(lattice, row))) * lattice.dy * 1000,
 ];
 
+/** The first source of which a signal reaches `limit` or is no number. */
+function loudSource(
+  { sources, signals: width }: DrivePlan,
+  signals: Float64Array,
+  limit: number,
+): PlannedSource | null {
+  let column = 0;
+  for (const source of sources) {
+    const end = column + source.generator.signals;
+    for (let n = 0; n < signals.length; n += 1) {
+      const within = n % width >= column && n % width < end;
+      if (within && !(Math.abs(signals[n]) < limit)) return source;
+    }
+    column = end;
+  }
+  return null;
+}
+
 /** Names a source whose current itself is no number, else the medium where the field first went wrong. */
 export function nonFiniteFailure(
   engine: Engine,
   scene: ResolvedScene,
-  sources: readonly PlannedSource[],
-  largestSignals: Float64Array,
+  drives: DrivePlan,
+  signals: Float64Array,
 ): RunFailure {
   const step = `step ${engine.step}`;
   const limit = engine.precision === "f32" ? 1e30 : 1e290;
-  const loud = sources.findIndex((_, index) => !(largestSignals[index] < limit));
-  if (loud >= 0) {
+  const loud = loudSource(drives, signals, limit);
+  if (loud) {
     return {
       code: "non-finite",
-      sentence: `The field is no longer finite at ${step}: the source "${sources[loud].id}" drives more than a number can hold; lower its amplitude or samples.`,
+      sentence: `The field is no longer finite at ${step}: the source "${loud.id}" drives more than a number can hold; lower its amplitude or samples.`,
     };
   }
   const at = firstNonFinite(engine);

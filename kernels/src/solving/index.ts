@@ -41,7 +41,7 @@ export async function openSession(scene: Scene, options: SessionOptions = {}): P
     coefficients: coefficients.row,
     layers: layersOf(resolved, lattice),
     drives: drives.points,
-    signals: drives.sources.length,
+    signals: drives.signals,
     taps: probes.taps,
     records: probes.records,
   });

@@ -1,8 +1,8 @@
 /** A scene compiled for an engine: lattice, coefficients, drives. */
 import { absorbingLayers } from "../boundaries/index.js";
 import type { AbsorbingLayers } from "../boundaries/index.js";
-import type { CompiledWaveform } from "../drives/index.js";
-import { compileWaveform, lineSourcePoints } from "../drives/index.js";
+import type { CompiledWaveform, SignalGenerator } from "../drives/index.js";
+import { compileWaveform, lineSourcePoints, waveformSignals } from "../drives/index.js";
 import type { PaintedArea } from "../geometry/index.js";
 import type { Lattice, Side } from "../lattice/index.js";
 import { buildLattice } from "../lattice/index.js";
@@ -14,15 +14,21 @@ import type { DrivePoint } from "../stepping/index.js";
 
 export interface PlannedSource {
   id: string;
-  amplitude: number;
+  /** What a spectrum is divided by. */
   waveform: CompiledWaveform;
   /** Sources with the same text share a waveform. */
   waveformText: string;
+  /** The source as it stands in the scene: an edit that leaves it alone leaves it its state. */
+  text: string;
+  generator: SignalGenerator;
 }
 
 export interface DrivePlan {
   sources: readonly PlannedSource[];
+  /** Their signals are numbered in the order of the sources. */
   points: readonly DrivePoint[];
+  /** Signals of a step, of all sources together. */
+  signals: number;
   /** Seconds after which no source drives any more; infinite with a tone. */
   endSeconds: number;
 }
@@ -87,20 +93,28 @@ export function layersOf(scene: ResolvedScene, lattice: Lattice): AbsorbingLayer
   return absorbingLayers(lattice, scene.band.fromGHz * 1e9, sides);
 }
 
-export function drivesOf(scene: ResolvedScene, lattice: Lattice): DrivePlan {
+/** @param previous the drives before an edit: a source that it left alone goes on */
+export function drivesOf(scene: ResolvedScene, lattice: Lattice, previous?: DrivePlan): DrivePlan {
   const sources: PlannedSource[] = [];
   const points: DrivePoint[] = [];
+  let signals = 0;
   for (const source of scene.sources) {
     if (source.kind !== "line")
       throw new RangeError(`The source "${source.id}" is of a kind no engine drives.`);
-    points.push(...lineSourcePoints(lattice, source.x, source.y, sources.length));
+    const text = canonicalJson(source);
+    const waveform = compileWaveform(source.waveform);
+    const kept = previous?.sources.find((candidate) => candidate.text === text)?.generator;
+    const generator = kept ?? waveformSignals(waveform, source.amplitude, lattice.dt);
+    points.push(...lineSourcePoints(lattice, source.x, source.y, signals));
+    signals += generator.signals;
     sources.push({
       id: source.id,
-      amplitude: source.amplitude,
-      waveform: compileWaveform(source.waveform),
+      waveform,
       waveformText: canonicalJson(source.waveform),
+      text,
+      generator,
     });
   }
   const endSeconds = sources.reduce((latest, source) => Math.max(latest, source.waveform.endSeconds), 0);
-  return { sources, points, endSeconds };
+  return { sources, points, signals, endSeconds };
 }
