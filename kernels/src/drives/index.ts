@@ -6,3 +6,6 @@ export { bilinear } from "./spreading.js";
 export type { LatticeShare, PointAxis } from "./spreading.js";
 export { compileWaveform } from "./waveforms.js";
 export type { CompiledWaveform } from "./waveforms.js";
+export { PlaneWaveSignals } from "./plane-wave.js";
+export { planeWavePoints, totalFieldBox } from "./total-field-box.js";
+export type { TotalFieldBox } from "./total-field-box.js";

@@ -38,6 +38,7 @@ export type FeatureSet = ReadonlySet<Feature | Refinement>;
 /** What the engines compute today. */
 export const COMPUTED: FeatureSet = new Set<Feature | Refinement>([
   "conformal-metal",
+  "plane-wave",
   "line-probe",
   "limit-level",
   "limit-q",

@@ -100,7 +100,7 @@ export class EngineSession implements SolveSession {
   }
 
   get timeNs(): number {
-    return this.engine.step * this.lattice.dt * 1e9;
+    return (this.drives.firstStep + this.engine.step) * this.lattice.dt * 1e9;
   }
 
   get decayDb(): number {
@@ -130,11 +130,11 @@ export class EngineSession implements SolveSession {
   }
 
   private takeSteps(steps: number): void {
-    const { sources, signals: width } = this.drives;
+    const { sources, signals: width, firstStep } = this.drives;
     const signals = new Float64Array(steps * width);
     let column = 0;
     for (const { generator } of sources) {
-      generator.write(this.engine.step, steps, signals, width, column);
+      generator.write(firstStep + this.engine.step, steps, signals, width, column);
       column += generator.signals;
     }
     const records = new Float64Array(steps * this.parts.probes.records);
@@ -153,7 +153,7 @@ export class EngineSession implements SolveSession {
       return;
     }
     this.energyMax = Math.max(this.energyMax, this.energy);
-    const over = this.engine.step * this.lattice.dt > this.drives.endSeconds;
+    const over = (this.drives.firstStep + this.engine.step) * this.lattice.dt > this.drives.endSeconds;
     const floor = this.energyMax * 10 ** (-this.resolved.stop.decayDb / 10);
     if (over && this.energyMax > 0 && this.energy <= floor) this.stopReason = "decay";
   }
@@ -168,7 +168,7 @@ export class EngineSession implements SolveSession {
     return probes.map((probe, index) => ({
       probe: probe.id,
       unit: probe.unit,
-      startNs: probe.firstSampleStep * stepNs,
+      startNs: (this.drives.firstStep + probe.firstSampleStep) * stepNs,
       stepNs,
       from: Math.min(from, this.traces.length),
       values: this.traces.since(index, from).slice(),

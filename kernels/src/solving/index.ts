@@ -6,6 +6,7 @@ import { chooseEngine } from "./engines.js";
 import { coefficientsOf, drivesOf, latticeOf, layersOf } from "./plan.js";
 import { probesOf } from "./probe-plan.js";
 import type { SessionOptions, SolveSession } from "./session.js";
+import { waveBoundaryProblems } from "./wave-boundary.js";
 
 export * from "./session.js";
 export { SOLVER_VERSION } from "./version.js";
@@ -30,8 +31,10 @@ export async function openSession(scene: Scene, options: SessionOptions = {}): P
   const read = readScene(scene, { purpose: "run" });
   if (!read.ok) throw new SceneError(read.problems);
   const resolved = resolveScene(read.scene);
-  const { grid, lattice } = latticeOf(resolved);
+  const { grid: scenesGrid, lattice } = latticeOf(resolved);
   const drives = drivesOf(resolved, lattice);
+  // The scene's time ends where it says, wherever it starts.
+  const grid = { ...scenesGrid, maxSteps: scenesGrid.maxSteps - drives.firstStep };
   const { fromGHz, toGHz } = resolved.band;
   const frequenciesGHz = options.frequenciesGHz ?? evenly(fromGHz, toGHz, DEFAULT_FREQUENCIES);
   const probes = probesOf(resolved, lattice, frequenciesGHz);
@@ -45,6 +48,11 @@ export async function openSession(scene: Scene, options: SessionOptions = {}): P
     taps: probes.taps,
     records: probes.records,
   });
+  const problems = waveBoundaryProblems(resolved, drives, engine);
+  if (problems.length > 0) {
+    engine.dispose();
+    throw new SceneError(problems);
+  }
   return new EngineSession({
     scene: read.scene,
     resolved,

@@ -2,10 +2,17 @@
 import { absorbingLayers } from "../boundaries/index.js";
 import type { AbsorbingLayers } from "../boundaries/index.js";
 import type { CompiledWaveform, SignalGenerator } from "../drives/index.js";
-import { compileWaveform, lineSourcePoints, waveformSignals } from "../drives/index.js";
+import {
+  compileWaveform,
+  lineSourcePoints,
+  planeWavePoints,
+  PlaneWaveSignals,
+  totalFieldBox,
+  waveformSignals,
+} from "../drives/index.js";
 import type { PaintedArea } from "../geometry/index.js";
 import type { Lattice, Side } from "../lattice/index.js";
-import { buildLattice } from "../lattice/index.js";
+import { buildLattice, C0, ETA0 } from "../lattice/index.js";
 import type { LatticeBox, SectionMedia, SolverMedium } from "../media/index.js";
 import { propertiesOf, SectionCoefficients } from "../media/index.js";
 import type { Grid, Medium, ResolvedScene } from "../scene/index.js";
@@ -18,6 +25,10 @@ export interface PlannedSource {
   waveform: CompiledWaveform;
   /** Sources with the same text share a waveform. */
   waveformText: string;
+  /** Where in a step the waveform drives: w((n + offset)Δt). */
+  offset: 0 | 0.5;
+  /** Seconds after which it drives no more. */
+  endSeconds: number;
   /** The source as it stands in the scene: an edit that leaves it alone leaves it its state. */
   text: string;
   generator: SignalGenerator;
@@ -31,6 +42,8 @@ export interface DrivePlan {
   signals: number;
   /** Seconds after which no source drives any more; infinite with a tone. */
   endSeconds: number;
+  /** The engine's step 0 is this step counted from time 0: negative where a wave comes before its waveform's time 0. */
+  firstStep: number;
 }
 
 const solverMedium = (medium: Medium): SolverMedium =>
@@ -93,28 +106,95 @@ export function layersOf(scene: ResolvedScene, lattice: Lattice): AbsorbingLayer
   return absorbingLayers(lattice, scene.band.fromGHz * 1e9, sides);
 }
 
-/** @param previous the drives before an edit: a source that it left alone goes on */
+interface Driving {
+  generator: SignalGenerator;
+  points: DrivePoint[];
+  offset: 0 | 0.5;
+  endSeconds: number;
+  firstStep: number;
+}
+
+/** A plane wave in the background. Throws a RangeError where that is a perfect conductor. */
+function planeWaveOf(
+  scene: ResolvedScene,
+  source: Extract<ResolvedScene["sources"][number], { kind: "plane-wave" }>,
+  lattice: Lattice,
+  firstSignal: number,
+  kept: SignalGenerator | undefined,
+): Driving {
+  const background = scene.mediaById.get(scene.background);
+  if (!background || isPerfect(background))
+    throw new RangeError(`The plane wave "${source.id}" needs a background that waves travel in.`);
+  const { epsilon, mu } = propertiesOf(background);
+  const { relativePermittivity, relativePermeability } = background;
+  const { dx, dy, dt } = lattice;
+  const onNodes = lattice.polarization === "TMz";
+  const storage = onNodes ? mu : epsilon;
+  const angle = (source.angle * Math.PI) / 180;
+  const box = totalFieldBox(lattice, source.insetMm);
+  const { points, places } = planeWavePoints(lattice, box, angle, firstSignal);
+  const waveform = compileWaveform(source.waveform);
+  const medium = {
+    mesh: lattice,
+    speed: C0 / Math.sqrt(relativePermittivity * relativePermeability),
+    angle,
+    bGx: ((dt / storage) * dx) / dy,
+    bGy: ((dt / storage) * dy) / dx,
+  };
+  const impedance = ETA0 * Math.sqrt(relativePermeability / relativePermittivity);
+  const amplitude = onNodes ? source.amplitude : source.amplitude / impedance;
+  const generator =
+    kept instanceof PlaneWaveSignals ? kept : new PlaneWaveSignals(medium, waveform, amplitude, places);
+  return {
+    generator,
+    points,
+    offset: 0,
+    endSeconds: waveform.endSeconds + Math.max(0, generator.stepsAfter) * dt,
+    firstStep: generator.firstStep,
+  };
+}
+
+function lineSourceOf(
+  source: Extract<ResolvedScene["sources"][number], { kind: "line" }>,
+  lattice: Lattice,
+  firstSignal: number,
+): Driving {
+  const waveform = compileWaveform(source.waveform);
+  return {
+    generator: waveformSignals(waveform, source.amplitude, lattice.dt),
+    points: lineSourcePoints(lattice, source.x, source.y, firstSignal),
+    offset: 0.5,
+    endSeconds: waveform.endSeconds,
+    firstStep: 0,
+  };
+}
+
+/** @param previous the drives before an edit: a source that it left alone goes on, and so does the count of steps */
 export function drivesOf(scene: ResolvedScene, lattice: Lattice, previous?: DrivePlan): DrivePlan {
   const sources: PlannedSource[] = [];
   const points: DrivePoint[] = [];
   let signals = 0;
+  let firstStep = 0;
   for (const source of scene.sources) {
-    if (source.kind !== "line")
-      throw new RangeError(`The source "${source.id}" is of a kind no engine drives.`);
     const text = canonicalJson(source);
-    const waveform = compileWaveform(source.waveform);
     const kept = previous?.sources.find((candidate) => candidate.text === text)?.generator;
-    const generator = kept ?? waveformSignals(waveform, source.amplitude, lattice.dt);
-    points.push(...lineSourcePoints(lattice, source.x, source.y, signals));
-    signals += generator.signals;
+    const driving =
+      source.kind === "line"
+        ? lineSourceOf(source, lattice, signals)
+        : planeWaveOf(scene, source, lattice, signals, kept);
+    points.push(...driving.points);
+    signals += driving.generator.signals;
+    firstStep = Math.min(firstStep, driving.firstStep);
     sources.push({
       id: source.id,
-      waveform,
+      waveform: compileWaveform(source.waveform),
       waveformText: canonicalJson(source.waveform),
+      offset: driving.offset,
+      endSeconds: driving.endSeconds,
       text,
-      generator,
+      generator: kept ?? driving.generator,
     });
   }
-  const endSeconds = sources.reduce((latest, source) => Math.max(latest, source.waveform.endSeconds), 0);
-  return { sources, points, signals, endSeconds };
+  const endSeconds = sources.reduce((latest, source) => Math.max(latest, source.endSeconds), 0);
+  return { sources, points, signals, endSeconds, firstStep: previous?.firstStep ?? firstStep };
 }

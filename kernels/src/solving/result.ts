@@ -91,7 +91,7 @@ export function buildResult(input: ResultInput): SolveResult {
       quantity: probe.quantity,
       unit: probe.unit,
       trace: {
-        startNs: probe.firstSampleStep * dt * 1e9,
+        startNs: (input.drives.firstStep + probe.firstSampleStep) * dt * 1e9,
         stepNs: dt * 1e9,
         values: Array.from(input.traces(index)),
       },

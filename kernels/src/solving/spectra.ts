@@ -52,17 +52,18 @@ const none = (probes: readonly PlannedProbe[], warning: string): Spectra => ({
   warnings: probes.length > 0 ? [warning] : [],
 });
 
-/** w as it drove the steps: at (n+½)Δt, before the amplitude. */
+/** w as it drove the steps, before the amplitude: from its own time 0 on. */
 export function waveformSignal(input: SpectrumInput): SampledSignal {
-  const { waveform } = input.drives.sources[0];
+  const { waveform, offset } = input.drives.sources[0];
   const { dt, steps } = input;
-  const driven = Math.min(steps, Math.ceil(waveform.endSeconds / dt) + 1);
-  const values = Float64Array.from({ length: driven }, (_, n) => waveform.valueAt((n + 0.5) * dt));
-  return { start: 0.5 * dt, step: dt, values };
+  const last = Math.max(0, input.drives.firstStep + steps);
+  const driven = Math.min(last, Math.ceil(waveform.endSeconds / dt) + 1);
+  const values = Float64Array.from({ length: driven }, (_, n) => waveform.valueAt((n + offset) * dt));
+  return { start: offset * dt, step: dt, values };
 }
 
 export const traceSignal = (input: SpectrumInput, probe: number): SampledSignal => ({
-  start: input.probes[probe].firstSampleStep * input.dt,
+  start: (input.drives.firstStep + input.probes[probe].firstSampleStep) * input.dt,
   step: input.dt,
   values: input.traces(probe),
 });
@@ -73,7 +74,7 @@ function pulseSpectra(input: SpectrumInput): Spectra {
   const divisor = fourierSum(waveform, frequencies);
   const warnings: string[] = [];
   const unfinished = new Set<string>();
-  const over = input.steps * input.dt >= input.drives.endSeconds;
+  const over = (input.drives.firstStep + input.steps) * input.dt >= input.drives.endSeconds;
   if (!over)
     warnings.push(
       "The run was stopped while its sources were still driving; its spectra are of what was driven until then.",
@@ -121,6 +122,8 @@ function pulseSpectra(input: SpectrumInput): Spectra {
 
 function toneSpectra(input: SpectrumInput, hz: number): Spectra {
   const { dt, steps, probes } = input;
+  const { waveform, offset } = input.drives.sources[0];
+  const start = (input.drives.firstStep + offset) * dt;
   const GHz = [hz / 1e9];
   const periods = finalPeriods(Math.floor(steps / 2), dt, hz, TONE_PERIODS);
   if (periods === 0) {
@@ -129,11 +132,9 @@ function toneSpectra(input: SpectrumInput, hz: number): Spectra {
   const window = Math.round(periods / (hz * dt));
   const divisor = tonePhasor(
     {
-      start: 0.5 * dt,
+      start,
       step: dt,
-      values: Float64Array.from({ length: steps }, (_, n) =>
-        input.drives.sources[0].waveform.valueAt((n + 0.5) * dt),
-      ),
+      values: Float64Array.from({ length: steps }, (_, n) => waveform.valueAt(start + n * dt)),
     },
     hz,
     steps - window,
