@@ -55,7 +55,7 @@ describe("axes", () => {
   it("end beyond the time at a round place", () => {
     expect(axisEnd(14.7)).toBe(15);
     expect(axisEnd(0)).toBe(1);
-    expect(axisEnd(9.99)).toBe(15);
+    expect(axisEnd(9.995)).toBe(12);
     for (const time of [0.013, 0.5, 1, 7.9, 123]) {
       expect(axisEnd(time)).toBeGreaterThan(time);
       expect(axisEnd(time)).toBeLessThan(time * 1.6);

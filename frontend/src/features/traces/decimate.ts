@@ -43,13 +43,13 @@ export function sampleAt(
   return index < 0 || index >= trace.length ? null : (trace.values[index] ?? null);
 }
 
-const LADDER = [1, 1.5, 2, 3, 4, 5, 6, 8, 10];
+const LADDER = [1, 1.2, 1.5, 2, 2.5, 3, 4, 5, 6, 8, 10];
 
-/** The end of a time axis that holds `timeNs` and moves seldom: 1, 1.5, 2, 3 … times a power of ten. */
+/** The end of a time axis that holds `timeNs` and moves seldom: 1, 1.2, 1.5, 2 … times a power of ten. */
 export function axisEnd(timeNs: number): number {
   if (!(timeNs > 0)) return 1;
   const decade = 10 ** Math.floor(Math.log10(timeNs));
-  const factor = LADDER.find((candidate) => candidate * decade >= timeNs * 1.02) ?? 15;
+  const factor = LADDER.find((candidate) => candidate * decade >= timeNs * 1.001) ?? 12;
   return Number((factor * decade).toPrecision(6));
 }
 

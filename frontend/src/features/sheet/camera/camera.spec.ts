@@ -35,7 +35,7 @@ describe("view", () => {
     const block = { widthPx: 330, heightPx: 120 };
     const view = fitClearOf(section, { widthPx, heightPx }, insets, block);
     const corner = toPx(view, { xMm: 300, yMm: 0 });
-    const beside = corner.xPx <= widthPx - insets.right - block.widthPx + 1e-9;
+    const beside = corner.xPx <= widthPx - block.widthPx + 1e-9;
     const above = corner.yPx <= heightPx - insets.bottom - block.heightPx + 1e-9;
     expect(beside || above).toBe(true);
   });

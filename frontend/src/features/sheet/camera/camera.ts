@@ -34,7 +34,7 @@ export function fitBox(box: BoxMm, size: { widthPx: number; heightPx: number }, 
 
 /**
  * Fits the section beside or above a title block that sits in the lower right corner, whichever leaves the
- * section larger, so that the block covers none of it.
+ * section larger, so that the block covers none of it. What else stands at the right edge may stand above the block.
  */
 export function fitClearOf(
   box: BoxMm,
@@ -43,7 +43,7 @@ export function fitClearOf(
   block: { widthPx: number; heightPx: number } | null,
 ): Viewport {
   if (block === null) return fitBox(box, size, insets);
-  const beside = fitBox(box, size, { ...insets, right: insets.right + block.widthPx });
+  const beside = fitBox(box, size, { ...insets, right: Math.max(insets.right, block.widthPx) });
   const above = fitBox(box, size, { ...insets, bottom: insets.bottom + block.heightPx });
   return beside.pxPerMm > above.pxPerMm ? beside : above;
 }

@@ -4,7 +4,8 @@ import { figure } from "../camera/lengths-in-words";
 import type { Drawing, DrawnSource } from "../document/drawing";
 import { type ItemRef, makeRef } from "../document/refs";
 import type { Pen } from "./draw-paint";
-import { drawText, strokeOnHalo } from "./draw-text";
+import { type LabelBoard, labelBoard } from "./draw-labels";
+import { strokeOnHalo } from "./draw-text";
 
 const at = (pen: Pen, x: number, y: number): [number, number] => {
   const { xPx, yPx } = toPx(pen.view, { xMm: x, yMm: y });
@@ -17,11 +18,17 @@ export const sourceLabel = (source: DrawnSource, polarization: "TMz" | "TEz"): s
   return `${source.id}, ${figure(source.amplitude, 6)}\u202f${unit}`;
 };
 
-function drawSource(pen: Pen, source: DrawnSource, drawing: Drawing, selected: boolean): void {
+function drawSource(
+  pen: Pen,
+  source: DrawnSource,
+  drawing: Drawing,
+  selected: boolean,
+  labels: LabelBoard,
+): void {
   const { context, palette } = pen;
   const label = sourceLabel(source, drawing.scene.polarization);
   if (source.kind === "plane-wave") {
-    drawPlaneWave(pen, source.angle, drawing, label, selected);
+    drawPlaneWave(pen, source.angle, drawing, label, selected, labels);
     return;
   }
   const [x, y] = at(pen, source.x, source.y);
@@ -34,11 +41,19 @@ function drawSource(pen: Pen, source: DrawnSource, drawing: Drawing, selected: b
   context.arc(x, y, 2, 0, 2 * Math.PI);
   context.fillStyle = selected ? palette.sheet : palette.ink;
   context.fill();
-  drawText(pen, label, x + 12, y);
+  labels.occupy(x - 7, y - 7, 14, 14);
+  labels.add(label, x, y, 12);
 }
 
 /** Three fronts and an arrow along the direction of travel, at the side that the wave comes from. */
-function drawPlaneWave(pen: Pen, angle: number, drawing: Drawing, label: string, selected: boolean): void {
+function drawPlaneWave(
+  pen: Pen,
+  angle: number,
+  drawing: Drawing,
+  label: string,
+  selected: boolean,
+  labels: LabelBoard,
+): void {
   const { context, palette, view } = pen;
   const radians = (angle * Math.PI) / 180;
   const [ux, uy] = [Math.cos(radians), -Math.sin(radians)];
@@ -54,7 +69,7 @@ function drawPlaneWave(pen: Pen, angle: number, drawing: Drawing, label: string,
   context.lineTo(x + ux * 34, y + uy * 34);
   strokeOnHalo(pen, 1.2, selected ? palette.accent : palette.ink);
   drawArrowHead(pen, [x + ux * 38, y + uy * 38], [ux, uy], selected ? palette.accent : palette.ink);
-  drawText(pen, label, x + 6, y - 24);
+  labels.add(label, x, y - 24, 6);
 }
 
 /** A slim filled arrowhead with its tip at `tip`, pointing along the unit vector `along`. */
@@ -84,7 +99,7 @@ const INWARD: Record<ResolvedPort["inward"], readonly [number, number]> = {
   "-y": [0, 1],
 };
 
-function drawPort(pen: Pen, port: ResolvedPort, selected: boolean): void {
+function drawPort(pen: Pen, port: ResolvedPort, selected: boolean, labels: LabelBoard): void {
   const { context, palette } = pen;
   const [x1, y1] = at(pen, port.from[0], port.from[1]);
   const [x2, y2] = at(pen, port.to[0], port.to[1]);
@@ -101,10 +116,18 @@ function drawPort(pen: Pen, port: ResolvedPort, selected: boolean): void {
   context.lineTo(mx + ux * 16, my + uy * 16);
   strokeOnHalo(pen, 1.2, colour);
   drawArrowHead(pen, [mx + ux * 22, my + uy * 22], [ux, uy], colour);
-  drawText(pen, port.drive ? `${port.id}, driven` : port.id, mx + ux * 26 + 4, my + uy * 26 - 10);
+  labels.add(port.drive ? `${port.id}, driven` : port.id, mx + ux * 26, my + uy * 26 - 10, 4);
 }
 
-function drawFlag(pen: Pen, x: number, y: number, selected: boolean): void {
+/** A probe's flag with its label. */
+function drawFlag(
+  pen: Pen,
+  x: number,
+  y: number,
+  selected: boolean,
+  label: string,
+  labels: LabelBoard,
+): void {
   const { context, palette } = pen;
   context.beginPath();
   context.moveTo(x, y);
@@ -122,16 +145,17 @@ function drawFlag(pen: Pen, x: number, y: number, selected: boolean): void {
   context.arc(x, y, 2.2, 0, 2 * Math.PI);
   context.fillStyle = selected ? palette.accent : palette.ink;
   context.fill();
+  labels.occupy(x - 3, y - 21, 18, 24);
+  labels.add(label, x, y - 15, 18);
 }
 
-function drawProbe(pen: Pen, probe: ResolvedProbe, selected: boolean): void {
+function drawProbe(pen: Pen, probe: ResolvedProbe, selected: boolean, labels: LabelBoard): void {
   const { context, palette } = pen;
   const colour = selected ? palette.accent : palette.ink;
   const label = probe.name ?? probe.id;
   if (probe.kind === "point") {
     const [x, y] = at(pen, probe.x, probe.y);
-    drawFlag(pen, x, y, selected);
-    drawText(pen, label, x + 18, y - 15);
+    drawFlag(pen, x, y, selected, label, labels);
     return;
   }
   context.beginPath();
@@ -141,8 +165,7 @@ function drawProbe(pen: Pen, probe: ResolvedProbe, selected: boolean): void {
     context.rect(x, y, probe.width * pen.view.pxPerMm, probe.height * pen.view.pxPerMm);
     strokeOnHalo(pen, 1, colour);
     context.setLineDash([]);
-    drawFlag(pen, x, y, selected);
-    drawText(pen, label, x + 18, y - 15);
+    drawFlag(pen, x, y, selected, label, labels);
     return;
   }
   const [x1, y1] = at(pen, probe.from[0], probe.from[1]);
@@ -151,7 +174,7 @@ function drawProbe(pen: Pen, probe: ResolvedProbe, selected: boolean): void {
   context.lineTo(x2, y2);
   strokeOnHalo(pen, 1, colour);
   context.setLineDash([]);
-  drawFlag(pen, x1, y1, selected);
+  drawFlag(pen, x1, y1, selected, label, labels);
   const length = Math.hypot(x2 - x1, y2 - y1);
   if (length > 1 && probe.quantity === "voltage")
     drawArrowHead(pen, [x2, y2], [(x2 - x1) / length, (y2 - y1) / length], colour);
@@ -161,13 +184,15 @@ function drawProbe(pen: Pen, probe: ResolvedProbe, selected: boolean): void {
     const [mx, my] = [(x1 + x2) / 2, (y1 + y2) / 2];
     drawArrowHead(pen, [mx + normal[0] * 12, my + normal[1] * 12], normal, colour);
   }
-  drawText(pen, label, x1 + 18, y1 - 15);
 }
 
-/** Sources, ports and probes; the selected ones filled with the accent. In pixels. */
+/** Sources, ports and probes; the selected ones filled with the accent. In pixels. Labels come last, where there is room. */
 export function drawMarks(pen: Pen, drawing: Drawing, selection: ReadonlySet<ItemRef>): void {
-  for (const port of drawing.ports) drawPort(pen, port, selection.has(makeRef("ports", port.id)));
+  const labels = labelBoard(pen);
+  for (const port of drawing.ports) drawPort(pen, port, selection.has(makeRef("ports", port.id)), labels);
   for (const source of drawing.sources)
-    drawSource(pen, source, drawing, selection.has(makeRef("sources", source.id)));
-  for (const probe of drawing.probes) drawProbe(pen, probe, selection.has(makeRef("probes", probe.id)));
+    drawSource(pen, source, drawing, selection.has(makeRef("sources", source.id)), labels);
+  for (const probe of drawing.probes)
+    drawProbe(pen, probe, selection.has(makeRef("probes", probe.id)), labels);
+  labels.draw();
 }

@@ -84,7 +84,7 @@ export function SheetSurface(props: SheetSurfaceProps) {
       bottom: MARGIN.bottom + bottom,
     };
     const kept = block && {
-      widthPx: block.widthPx + BLOCK_GAP,
+      widthPx: block.widthPx + 2 * BLOCK_GAP,
       // The margin below the section is already free; the block needs what is higher than it.
       heightPx: Math.max(0, block.heightPx + 2 * BLOCK_GAP - MARGIN.bottom),
     };
