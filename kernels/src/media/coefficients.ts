@@ -17,6 +17,7 @@ import type { ConductorInput, LatticeBox } from "./conductors.js";
 import { ConductorMap, FIXED_F, FIXED_GX, FIXED_GY } from "./conductors.js";
 import { conformalCuts } from "./conformal.js";
 import type { CutCells } from "./cut-cells.js";
+import type { CutsBefore } from "./open-faces.js";
 import type { Pair, Properties, SolverMedium } from "./properties.js";
 import type { QuarterRow } from "./quarters.js";
 import { QuarterRaster } from "./quarters.js";
@@ -39,6 +40,12 @@ interface MediumUpdates {
   bGy: number;
 }
 
+/** The section before an edit that changed nothing outside `box`. */
+export interface SectionBefore {
+  coefficients: SectionCoefficients;
+  box: LatticeBox;
+}
+
 export class SectionCoefficients {
   private readonly quarters: QuarterRaster;
   private readonly conductors: ConductorMap;
@@ -53,11 +60,10 @@ export class SectionCoefficients {
   private readonly columnShares: Float64Array;
   private readonly hasShares: boolean;
 
-  /** @param previous the section before an edit that changed nothing outside `box` */
   constructor(
     private readonly lattice: Lattice,
     private readonly section: SectionMedia,
-    previous?: { coefficients: SectionCoefficients; box: LatticeBox },
+    previous?: SectionBefore,
   ) {
     const { dx, dy, nx, ny, polarization } = lattice;
     const { areas, background, media, widthMm, heightMm } = section;
@@ -76,7 +82,9 @@ export class SectionCoefficients {
       { ...section, kinds, walls: conformal ? [] : section.walls },
       conformal ? undefined : previous && { map: previous.coefficients.conductors, box: previous.box },
     );
-    this.cuts = conformal ? conformalCuts(lattice, section, this.conductors) : null;
+    this.cuts = conformal
+      ? conformalCuts(lattice, section, this.conductors, previous?.coefficients.cutsBefore(previous.box))
+      : null;
     this.columnShares = Float64Array.from({ length: lattice.columns + 2 }, (_, i) => columnShare(lattice, i));
     this.hasShares = this.columnShares.some((share) => share !== 1);
     this.updates = media.map((medium) =>
@@ -84,6 +92,12 @@ export class SectionCoefficients {
         ? this.updatesOf(medium.properties)
         : { fill: false, aF: 0, bF: 0, aG: 0, bGx: 0, bGy: 0 },
     );
+  }
+
+  /** What of its cuts an edit may keep; undefined where it had none. */
+  cutsBefore(box: LatticeBox): CutsBefore | undefined {
+    const { cuts, conductors } = this;
+    return cuts ? { cuts, flags: conductors.flags, firstRow: box.firstRow, lastRow: box.lastRow } : undefined;
   }
 
   private updatesOf(properties: Properties): MediumUpdates {

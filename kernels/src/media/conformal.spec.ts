@@ -1,12 +1,12 @@
 /** Conformal metal seen from outside: it is stable at its step, keeps energy, is tight, and equals the staircase on mesh lines. */
 import { describe, expect, it } from "vitest";
 import { absorbingLayers } from "../boundaries/index.js";
-import type { AreaShape, Point } from "../geometry/index.js";
+import type { AreaShape, PaintedArea, Point } from "../geometry/index.js";
 import type { LatticePolarization } from "../lattice/index.js";
 import { buildLattice, sectionView } from "../lattice/index.js";
 import { storedEnergy } from "../observers/index.js";
 import { ReferenceEngine, rowCoefficients } from "../stepping/index.js";
-import type { SectionMedia, SolverMedium } from "./index.js";
+import type { SectionBefore, SectionMedia, SolverMedium } from "./index.js";
 import { SectionCoefficients, VACUUM } from "./index.js";
 
 const MEDIA: readonly SolverMedium[] = [
@@ -23,10 +23,14 @@ type Painted = Pick<SectionMedia, "areas" | "walls"> & { background?: number };
 function coefficientsOf(
   polarization: LatticePolarization,
   painted: Painted,
-  { courant = 0.99, metal = "conformal" }: { courant?: number; metal?: "conformal" | "staircase" } = {},
+  {
+    courant = 0.99,
+    metal = "conformal",
+    previous,
+  }: { courant?: number; metal?: "conformal" | "staircase"; previous?: SectionBefore } = {},
 ) {
   const lattice = buildLattice({ polarization, nx: NX, ny: NY, dx: 1e-3, dy: 1.2e-3, edges: BOX, courant });
-  const coefficients = new SectionCoefficients(lattice, {
+  const section: SectionMedia = {
     media: MEDIA,
     background: AIR,
     ...painted,
@@ -34,7 +38,8 @@ function coefficientsOf(
     heightMm: 1.2 * NY,
     omega: 1e10,
     metal,
-  });
+  };
+  const coefficients = new SectionCoefficients(lattice, section, previous);
   return { lattice, coefficients };
 }
 
@@ -207,5 +212,32 @@ describe.each(["TMz", "TEz"] as const)("metal on mesh lines in %s", (polarizatio
       staircase.coefficients.row(j, b);
       expect(a, `row ${j}`).toEqual(b);
     }
+  });
+});
+
+describe("an edit of a part of a section", () => {
+  const disk = (x: number, y: number, medium: number): PaintedArea => ({
+    shape: { kind: "ellipse", x, y, rx: 3.3, ry: 2.6, angle: 20 },
+    medium,
+  });
+  const standing = [disk(6, 20, METAL), disk(20, 5.3, METAL), disk(13, 12.1, METAL)];
+
+  it.each(["TMz", "TEz"] as const)("gives what the whole section gives anew (%s)", (polarization) => {
+    const before = coefficientsOf(polarization, { areas: standing, walls: [] });
+    // Glass over the middle disk bares what was metal, and a new disk leans on it.
+    const areas = [...standing, disk(12, 13, GLASS), disk(16, 12, METAL)];
+    const box = { firstRow: 3, lastRow: 17, firstColumn: 0, lastColumn: NX + 2 };
+    const edited = coefficientsOf(polarization, { areas, walls: [] }, { previous: { ...before, box } });
+    const anew = coefficientsOf(polarization, { areas, walls: [] });
+    const [got, wanted] = [rowCoefficients(before.lattice.stride), rowCoefficients(before.lattice.stride)];
+    let changed = 0;
+    for (let j = 0; j <= before.lattice.rows + 1; j += 1) {
+      edited.coefficients.row(j, got);
+      anew.coefficients.row(j, wanted);
+      expect(got).toEqual(wanted);
+      before.coefficients.row(j, got);
+      if (!got.bF.every((b, i) => b === wanted.bF[i])) changed += 1;
+    }
+    expect(changed).toBeGreaterThan(5);
   });
 });

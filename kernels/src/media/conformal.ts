@@ -5,16 +5,22 @@ import type { ConductorMap } from "./conductors.js";
 import type { SectionMedia } from "./coefficients.js";
 import type { CutCells } from "./cut-cells.js";
 import { cutLines } from "./cut-lines.js";
+import type { CutsBefore } from "./open-faces.js";
 import { openFaces } from "./open-faces.js";
 
 /** Thickness in cells at which a wall is cut: below what counts as a loss of area, above rounding. */
 const WALL_CELLS = 8e-5;
 
-/** Raises the flags of fixed points in `conductors` and returns what is partly open. */
+/**
+ * Raises the flags of fixed points in `conductors` and returns what is partly open.
+ *
+ * @param previous the cuts before an edit that changed nothing outside its rows
+ */
 export function conformalCuts(
   lattice: Lattice,
   section: SectionMedia,
   conductors: ConductorMap,
+  previous?: CutsBefore,
 ): CutCells | null {
   const { media, background, widthMm, heightMm } = section;
   const wall = media.length;
@@ -28,7 +34,9 @@ export function conformalCuts(
   const input = { areas, background, closed, widthMm, heightMm };
   const { flags } = conductors;
   const cuts =
-    lattice.polarization === "TMz" ? cutLines(lattice, input, flags) : openFaces(lattice, input, flags);
+    lattice.polarization === "TMz"
+      ? cutLines(lattice, input, flags)
+      : openFaces(lattice, input, flags, previous);
   const rows = [cuts.storage, cuts.lengthGx, cuts.lengthGy].flatMap((map) =>
     Array.from(map.keys(), (k) => Math.floor(k / lattice.stride)),
   );

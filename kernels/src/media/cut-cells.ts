@@ -7,11 +7,16 @@
  */
 import type { Lattice } from "../lattice/index.js";
 
-export interface CutCells {
-  /** By array index; points that are missing are whole. */
+/** By array index; points that are missing are whole. */
+export interface CutFactors {
   storage: Map<number, number>;
   lengthGx: Map<number, number>;
   lengthGy: Map<number, number>;
+}
+
+export interface CutCells extends CutFactors {
+  /** The factors as drawn, before cells borrowed area from each other: what an edit elsewhere may keep. */
+  drawn?: CutFactors;
   /** Whether a point's loss goes with its storage: with area it does, with what is lent for stability it does not. */
   scalesLoss: boolean;
 }

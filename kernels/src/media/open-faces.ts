@@ -28,10 +28,43 @@ export interface OpenFacesInput {
   heightMm: number;
 }
 
-/** Raises `flags` where nothing is open and returns the factors of what is partly open. */
-export function openFaces(lattice: Lattice, input: OpenFacesInput, flags: Uint8Array): CutCells {
+/** What stood before an edit that changed nothing outside rows first … last. */
+export interface CutsBefore {
+  cuts: CutCells;
+  flags: Uint8Array;
+  firstRow: number;
+  lastRow: number;
+}
+
+/** Flags and drawn factors of the rows that an edit left alone. */
+function keepRows(lattice: Lattice, before: CutsBefore, cut: CutCells, flags: Uint8Array): void {
+  const { stride } = lattice;
+  const [from, to] = [before.firstRow * stride, (before.lastRow + 1) * stride];
+  flags.set(before.flags.subarray(0, from), 0);
+  flags.set(before.flags.subarray(to), to);
+  const { drawn } = before.cuts;
+  for (const name of ["storage", "lengthGx", "lengthGy"] as const) {
+    for (const [k, factor] of drawn?.[name] ?? []) if (k < from || k >= to) cut[name].set(k, factor);
+  }
+}
+
+/**
+ * Raises `flags` where nothing is open and returns the factors of what is partly open.
+ *
+ * @param before only the rows between are cut anew where it is given
+ */
+export function openFaces(
+  lattice: Lattice,
+  input: OpenFacesInput,
+  flags: Uint8Array,
+  before?: CutsBefore,
+): CutCells {
   const { nx, ny, rows, columns, stride, layers } = lattice;
   const cut = noCutCells(true);
+  // The rows behind the upper edge continue the section's last one, so the sweep begins within the section.
+  const firstRow = Math.min(before?.firstRow ?? 0, layers.bottom + ny);
+  const lastRow = Math.min(before?.lastRow ?? rows, rows);
+  if (before) keepRows(lattice, { ...before, firstRow, lastRow }, cut, flags);
   const { areas, background, closed, widthMm, heightMm } = input;
   const sweep = new OpenCellSweep(areas, background, { widthMm, heightMm, columns: nx, rows: ny }, closed);
   /** Cells of lattice row j with those behind the left and right edge; index is the column of F. */
@@ -57,8 +90,8 @@ export function openFaces(lattice: Lattice, input: OpenFacesInput, flags: Uint8A
     if (length < SLIVER) flags[k] |= flag;
     else if (length < 1 - SLIVER) map.set(k, length);
   };
-  let below = cellsOf(0);
-  for (let j = 0; j <= rows; j += 1) {
+  let below = cellsOf(firstRow);
+  for (let j = firstRow; j <= lastRow; j += 1) {
     const above = cellsOf(j + 1);
     const base = j * stride;
     for (let i = 0; i <= columns; i += 1) {
@@ -85,6 +118,11 @@ export function openFaces(lattice: Lattice, input: OpenFacesInput, flags: Uint8A
     }
     below = above;
   }
+  cut.drawn = {
+    storage: new Map(cut.storage),
+    lengthGx: new Map(cut.lengthGx),
+    lengthGy: new Map(cut.lengthGy),
+  };
   borrowAreas(lattice, cut, flags);
   return cut;
 }
