@@ -3,8 +3,8 @@ import type { FillMedium, Pole } from "./schema-media.js";
 
 /** m/s, exact. */
 export const SPEED_OF_LIGHT = 299_792_458;
-/** H/m. CODATA 2022: 1.25663706127e-6. */
-export const VACUUM_PERMEABILITY = 1.25663706127e-6;
+/** H/m. CODATA 2018, as in the solver's own constants. */
+export const VACUUM_PERMEABILITY = 1.25663706212e-6;
 /** F/m, from c and μ₀. */
 export const VACUUM_PERMITTIVITY = 1 / (VACUUM_PERMEABILITY * SPEED_OF_LIGHT ** 2);
 

@@ -12,12 +12,33 @@ import type { Length } from "./schema-values.js";
 /** Plane waves whose inset is left out start this many cells inside the section. */
 export const DEFAULT_INSET_CELLS = 4;
 
-/** The pulse that stays within 20 dB of its peak over the whole band. */
-export const defaultWaveform = (band: Scene["band"]): Waveform => ({
-  kind: "pulse",
-  centerGHz: (band.fromGHz + band.toGHz) / 2,
-  widthGHz: band.toGHz - band.fromGHz,
-});
+/**
+ * The pulse that stays within 20 dB of its peak over the whole band. Its spectrum is g(f − f₀) − g(f + f₀), g a Gaussian 20 dB down at
+ * half the width, which is zero at 0 Hz: in a band that begins near there the pulse is made wider downward until the lower
+ * end is high enough, or as near to it as such a pulse can come.
+ */
+export const defaultWaveform = ({ fromGHz, toGHz }: Scene["band"]): Waveform => {
+  const lowerEndIsHighEnough = (half: number): boolean => {
+    const center = toGHz - half;
+    const level = (f: number): number =>
+      10 ** -(((f - center) / half) ** 2) - 10 ** -(((f + center) / half) ** 2);
+    // The second term moves the peak upward by little: a few places above the middle find it.
+    const peak = Math.max(...[0, 0.1, 0.2, 0.3].map((share) => level(center + share * half)));
+    return level(fromGHz) >= 0.0999 * peak;
+  };
+  const bandwidth = toGHz - fromGHz;
+  let half = bandwidth / 2;
+  if (!lowerEndIsHighEnough(half)) {
+    let [narrow, wide] = [half, 0.75 * toGHz];
+    for (let n = 0; n < 20; n += 1) {
+      const middle = (narrow + wide) / 2;
+      if (lowerEndIsHighEnough(middle)) wide = middle;
+      else narrow = middle;
+    }
+    half = Number(wide.toPrecision(5));
+  }
+  return { kind: "pulse", centerGHz: toGHz - half, widthGHz: 2 * half };
+};
 
 const LENGTH_KEYS: ReadonlySet<string> = new Set([
   "widthMm",
