@@ -40,7 +40,9 @@ export const COMPUTED: FeatureSet = new Set<Feature | Refinement>([
   "conformal-metal",
   "plane-wave",
   "line-probe",
+  "ports",
   "limit-level",
+  "limit-s",
   "limit-q",
   "plate-loss",
 ]);

@@ -25,6 +25,7 @@ export function editProblems(running: ResolvedScene, edited: ResolvedScene, grid
   if (!same(edited.stop, running.stop)) refuse("stop", `A run keeps its stop condition; ${anew}.`);
   if (!same(edited.mesh, running.mesh)) refuse("mesh", `A run keeps its mesh; ${anew}.`);
   if (!same(edited.probes, running.probes)) refuse("probes", `A run keeps its probes; ${anew}.`);
+  if (!same(edited.ports, running.ports)) refuse("ports", `A run keeps its ports; ${anew}.`);
   if (problems.length > 0) return problems;
   const wanted = gridOf(edited);
   if (wanted.nx !== grid.nx || wanted.ny !== grid.ny) {

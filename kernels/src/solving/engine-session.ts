@@ -15,6 +15,8 @@ import type { DrivePlan } from "./plan.js";
 import { coefficientsOf, drivesOf } from "./plan.js";
 import type { ProbePlan } from "./probe-plan.js";
 import { loadSums, samplesOf, saveSums } from "./probe-plan.js";
+import type { LegRecord } from "./leg-record.js";
+import type { PortPlan } from "./port-plan.js";
 import { buildResult } from "./result.js";
 import { quantitiesOf, sampleQuantity } from "./sampling.js";
 import type {
@@ -41,6 +43,8 @@ export interface SessionParts {
   engine: Engine;
   coefficients: SectionCoefficients;
   drives: DrivePlan;
+  /** Null where sources drive. */
+  ports: PortPlan | null;
   probes: ProbePlan;
   frequenciesGHz: readonly number[];
 }
@@ -79,6 +83,8 @@ export class EngineSession implements SolveSession {
   private failure: RunFailure | null = null;
   private seconds = 0;
   private stepsTimed = 0;
+  /** Steps of a run that was restored without its fields. */
+  private stepsOver: number | null = null;
 
   constructor(parts: SessionParts) {
     this.parts = parts;
@@ -92,15 +98,15 @@ export class EngineSession implements SolveSession {
     this.drives = parts.drives;
     this.coefficients = parts.coefficients;
     this.quantities = quantitiesOf(parts.resolved.polarization);
-    this.traces = new TraceStore(parts.probes.probes.length, parts.grid.maxSteps);
+    this.traces = new TraceStore(parts.probes.samples, parts.grid.maxSteps);
   }
 
   get step(): number {
-    return this.engine.step;
+    return this.stepsOver ?? this.engine.step;
   }
 
   get timeNs(): number {
-    return (this.drives.firstStep + this.engine.step) * this.lattice.dt * 1e9;
+    return (this.drives.firstStep + this.step) * this.lattice.dt * 1e9;
   }
 
   get decayDb(): number {
@@ -201,7 +207,8 @@ export class EngineSession implements SolveSession {
       const clearing = this.clearOverdamped(this.coefficients.row);
       engine.setRows(box.firstRow, box.lastRow, clearing);
     }
-    this.drives = drivesOf(resolved, lattice, this.drives);
+    // Ports drive as before: an edit keeps them.
+    if (!this.parts.ports) this.drives = drivesOf(resolved, lattice, this.drives);
     engine.setDrives(this.drives.points, this.drives.signals);
     this.scene = scene;
     this.resolved = resolved;
@@ -241,11 +248,12 @@ export class EngineSession implements SolveSession {
     });
   }
 
-  snapshot(): SessionSnapshot {
+  /** @param of "record": of a run that is over, what its record is made of, without fields */
+  snapshot(of: "run" | "record" = "run"): SessionSnapshot {
     const header: SnapshotHeader = {
       openedSha256: this.openedSha256,
       engineText: this.engineText(),
-      step: this.engine.step,
+      step: this.step,
       samples: this.traces.length,
       energy: this.energy,
       energyMax: this.energyMax,
@@ -257,12 +265,12 @@ export class EngineSession implements SolveSession {
     const sums = saveSums(this.parts.probes.probes);
     const driving = saveGenerators(this.drives.sources.map(({ generator }) => generator));
     const bytes = packBlocks(header, [
-      this.engine.save(),
+      of === "run" ? this.engine.save() : new Uint8Array(0),
       new Uint8Array(traces.buffer, traces.byteOffset, traces.byteLength),
       new Uint8Array(sums.buffer, sums.byteOffset, sums.byteLength),
       new Uint8Array(driving.buffer, driving.byteOffset, driving.byteLength),
     ]);
-    return { version: 1, step: this.engine.step, bytes };
+    return { version: 1, step: this.step, bytes };
   }
 
   restore(snapshot: SessionSnapshot): void {
@@ -275,7 +283,9 @@ export class EngineSession implements SolveSession {
     }
     const scene = words.scene ?? this.opened;
     this.apply(scene, resolveScene(scene));
-    this.engine.load(blocks[0]);
+    const over = blocks[0].byteLength === 0;
+    if (over) this.stepsOver = words.step;
+    else this.engine.load(blocks[0]);
     this.traces.load(new Float64Array(blocks[1].slice().buffer), words.samples);
     loadSums(this.parts.probes.probes, new Float64Array(blocks[2].slice().buffer));
     loadGenerators(
@@ -290,17 +300,24 @@ export class EngineSession implements SolveSession {
   }
 
   result(): SolveResult {
-    const { engine, lattice } = this;
-    const cells = (lattice.columns - 1) * (lattice.rows - 1);
-    return buildResult({
+    return buildResult([this.record()]);
+  }
+
+  /** What the result is made of; it stays when the engine is disposed of. */
+  record(): LegRecord {
+    const { engine, lattice, traces } = this;
+    return {
       scene: this.opened,
       sceneSha256: this.openedSha256,
       resolved: this.resolved,
-      engine,
+      engine: { name: engine.name, precision: engine.precision, threads: engine.threads },
+      lattice,
       grid: this.grid,
+      steps: this.step,
       probes: this.parts.probes.probes,
       drives: this.drives,
-      traces: (probe) => this.traces.since(probe, 0),
+      ports: this.parts.ports,
+      traces: (column) => traces.since(column, 0),
       frequenciesGHz: this.parts.frequenciesGHz,
       reason: this.stopReason ?? "cancelled",
       energy: this.energy,
@@ -308,8 +325,8 @@ export class EngineSession implements SolveSession {
       edits: this.editLog,
       warnings: this.parts.warnings,
       seconds: this.seconds,
-      cellStepsPerSecond: this.seconds > 0 ? (cells * this.stepsTimed) / this.seconds : 0,
-    });
+      cellSteps: (lattice.columns - 1) * (lattice.rows - 1) * this.stepsTimed,
+    };
   }
 
   dispose(): void {

@@ -3,7 +3,10 @@ import type { Scene } from "../scene/index.js";
 import { readScene, resolveScene, SceneError } from "../scene/index.js";
 import { EngineSession } from "./engine-session.js";
 import { chooseEngine } from "./engines.js";
+import { LegsSession } from "./legs.js";
 import { coefficientsOf, drivesOf, latticeOf, layersOf } from "./plan.js";
+import type { PortPlan } from "./port-plan.js";
+import { portDrives, portModesOf } from "./port-plan.js";
 import { probesOf } from "./probe-plan.js";
 import type { SessionOptions, SolveSession } from "./session.js";
 import { waveBoundaryProblems } from "./wave-boundary.js";
@@ -32,36 +35,47 @@ export async function openSession(scene: Scene, options: SessionOptions = {}): P
   if (!read.ok) throw new SceneError(read.problems);
   const resolved = resolveScene(read.scene);
   const { grid: scenesGrid, lattice } = latticeOf(resolved);
-  const drives = drivesOf(resolved, lattice);
-  // The scene's time ends where it says, wherever it starts.
-  const grid = { ...scenesGrid, maxSteps: scenesGrid.maxSteps - drives.firstStep };
   const { fromGHz, toGHz } = resolved.band;
   const frequenciesGHz = options.frequenciesGHz ?? evenly(fromGHz, toGHz, DEFAULT_FREQUENCIES);
-  const probes = probesOf(resolved, lattice, frequenciesGHz);
   const coefficients = coefficientsOf(resolved, lattice);
-  const engine = makeEngine({
-    lattice,
-    coefficients: coefficients.row,
-    layers: layersOf(resolved, lattice),
-    drives: drives.points,
-    signals: drives.signals,
-    taps: probes.taps,
-    records: probes.records,
-  });
-  const problems = waveBoundaryProblems(resolved, drives, engine);
-  if (problems.length > 0) {
-    engine.dispose();
-    throw new SceneError(problems);
-  }
-  return new EngineSession({
-    scene: read.scene,
-    resolved,
-    warnings: read.warnings.map(({ sentence }) => sentence),
-    grid,
-    engine,
-    coefficients,
-    drives,
-    probes,
-    frequenciesGHz,
-  });
+  const modes = portModesOf(resolved, lattice, coefficients.row);
+  const open = (ports: PortPlan | null): EngineSession => {
+    const drives = ports ? portDrives(resolved, lattice, ports) : drivesOf(resolved, lattice);
+    // The scene's time ends where it says, wherever it starts.
+    const grid = { ...scenesGrid, maxSteps: scenesGrid.maxSteps - drives.firstStep };
+    const probes = probesOf(resolved, lattice, frequenciesGHz, modes);
+    const engine = makeEngine({
+      lattice,
+      coefficients: coefficients.row,
+      layers: layersOf(resolved, lattice),
+      drives: drives.points,
+      signals: drives.signals,
+      taps: probes.taps,
+      records: probes.records,
+    });
+    const problems = ports ? [] : waveBoundaryProblems(resolved, drives, engine);
+    if (problems.length > 0) {
+      engine.dispose();
+      throw new SceneError(problems);
+    }
+    return new EngineSession({
+      scene: read.scene,
+      resolved,
+      warnings: read.warnings.map(({ sentence }) => sentence),
+      grid,
+      engine,
+      coefficients,
+      drives,
+      ports,
+      probes,
+      frequenciesGHz,
+    });
+  };
+  const driven = resolved.ports.flatMap(({ drive }, index) => (drive ? [index] : []));
+  if (driven.length === 0) return open(null);
+  const legs = driven.map((port) => ({
+    maxSteps: scenesGrid.maxSteps,
+    open: () => open({ modes, driven: port }),
+  }));
+  return legs.length === 1 ? legs[0].open() : new LegsSession(legs);
 }

@@ -9,6 +9,8 @@ import {
   unitOf,
   voltageTaps,
 } from "../observers/index.js";
+import type { PortMode } from "../ports/index.js";
+import { PORT_RECORDS, portTaps } from "../ports/index.js";
 import type { ResolvedScene } from "../scene/index.js";
 import type { Tap } from "../stepping/index.js";
 
@@ -27,7 +29,9 @@ export interface PlannedProbe {
 export interface ProbePlan {
   probes: readonly PlannedProbe[];
   taps: readonly Tap[];
-  /** Records of a step: one for each probe, then those of the pieces of power probes. */
+  /** Samples of a step: one for each probe, then those of the ports. */
+  samples: number;
+  /** Records of a step: the samples, in their order, then the pieces of power probes. */
   records: number;
 }
 
@@ -47,15 +51,18 @@ function everyStep(scene: ResolvedScene, dt: number): number {
  * sums would not fit.
  *
  * @param frequenciesGHz those of the spectra
+ * @param modes those of the ports
  */
 export function probesOf(
   scene: ResolvedScene,
   lattice: Lattice,
   frequenciesGHz: readonly number[],
+  modes: readonly PortMode[],
 ): ProbePlan {
   const probes: PlannedProbe[] = [];
-  const taps: Tap[] = [];
-  let records = scene.probes.length;
+  const taps = modes.flatMap((mode, index) => portTaps(mode, scene.probes.length + PORT_RECORDS * index));
+  const recorded = scene.probes.length + PORT_RECORDS * modes.length;
+  let records = recorded;
   let sums = 0;
   for (const probe of scene.probes) {
     const { id } = probe;
@@ -103,21 +110,22 @@ export function probesOf(
       probes.push({ id, kind: "line", quantity: "power", unit: "W/m", firstSampleStep: 0, power });
     }
   }
-  return { probes, taps, records };
+  return { probes, taps, samples: recorded, records };
 }
 
-/** Step-major samples of all probes from step-major records of the engine; the same array where there is no power probe. */
+/** Step-major samples of all probes and ports from step-major records of the engine; the same array where there is no power probe. */
 export function samplesOf(
-  { probes, records: width }: ProbePlan,
+  { probes, samples: count, records: width }: ProbePlan,
   records: Float64Array,
   steps: number,
 ): Float64Array {
-  if (width === probes.length) return records;
-  const samples = new Float64Array(steps * probes.length);
-  probes.forEach(({ power }, column) => {
-    if (power) power.take(records, width, steps, samples, probes.length, column);
-    else for (let t = 0; t < steps; t += 1) samples[t * probes.length + column] = records[t * width + column];
-  });
+  if (width === count) return records;
+  const samples = new Float64Array(steps * count);
+  for (let column = 0; column < count; column += 1) {
+    const power = probes.at(column)?.power;
+    if (power) power.take(records, width, steps, samples, count, column);
+    else for (let t = 0; t < steps; t += 1) samples[t * count + column] = records[t * width + column];
+  }
   return samples;
 }
 

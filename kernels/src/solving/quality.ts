@@ -1,15 +1,15 @@
 /** How far the numbers of a run can be trusted: computed from its mesh and its end, never assumed. */
 import { layerReflectionDb } from "../boundaries/index.js";
+import type { Lattice } from "../lattice/index.js";
 import { C0, SIDES, worstDispersionError } from "../lattice/index.js";
 import type { ResolvedScene, SolveResult } from "../scene/index.js";
 import { COURANT, cellsPerWavelength, isPerfect, shortestWavelengthMm } from "../scene/index.js";
-import type { Engine } from "../stepping/index.js";
 import { layersOf } from "./plan.js";
 import type { GridSummary } from "./session.js";
 
 export interface QualityInput {
   resolved: ResolvedScene;
-  engine: Engine;
+  lattice: Lattice;
   grid: GridSummary;
   energy: number;
   energyMax: number;
@@ -24,8 +24,7 @@ const REFLECTION_DEGREES = [0, 15, 30, 45];
  * middle, from the layers' own coefficients; null where there is no such edge or the background is not lossless.
  */
 function boundaryReflectionDb(input: QualityInput): number | null {
-  const { resolved, engine } = input;
-  const { lattice } = engine;
+  const { resolved, lattice } = input;
   const sides = SIDES.filter((side) => lattice.edges[side] === "absorbing");
   const background = resolved.mediaById.get(resolved.background);
   if (sides.length === 0 || !background || isPerfect(background)) return null;
@@ -45,8 +44,7 @@ function boundaryReflectionDb(input: QualityInput): number | null {
 }
 
 export function qualityOf(input: QualityInput): SolveResult["quality"] {
-  const { resolved, engine, grid, energy, energyMax } = input;
-  const { lattice } = engine;
+  const { resolved, lattice, grid, energy, energyMax } = input;
   const hz = resolved.band.toGHz * 1e9;
   // The slowest counted medium is the one of the shortest wavelength, λ·f.
   const speed = Math.min(C0, (shortestWavelengthMm(resolved) / 1000) * hz);

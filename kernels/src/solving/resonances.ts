@@ -41,8 +41,8 @@ export function resonancesInDocument(input: SpectrumInput, scene: ResolvedScene)
   const band = { from: scene.band.fromGHz * 1e9, to: scene.band.toGHz * 1e9 };
   if (!ringDownLasts(traces, band, endSeconds)) return undefined;
   const alike = sources.every(({ waveformText }) => waveformText === first.waveformText);
-  return resonancesOf(traces, band, endSeconds, alike ? waveformSignal(input) : null).map((found) =>
-    inDocument(found, scene),
+  return resonancesOf(traces, band, endSeconds, alike && !input.sent ? waveformSignal(input) : null).map(
+    (found) => inDocument(found, scene),
   );
 }
 

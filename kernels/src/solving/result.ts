@@ -1,118 +1,117 @@
-/** The result document of a session. */
-import { judgeLevels } from "../analysis/index.js";
-import type {
-  ComplexSpectrum,
-  LimitResult,
-  PowerSpectrum,
-  ProbeResult,
-  ResolvedScene,
-  Scene,
-  SolveResult,
-} from "../scene/index.js";
-import type { Engine } from "../stepping/index.js";
-import type { DrivePlan } from "./plan.js";
-import type { PlannedProbe } from "./probe-plan.js";
+/** The result document of a run: one leg, or several in turn that are merged. */
+import type { ProbeResult, Resonance, SolveResult } from "../scene/index.js";
+import type { LegRecord } from "./leg-record.js";
+import { judgeLines } from "./limits.js";
+import { legWaves, portsInDocument, sentWave } from "./port-results.js";
 import { qualityOf } from "./quality.js";
-import type { EditLogEntry, GridSummary, StopReason } from "./session.js";
 import { judgeQ, resonancesInDocument } from "./resonances.js";
+import type { StopReason } from "./session.js";
 import type { SpectrumInput } from "./spectra.js";
 import { spectraOf } from "./spectra.js";
 import { SOLVER_VERSION } from "./version.js";
 
-export interface ResultInput {
-  scene: Scene;
-  sceneSha256: string;
-  resolved: ResolvedScene;
-  engine: Engine;
-  grid: GridSummary;
-  probes: readonly PlannedProbe[];
-  drives: DrivePlan;
-  traces: (probe: number) => Float64Array;
-  frequenciesGHz: readonly number[];
-  reason: StopReason;
-  energy: number;
-  energyMax: number;
-  edits: readonly EditLogEntry[];
-  warnings: readonly string[];
-  seconds: number;
-  cellStepsPerSecond: number;
+/** What one leg adds to the document. */
+interface LegPart {
+  results: ProbeResult[];
+  resonances: Resonance[] | undefined;
+  waves: ReturnType<typeof legWaves>;
+  unfinished: ReadonlySet<string>;
+  warnings: string[];
 }
 
-/** 20·lg of fields and voltages, 10·lg of the magnitude of powers; null where undefined. */
-const levelsOf = (spectrum: ComplexSpectrum | PowerSpectrum): (number | null)[] =>
-  "re" in spectrum
-    ? spectrum.re.map((re, index) => {
-        const im = spectrum.im[index];
-        return re === null || im === null ? null : 20 * Math.log10(Math.hypot(re, im));
-      })
-    : spectrum.value.map((value) => (value === null ? null : 10 * Math.log10(Math.abs(value))));
-
-/**
- * Limits on the levels of probes: 20·lg of V/m, A/m or V, 10·lg of W/m per unit source. None is judged on a trace that had not rung down, nor on a
- * run that was edited. Limits on Q are judged beside them; other kinds of limit are not computed yet, and the warnings of the scene say so.
- */
-function judgeLimits(
-  input: ResultInput,
-  results: readonly ProbeResult[],
-  unfinished: ReadonlySet<string>,
-): LimitResult[] {
-  return input.resolved.limits.flatMap((limit): LimitResult[] => {
-    if (!("points" in limit) || !("probe" in limit.of)) return [];
-    const id = limit.of.probe;
-    const spectrum = results.find((probe) => probe.id === id)?.spectrum ?? null;
-    if (!spectrum || unfinished.has(id)) {
-      return [{ id: limit.id, holds: null, margin: null, atGHz: null, uncertainty: null }];
-    }
-    const levels = levelsOf(spectrum);
-    return [{ id: limit.id, ...judgeLevels(limit, spectrum.GHz, levels), uncertainty: null }];
-  });
-}
-
-export function buildResult(input: ResultInput): SolveResult {
-  const { engine, grid, probes } = input;
-  const { dt } = engine.lattice;
-  const edited = input.edits.length > 0;
+function partOf(record: LegRecord, edited: boolean): LegPart {
+  const { dt } = record.lattice;
+  const waves = edited ? null : legWaves(record);
+  const drive = record.ports?.modes[record.ports.driven].id ?? null;
   const driven: SpectrumInput = {
-    probes,
-    drives: input.drives,
-    traces: input.traces,
+    probes: record.probes,
+    drives: record.drives,
+    traces: record.traces,
     dt,
-    steps: engine.step,
-    frequenciesGHz: input.frequenciesGHz,
-    band: input.resolved.band,
+    steps: record.steps,
+    frequenciesGHz: record.frequenciesGHz,
+    band: record.resolved.band,
+    sent: waves && sentWave(waves, record.frequenciesGHz.length),
   };
   const spectra = edited ? null : spectraOf(driven);
-  const resonances = edited ? undefined : resonancesInDocument(driven, input.resolved);
-  const results = probes.map(
+  const results = record.probes.map(
     (probe, index): ProbeResult => ({
       id: probe.id,
-      drive: null,
+      drive,
       kind: probe.kind,
       quantity: probe.quantity,
       unit: probe.unit,
       trace: {
-        startNs: (input.drives.firstStep + probe.firstSampleStep) * dt * 1e9,
+        startNs: (record.drives.firstStep + probe.firstSampleStep) * dt * 1e9,
         stepNs: dt * 1e9,
-        values: Array.from(input.traces(index)),
+        values: Array.from(record.traces(index)),
       },
       spectrum: spectra?.spectra[index] ?? null,
     }),
   );
-  const limits = spectra
-    ? [...judgeLimits(input, results, spectra.unfinished), ...judgeQ(input.resolved, resonances)]
-    : [];
-  const warnings = [...input.warnings, ...(spectra?.warnings ?? [])];
+  return {
+    results,
+    resonances: edited ? undefined : resonancesInDocument(driven, record.resolved),
+    waves,
+    unfinished: spectra?.unfinished ?? new Set(),
+    warnings: [...record.warnings, ...(waves?.warnings ?? []), ...(spectra?.warnings ?? [])],
+  };
+}
+
+const REASONS: readonly StopReason[] = ["decay", "time", "cancelled"];
+/** A run has ended as the least finished of its legs did. */
+const reasonOf = (records: readonly LegRecord[]): StopReason =>
+  records.reduce<StopReason>(
+    (worst, { reason }) => (REASONS.indexOf(reason) > REASONS.indexOf(worst) ? reason : worst),
+    "decay",
+  );
+
+const decayOf = ({ energy, energyMax }: LegRecord): number | null =>
+  energyMax > 0 && energy > 0 ? -10 * Math.log10(energy / energyMax) : null;
+
+const sum = (records: readonly LegRecord[], of: (record: LegRecord) => number): number =>
+  records.reduce((total, record) => total + of(record), 0);
+
+/** @param records one or more, in the order in which they ran, of one scene and grid */
+export function buildResult(records: readonly LegRecord[]): SolveResult {
+  const first = records[0];
+  const { grid, engine } = first;
+  const edits = records.flatMap((record) => record.edits);
+  const edited = edits.length > 0;
+  const parts = records.map((record) => partOf(record, edited));
+  const results = parts.flatMap((part) => part.results);
+  // Resonances belong to the section, whichever port excites them: the first leg tells them.
+  const { resonances } = parts[0];
+  const ports = portsInDocument(
+    records,
+    parts.map(({ waves }) => waves),
+  );
+  const limits = edited
+    ? []
+    : [
+        ...judgeLines(first.resolved, {
+          results,
+          unfinished: new Set(parts.flatMap(({ unfinished }) => [...unfinished])),
+          ports,
+          portsUnfinished: parts.some(({ waves }) => waves?.unfinished ?? false),
+        }),
+        ...judgeQ(first.resolved, resonances),
+      ];
+  const warnings = [...new Set(parts.flatMap((part) => part.warnings))];
   if (edited) {
     warnings.push(
       "The scene was edited while it ran: there are traces and fields but no spectra and no limits. Run the edited scene cleanly.",
     );
   }
-  const decayDb =
-    input.energyMax > 0 && input.energy > 0 ? -10 * Math.log10(input.energy / input.energyMax) : null;
+  // Of several legs, the one with the most energy left tells how far the run may be trusted.
+  const loudest = records.reduce((worst, record) =>
+    (decayOf(record) ?? Infinity) < (decayOf(worst) ?? Infinity) ? record : worst,
+  );
+  const seconds = sum(records, (record) => record.seconds);
   return {
     format: "heddle-result",
     version: 1,
-    scene: { name: input.scene.name, sha256: input.sceneSha256 },
+    scene: { name: first.scene.name, sha256: first.sceneSha256 },
     solver: { version: SOLVER_VERSION, engine: engine.name, precision: engine.precision },
     grid: {
       nx: grid.nx,
@@ -120,18 +119,19 @@ export function buildResult(input: ResultInput): SolveResult {
       dxMm: grid.dxMm,
       dyMm: grid.dyMm,
       stepPs: grid.stepPs,
-      steps: engine.step,
+      steps: sum(records, ({ steps }) => steps),
       courant: grid.courant,
     },
-    stopped: { reason: input.reason, decayDb },
+    stopped: { reason: reasonOf(records), decayDb: decayOf(loudest) },
     probes: results,
+    ...(ports ? { ports } : {}),
     ...(resonances ? { resonances } : {}),
     ...(limits.length > 0 ? { limits } : {}),
-    quality: qualityOf({ ...input, warnings }),
-    ...(edited ? { edits: [...input.edits] } : {}),
+    quality: qualityOf({ ...loudest, warnings }),
+    ...(edited ? { edits } : {}),
     timing: {
-      seconds: input.seconds,
-      cellStepsPerSecond: input.cellStepsPerSecond,
+      seconds,
+      cellStepsPerSecond: seconds > 0 ? sum(records, (record) => record.cellSteps) / seconds : 0,
       threads: engine.threads,
     },
   };

@@ -1,5 +1,5 @@
 /** Spectra of point probes per unit source, with the sentences that belong to them. */
-import type { SampledSignal, WideBand } from "../analysis/index.js";
+import type { ComplexValues, SampledSignal, WideBand } from "../analysis/index.js";
 import {
   completeRingDown,
   excitedBand,
@@ -14,14 +14,14 @@ import type { DrivePlan } from "./plan.js";
 import type { PlannedProbe } from "./probe-plan.js";
 
 /** A trace that has not fallen by this much at the stop is cut off: its poles complete it, or its spectrum stands with a warning. */
-const RUNG_DOWN_DB = 40;
+export const RUNG_DOWN_DB = 40;
 /** The poles may leave this share of the tail; then no limit is judged. */
-const TAIL_LEFT = 0.01;
+export const TAIL_LEFT = 0.01;
 /** Fits over all cut-off traces, and at least for each: the cost of completing them. */
 const PIECES = 64;
 const LEAST_PIECES = 1;
 /** The search for what the waveform excites ends at this many times the band's upper edge. */
-const EXCITED_TO = 4;
+export const EXCITED_TO = 4;
 /** A tone is taken over at most this many whole periods at the end. */
 const TONE_PERIODS = 20;
 /** Two successive windows of a tone that differ by more than this share are not steady. */
@@ -36,6 +36,8 @@ export interface SpectrumInput {
   steps: number;
   frequenciesGHz: readonly number[];
   band: { fromGHz: number; toGHz: number };
+  /** What a driven port sent in, in √(W/m)·s at each frequency; null with sources, whose waveform takes its place. */
+  sent: ComplexValues | null;
 }
 
 export interface Spectra {
@@ -53,7 +55,7 @@ const none = (probes: readonly PlannedProbe[], warning: string): Spectra => ({
 });
 
 /** w as it drove the steps, before the amplitude: from its own time 0 on. */
-export function waveformSignal(input: SpectrumInput): SampledSignal {
+export function waveformSignal(input: Pick<SpectrumInput, "drives" | "dt" | "steps">): SampledSignal {
   const { waveform, offset } = input.drives.sources[0];
   const { dt, steps } = input;
   const last = Math.max(0, input.drives.firstStep + steps);
@@ -71,7 +73,7 @@ export const traceSignal = (input: SpectrumInput, probe: number): SampledSignal 
 function pulseSpectra(input: SpectrumInput): Spectra {
   const frequencies = input.frequenciesGHz.map((frequency) => frequency * 1e9);
   const waveform = waveformSignal(input);
-  const divisor = fourierSum(waveform, frequencies);
+  const divisor = input.sent ?? fourierSum(waveform, frequencies);
   const warnings: string[] = [];
   const unfinished = new Set<string>();
   const over = (input.drives.firstStep + input.steps) * input.dt >= input.drives.endSeconds;

@@ -1,0 +1,197 @@
+/**
+ * A run of several legs, one after the other behind the door of one session: the driven ports of a scene in turn. Every leg has an
+ * engine of its own, made when its turn comes; of a leg that is over only its record is kept. Steps and samples count on from leg
+ * to leg, and `maxSteps` is the sum of theirs.
+ */
+import type { FieldQuantity, FieldSample, ViewRequest } from "../frames/index.js";
+import type { Scene, SolveResult } from "../scene/index.js";
+import { packBlocks, unpackBlocks } from "./blocks.js";
+import type { EngineSession } from "./engine-session.js";
+import type { LegRecord } from "./leg-record.js";
+import { buildResult } from "./result.js";
+import type {
+  AdvanceOutcome,
+  EditLogEntry,
+  EditOutcome,
+  GridSummary,
+  SessionSnapshot,
+  SolveSession,
+  TraceIncrement,
+} from "./session.js";
+
+export interface Leg {
+  /** Steps at which the leg ends at the latest. */
+  maxSteps: number;
+  open: () => EngineSession;
+}
+
+interface FinishedLeg {
+  record: LegRecord;
+  /** Without fields. */
+  saved: SessionSnapshot;
+  traces: TraceIncrement[];
+  samples: number;
+}
+
+/** What a snapshot says in words; those of the legs follow in blocks. */
+interface LegsHeader {
+  legs: number;
+  /** Finished ones come first, the one that was running last. */
+  finished: number;
+  steps: number[];
+}
+
+const samplesOf = (traces: readonly TraceIncrement[]): number => {
+  const first = traces.at(0);
+  return first ? first.from + first.values.length : 0;
+};
+
+export class LegsSession implements SolveSession {
+  readonly grid: GridSummary;
+  readonly quantities: readonly FieldQuantity[];
+  private finished: FinishedLeg[] = [];
+  private current: EngineSession;
+  /** An edited or cancelled run ends with the leg that it is in. */
+  private last: number;
+
+  /** @param legs two or more, all on the first one's grid */
+  constructor(private readonly legs: readonly Leg[]) {
+    this.current = legs[0].open();
+    this.last = legs.length - 1;
+    this.quantities = this.current.quantities;
+    const maxSteps = legs.reduce((sum, leg) => sum + leg.maxSteps, 0);
+    this.grid = { ...this.current.grid, maxSteps };
+  }
+
+  private get stepsBefore(): number {
+    return this.finished.reduce((sum, { record }) => sum + record.steps, 0);
+  }
+
+  get step(): number {
+    return this.stepsBefore + this.current.step;
+  }
+
+  get timeNs(): number {
+    return (
+      this.finished.reduce((sum, { record }) => sum + record.steps * record.lattice.dt * 1e9, 0) +
+      this.current.timeNs
+    );
+  }
+
+  get decayDb(): number {
+    return this.current.decayDb;
+  }
+
+  get edits(): readonly EditLogEntry[] {
+    return this.current.edits.map((entry) => ({ ...entry, step: entry.step + this.stepsBefore }));
+  }
+
+  advance(steps: number): AdvanceOutcome {
+    const end = this.step + Math.max(0, Math.floor(steps));
+    for (;;) {
+      const outcome = this.current.advance(end - this.step);
+      if (outcome.kind !== "ended") return outcome;
+      if (outcome.reason === "cancelled" || this.finished.length === this.last) return outcome;
+      this.goOn();
+      if (this.step >= end) return { kind: "running" };
+    }
+  }
+
+  /** Puts the leg that is over aside and opens the next one. */
+  private goOn(): void {
+    const { current } = this;
+    const traces = current.tracesSince(0);
+    this.finished.push({
+      record: current.record(),
+      saved: current.snapshot("record"),
+      traces,
+      samples: samplesOf(traces),
+    });
+    current.dispose();
+    this.current = this.legs[this.finished.length].open();
+  }
+
+  cancel(): void {
+    this.last = this.finished.length;
+    this.current.cancel();
+  }
+
+  /** The legs' samples one after the other. */
+  tracesSince(from: number): TraceIncrement[] {
+    const before = this.finished.reduce((sum, { samples }) => sum + samples, 0);
+    const now = this.current.tracesSince(Math.max(0, from - before));
+    return now.map((trace, probe): TraceIncrement => {
+      const parts: Float64Array[] = [];
+      let start = 0;
+      for (const { traces, samples } of this.finished) {
+        if (from < start + samples) parts.push(traces[probe].values.subarray(Math.max(0, from - start)));
+        start += samples;
+      }
+      parts.push(trace.values);
+      const values = new Float64Array(parts.reduce((sum, { length }) => sum + length, 0));
+      let at = 0;
+      for (const part of parts) {
+        values.set(part, at);
+        at += part.length;
+      }
+      return { ...trace, from: Math.min(from, before + trace.from + trace.values.length), values };
+    });
+  }
+
+  sampleField(request: ViewRequest): FieldSample {
+    return this.current.sampleField(request);
+  }
+
+  /** Edits the leg that is running; it is then the last. */
+  edit(scene: Scene): EditOutcome {
+    const outcome = this.current.edit(scene);
+    if (outcome.kind === "refused") return outcome;
+    this.last = this.finished.length;
+    return { kind: "applied", step: this.stepsBefore + outcome.step };
+  }
+
+  snapshot(): SessionSnapshot {
+    const saved = [...this.finished.map((leg) => leg.saved), this.current.snapshot()];
+    const header: LegsHeader = {
+      legs: this.last + 1,
+      finished: this.finished.length,
+      steps: saved.map(({ step }) => step),
+    };
+    const bytes = packBlocks(
+      header,
+      saved.map((leg) => leg.bytes),
+    );
+    return { version: 1, step: this.step, bytes };
+  }
+
+  restore(snapshot: SessionSnapshot): void {
+    const { header, blocks } = unpackBlocks(snapshot.bytes);
+    const words = header as LegsHeader;
+    const fits = Number.isInteger(words.finished) && blocks.length === words.finished + 1;
+    if (!fits || words.finished >= this.legs.length || words.legs > this.legs.length)
+      throw new RangeError("The snapshot belongs to a run with other legs.");
+    const savedOf = (leg: number): SessionSnapshot => ({
+      version: 1,
+      step: words.steps[leg],
+      bytes: blocks[leg],
+    });
+    this.current.dispose();
+    this.finished = [];
+    this.current = this.legs[0].open();
+    this.last = this.legs.length - 1;
+    for (let leg = 0; leg < words.finished; leg += 1) {
+      this.current.restore(savedOf(leg));
+      this.goOn();
+    }
+    this.current.restore(savedOf(words.finished));
+    this.last = words.legs - 1;
+  }
+
+  result(): SolveResult {
+    return buildResult([...this.finished.map(({ record }) => record), this.current.record()]);
+  }
+
+  dispose(): void {
+    this.current.dispose();
+  }
+}
