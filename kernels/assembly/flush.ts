@@ -5,6 +5,7 @@
  */
 import {
   ENTRY_BYTES,
+  ENTRY_MEMORIES,
   ENTRY_PSI_FX,
   ENTRY_PSI_FY,
   ENTRY_PSI_GX,
@@ -15,9 +16,20 @@ import {
   FLUSH_LIMIT_F,
   FLUSH_LIMIT_GX,
   FLUSH_LIMIT_GY,
+  MEMORIES_BYTES,
+  MEMORIES_HEADER_BYTES,
+  MEMORIES_PENDING_F,
+  MEMORIES_PENDING_GX,
+  MEMORIES_PENDING_GY,
+  MEMORIES_TERMS,
   ROW_BYTES,
   STRIP_BYTES,
   TABLE,
+  TERM_BYTES,
+  TERM_FIELD,
+  TERM_FIRST,
+  TERM_LENGTH,
+  TERM_SECOND,
   VECTOR_BYTES,
 } from "../src/stepping/wasm/layout";
 
@@ -27,6 +39,23 @@ function flush(from: usize, bytes: usize, limit: f32): void {
     const values = v128.load(at);
     // What is not a number is not smaller than anything, and stays.
     v128.store(at, v128.andnot(values, f32x4.lt(f32x4.abs(values), limits)));
+  }
+}
+
+/** Memories have the unit of the field that feeds them. */
+function flushMemories(memories: usize, limitF: f32, limitGx: f32, limitGy: f32): void {
+  const span = load<usize>(memories, MEMORIES_BYTES);
+  flush(load<usize>(memories, MEMORIES_PENDING_GX), span, limitGx);
+  flush(load<usize>(memories, MEMORIES_PENDING_GY), span, limitGy);
+  flush(load<usize>(memories, MEMORIES_PENDING_F), span, limitF);
+  const terms = load<i32>(memories, MEMORIES_TERMS);
+  for (let n = 0; n < terms; n++) {
+    const term = memories + MEMORIES_HEADER_BYTES + n * TERM_BYTES;
+    const field = load<usize>(term, TERM_FIELD);
+    const limit = field == FIELD_F ? limitF : field == FIELD_GX ? limitGx : limitGy;
+    flush(load<usize>(term, TERM_FIRST), load<usize>(term, TERM_LENGTH), limit);
+    const second = load<usize>(term, TERM_SECOND);
+    if (second != 0) flush(second, load<usize>(term, TERM_LENGTH), limit);
   }
 }
 
@@ -49,4 +78,6 @@ export function flushRow(row: usize, plan: usize): void {
     flush(load<usize>(entry, ENTRY_PSI_GX), bytes, limitF);
     flush(load<usize>(entry, ENTRY_PSI_FY), bytes, limitGx);
   }
+  const memories = load<usize>(entry, ENTRY_MEMORIES);
+  if (memories != 0) flushMemories(memories, limitF, limitGx, limitGy);
 }

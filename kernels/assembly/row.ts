@@ -1,4 +1,4 @@
-/** One step of one row: its runs from left to right, then the drives and the taps that lie on it. */
+/** One step of one row: its runs from left to right, then the memories, the drives and the taps that lie on it. */
 import {
   COLUMN_LAYERS,
   DRIVE_BYTES,
@@ -6,6 +6,7 @@ import {
   ENTRY_DRIVES,
   ENTRY_DRIVES_END,
   ENTRY_LAYER,
+  ENTRY_MEMORIES,
   ENTRY_PSI_FX,
   ENTRY_PSI_FY,
   ENTRY_PSI_GX,
@@ -42,6 +43,7 @@ import {
   rowLayerVaried,
 } from "./layers";
 import { losslessRun, uniformRun, variedRun, zeroRun } from "./loops";
+import { advanceMemories, correctRow } from "./memories";
 
 /** Bytes of the numbers behind a run's header. */
 export function numbersBytes(kind: i32, bytes: usize): usize {
@@ -110,6 +112,8 @@ export function stepRow(row: usize, signals: usize, records: usize): void {
     }
     run = numbers + numbersBytes(kind, bytes);
   }
+  const memories: usize = load<usize>(entry, ENTRY_MEMORIES);
+  if (memories != 0) correctRow(memories, f0, gx0, gy0);
   let drive: usize = load<usize>(entry, ENTRY_DRIVES);
   const drivesEnd: usize = load<usize>(entry, ENTRY_DRIVES_END);
   for (; drive < drivesEnd; drive += DRIVE_BYTES) {
@@ -117,6 +121,7 @@ export function stepRow(row: usize, signals: usize, records: usize): void {
     const signal = load<f64>(signals + load<usize>(drive, 4));
     store<f32>(at, <f32>(<f64>load<f32>(at) - load<f64>(drive, 8) * signal));
   }
+  if (memories != 0) advanceMemories(memories, base);
   let tap: usize = load<usize>(entry, ENTRY_TAPS);
   const tapsEnd: usize = load<usize>(entry, ENTRY_TAPS_END);
   for (; tap < tapsEnd; tap += TAP_BYTES) {

@@ -10,17 +10,21 @@
  */
 import type { Lattice, Side } from "../lattice/index.js";
 import { cellOfColumn, cellOfRow, columnShare, rowShare } from "../lattice/index.js";
-import type { RowCoefficients } from "../stepping/index.js";
+import type { EngineField, RowCoefficients } from "../stepping/index.js";
 import type { PairKind, Quarter } from "./averaging.js";
 import { arithmeticMean, inPlaneMean } from "./averaging.js";
 import type { ConductorInput, LatticeBox } from "./conductors.js";
 import { ConductorMap, FIXED_F, FIXED_GX, FIXED_GY } from "./conductors.js";
 import { conformalCuts } from "./conformal.js";
 import type { CutCells } from "./cut-cells.js";
+import type { PointMean, WeightedPole } from "./dispersion.js";
+import { DispersiveMeans } from "./dispersion.js";
 import type { CutsBefore } from "./open-faces.js";
-import type { Pair, Properties, SolverMedium } from "./properties.js";
+import type { Properties, SolverMedium } from "./properties.js";
 import type { QuarterRow } from "./quarters.js";
 import { QuarterRaster } from "./quarters.js";
+import { RowTerms } from "./row-terms.js";
+import { layerZones, walkRuns } from "./row-runs.js";
 import { scaledStorage, updateOf } from "./update.js";
 
 export interface SectionMedia extends Omit<ConductorInput, "kinds"> {
@@ -32,12 +36,13 @@ export interface SectionMedia extends Omit<ConductorInput, "kinds"> {
 }
 
 interface MediumUpdates {
-  fill: boolean;
   aF: number;
   bF: number;
   aG: number;
   bGx: number;
   bGy: number;
+  polesF: readonly WeightedPole[];
+  polesG: readonly WeightedPole[];
 }
 
 /** The section before an edit that changed nothing outside `box`. */
@@ -46,11 +51,18 @@ export interface SectionBefore {
   box: LatticeBox;
 }
 
+const NOTHING: MediumUpdates = { aF: 0, bF: 0, aG: 0, bGx: 0, bGy: 0, polesF: [], polesG: [] };
+
 export class SectionCoefficients {
   private readonly quarters: QuarterRaster;
   private readonly conductors: ConductorMap;
   private readonly cuts: CutCells | null;
+  private readonly means: DispersiveMeans;
   private readonly updates: readonly MediumUpdates[];
+  /** Those of the absorbing layers. */
+  private readonly layerUpdates: readonly MediumUpdates[];
+  private terms: RowTerms;
+  private frozen = false;
   private readonly kindF: PairKind;
   private readonly kindG: PairKind;
   private readonly geometryF: number;
@@ -87,11 +99,16 @@ export class SectionCoefficients {
       : null;
     this.columnShares = Float64Array.from({ length: lattice.columns + 2 }, (_, i) => columnShare(lattice, i));
     this.hasShares = this.columnShares.some((share) => share !== 1);
-    this.updates = media.map((medium) =>
-      medium.kind === "fill"
-        ? this.updatesOf(medium.properties)
-        : { fill: false, aF: 0, bF: 0, aG: 0, bGx: 0, bGy: 0 },
+    this.means = new DispersiveMeans(
+      media.flatMap((medium) => (medium.kind === "fill" ? [medium.properties] : [])),
+      lattice.dt,
+      section.omega,
     );
+    const updates = (inLayer: boolean): MediumUpdates[] =>
+      media.map((medium) => (medium.kind === "fill" ? this.updatesOf(medium.properties, inLayer) : NOTHING));
+    this.updates = updates(false);
+    this.layerUpdates = this.means.any ? updates(true) : this.updates;
+    this.terms = new RowTerms(lattice.stride);
   }
 
   /** What of its cuts an edit may keep; undefined where it had none. */
@@ -100,35 +117,51 @@ export class SectionCoefficients {
     return cuts ? { cuts, flags: conductors.flags, firstRow: box.firstRow, lastRow: box.lastRow } : undefined;
   }
 
-  private updatesOf(properties: Properties): MediumUpdates {
+  /** Whether a row that was written has a dispersive medium in an absorbing layer, where it has its ε and σ of the band's middle. */
+  get freezesPoles(): boolean {
+    return this.frozen;
+  }
+
+  private updatesOf(properties: Properties, inLayer: boolean): MediumUpdates {
     const { dt } = this.lattice;
-    const pair = (kind: PairKind): Pair =>
-      kind === "electric"
-        ? { storage: properties.epsilon, loss: properties.sigma }
-        : { storage: properties.mu, loss: properties.sigmaStar };
-    const f = updateOf(pair(this.kindF), dt, this.geometryF);
-    const gx = updateOf(pair(this.kindG), dt, this.geometryGx);
-    const gy = updateOf(pair(this.kindG), dt, this.geometryGy);
-    return { fill: true, aF: f.a, bF: f.b, aG: gx.a, bGx: gx.b, bGy: gy.b };
+    const quarters: Quarter[] = [{ shares: [{ share: 1, properties }] }];
+    const of = (kind: PairKind): PointMean =>
+      this.means.of(quarters, kind, inLayer, (q) => arithmeticMean(q, kind)) ?? {
+        pair: { storage: 1, loss: 0 },
+        poles: [],
+      };
+    const [f, g] = [of(this.kindF), of(this.kindG)];
+    const own = updateOf(f.pair, dt, this.geometryF);
+    const gx = updateOf(g.pair, dt, this.geometryGx);
+    const gy = updateOf(g.pair, dt, this.geometryGy);
+    return {
+      ...{ aF: own.a, bF: own.b, aG: gx.a, bGx: gx.b, bGy: gy.b },
+      ...{ polesF: f.poles, polesG: g.poles },
+    };
   }
 
   /** Writes row j, 0 … rows + 1. */
   readonly row = (j: number, out: RowCoefficients): void => {
     for (const values of [out.aF, out.bF, out.aGx, out.bGx, out.aGy, out.bGy]) values.fill(0);
     const { rows } = this.lattice;
+    out.terms = [];
     if (j > rows) return;
+    this.terms = new RowTerms(this.lattice.stride);
     const y = 2 * cellOfRow(this.lattice, j);
     const below = this.quarters.row(y - 1);
     const here = this.quarters.row(y);
     const above = this.quarters.row(y + 1);
+    const { columns, polarization } = this.lattice;
+    const onNodes = polarization === "TMz";
     if (j >= 1) {
-      this.writeF(below, here, out);
-      this.writeGy(below, here, out);
+      this.writeField("f", j, below, here, 1, columns, out);
+      this.writeField("gy", j, below, here, onNodes ? 1 : 0, onNodes ? columns - 1 : columns, out);
     }
-    if (this.hasGx(j)) this.writeGx(here, above, out);
+    if (this.hasGx(j)) this.writeField("gx", j, here, above, 1, columns, out);
     this.applyWalls(j, out);
     this.applyCuts(j, out);
     this.applyConductors(j, out);
+    out.terms = this.terms.finish(out);
   };
 
   /** gx exists between rows of F, and in TEz on the walls below and above them. */
@@ -136,94 +169,79 @@ export class SectionCoefficients {
     return this.lattice.polarization === "TEz" || (j >= 1 && j < this.lattice.rows);
   }
 
-  private writeF(below: QuarterRow, here: QuarterRow, out: RowCoefficients): void {
-    const { lattice } = this;
-    const single = (i: number, x: number): void => {
-      const mean = arithmeticMean(this.four(below, here, x), this.kindF);
-      if (!mean) return;
-      const update = updateOf(mean, lattice.dt, this.geometryF);
-      out.aF[i] = update.a;
-      out.bF[i] = update.b;
-    };
-    this.walkRuns(below, here, 1, lattice.columns, -1, single, (medium, from, to) => {
-      out.aF.fill(medium.aF, from, to);
-      out.bF.fill(medium.bF, from, to);
+  /** The update of a single point; its poles go among the row's terms. */
+  private single(
+    field: EngineField,
+    i: number,
+    quarters: readonly Quarter[],
+    inLayer: boolean,
+    out: RowCoefficients,
+  ): void {
+    const kind = field === "f" ? this.kindF : this.kindG;
+    const mean = this.means.of(quarters, kind, inLayer, (four) => {
+      if (field === "f") return arithmeticMean(four, kind);
+      const [q00, q01, q10, q11] = four;
+      const lanes =
+        field === "gx"
+          ? ([
+              [q00, q01],
+              [q10, q11],
+            ] as const)
+          : ([
+              [q00, q10],
+              [q01, q11],
+            ] as const);
+      return inPlaneMean(lanes, kind, this.section.omega);
     });
+    if (!mean) return;
+    const { a, b, geometry } = this.arraysOf(field, out);
+    const update = updateOf(mean.pair, this.lattice.dt, geometry);
+    a[i] = update.a;
+    b[i] = update.b;
+    this.terms.fill(field, mean.poles, i, i + 1);
   }
 
-  private writeGx(here: QuarterRow, above: QuarterRow, out: RowCoefficients): void {
-    const { lattice } = this;
-    const single = (i: number, x: number): void => {
-      const [q00, q01, q10, q11] = this.four(here, above, x);
-      const lanes = [
-        [q00, q01],
-        [q10, q11],
-      ] as const;
-      const mean = inPlaneMean(lanes, this.kindG, this.section.omega);
-      if (!mean) return;
-      const update = updateOf(mean, lattice.dt, this.geometryGx);
-      out.aGx[i] = update.a;
-      out.bGx[i] = update.b;
-    };
-    this.walkRuns(here, above, 1, lattice.columns, -1, single, (medium, from, to) => {
-      out.aGx.fill(medium.aG, from, to);
-      out.bGx.fill(medium.bGx, from, to);
-    });
-  }
-
-  private writeGy(below: QuarterRow, here: QuarterRow, out: RowCoefficients): void {
-    const { lattice } = this;
-    const onNodes = lattice.polarization === "TMz";
-    const single = (i: number, x: number): void => {
-      const [q00, q01, q10, q11] = this.four(below, here, x);
-      const lanes = [
-        [q00, q10],
-        [q01, q11],
-      ] as const;
-      const mean = inPlaneMean(lanes, this.kindG, this.section.omega);
-      if (!mean) return;
-      const update = updateOf(mean, lattice.dt, this.geometryGy);
-      out.aGy[i] = update.a;
-      out.bGy[i] = update.b;
-    };
-    const last = onNodes ? lattice.columns - 1 : lattice.columns;
-    this.walkRuns(below, here, onNodes ? 1 : 0, last, 0, single, (medium, from, to) => {
-      out.aGy.fill(medium.aG, from, to);
-      out.bGy.fill(medium.bGy, from, to);
-    });
+  private arraysOf(
+    field: EngineField,
+    out: RowCoefficients,
+  ): { a: Float64Array; b: Float64Array; geometry: number } {
+    if (field === "f") return { a: out.aF, b: out.bF, geometry: this.geometryF };
+    return field === "gx"
+      ? { a: out.aGx, b: out.bGx, geometry: this.geometryGx }
+      : { a: out.aGy, b: out.bGy, geometry: this.geometryGy };
   }
 
   /**
-   * Walks the points of a row from column `first` to `last`, whose left quarter is 2·(position) + `shift`: points whose four quarters are
-   * of one medium in runs [from, to), the others singly.
+   * Writes one field's points of a row, columns `first` to `last`, points whose four quarters are of one medium in runs, the others
+   * singly.
    */
-  private walkRuns(
+  private writeField(
+    field: EngineField,
+    j: number,
     lower: QuarterRow,
     upper: QuarterRow,
     first: number,
     last: number,
-    shift: number,
-    single: (i: number, left: number) => void,
-    run: (medium: MediumUpdates, from: number, to: number) => void,
+    out: RowCoefficients,
   ): void {
-    const end = this.quarters.columns;
-    const origin = 2 * cellOfColumn(this.lattice, 0) + shift;
-    let i = first;
-    while (i <= last) {
-      const left = origin + 2 * i;
-      // Quarters outside the section repeat the outermost ones.
-      const l = Math.min(end - 1, Math.max(0, left));
-      const medium = lower.medium[l];
-      const runEnd = Math.min(lower.runEnd[l], upper.runEnd[l]);
-      const reach = runEnd === end ? Number.POSITIVE_INFINITY : runEnd;
-      if (medium < 0 || upper.medium[l] !== medium || left + 1 >= reach) {
-        single(i, left);
-        i += 1;
-        continue;
-      }
-      const count = Math.min(last + 1 - i, Math.floor((reach - left) / 2));
-      run(this.updates[medium], i, i + count);
-      i += count;
+    const { a, b } = this.arraysOf(field, out);
+    const origin = 2 * cellOfColumn(this.lattice, 0) + (field === "gy" ? 0 : -1);
+    const zones = this.means.any
+      ? layerZones(this.lattice, field, j, first, last)
+      : [[first, last, false] as const];
+    for (const [from, to, inLayer] of zones) {
+      const single = (i: number, left: number): void =>
+        this.single(field, i, this.four(lower, upper, left), inLayer, out);
+      walkRuns(lower, upper, from, to, origin, single, (medium, start, end) => {
+        const updates = (inLayer ? this.layerUpdates : this.updates)[medium];
+        a.fill(field === "f" ? updates.aF : updates.aG, start, end);
+        b.fill(field === "f" ? updates.bF : field === "gx" ? updates.bGx : updates.bGy, start, end);
+        const poles = field === "f" ? updates.polesF : updates.polesG;
+        if (poles.length > 0) this.terms.fill(field, poles, start, end);
+        if (inLayer && this.updates[medium].polesF.length + this.updates[medium].polesG.length > 0) {
+          this.frozen = true;
+        }
+      });
     }
   }
 
@@ -283,6 +301,7 @@ export class SectionCoefficients {
       const storage = cuts.storage.get(k);
       if (storage === undefined || out.bF[i] === 0) continue;
       const update = scaledStorage({ a: out.aF[i], b: out.bF[i] }, storage, cuts.scalesLoss);
+      if (!cuts.scalesLoss) this.terms.scale("f", i, update.b / out.bF[i]);
       out.aF[i] = update.a;
       out.bF[i] = update.b;
     }

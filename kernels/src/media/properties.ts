@@ -1,12 +1,15 @@
 /** Media as the solver sees them: absolute ε, μ, σ, σ*, and the means of them over a partial cell. */
 import { EPS0, MU0 } from "../lattice/index.js";
+import type { Pole } from "../scene/schema-media.js";
 
-/** ε in F/m, μ in H/m, σ in S/m, σ* in Ω/m. */
+/** ε in F/m, μ in H/m, σ in S/m, σ* in Ω/m; poles come on top of ε and μ. */
 export interface Properties {
   epsilon: number;
   mu: number;
   sigma: number;
   sigmaStar: number;
+  /** Missing where there are none. */
+  poles?: { electric: readonly Pole[]; magnetic: readonly Pole[] };
 }
 
 export type SolverMedium =
@@ -21,14 +24,20 @@ export interface RelativeProperties {
   relativePermeability: number;
   conductivity: number;
   magneticLoss: number;
+  electricPoles?: readonly Pole[];
+  magneticPoles?: readonly Pole[];
 }
 
-export const propertiesOf = (medium: RelativeProperties): Properties => ({
-  epsilon: medium.relativePermittivity * EPS0,
-  mu: medium.relativePermeability * MU0,
-  sigma: medium.conductivity,
-  sigmaStar: medium.magneticLoss,
-});
+export const propertiesOf = (medium: RelativeProperties): Properties => {
+  const { electricPoles: electric = [], magneticPoles: magnetic = [] } = medium;
+  return {
+    epsilon: medium.relativePermittivity * EPS0,
+    mu: medium.relativePermeability * MU0,
+    sigma: medium.conductivity,
+    sigmaStar: medium.magneticLoss,
+    ...(electric.length + magnetic.length > 0 && { poles: { electric, magnetic } }),
+  };
+};
 
 /** A storage and its loss: (ε, σ) or (μ, σ*). */
 export interface Pair {

@@ -15,7 +15,7 @@ export interface Complex {
 }
 
 /** χ of one pole at f. */
-const susceptibility = (pole: Pole, frequencyGHz: number): Complex => {
+export const susceptibility = (pole: Pole, frequencyGHz: number): Complex => {
   if (pole.kind === "debye") {
     const wt = 2 * Math.PI * frequencyGHz * pole.tauNs;
     const scale = pole.delta / (1 + wt * wt);

@@ -6,6 +6,32 @@
 import type { AbsorbingLayers } from "../boundaries/index.js";
 import type { FieldArray, Lattice } from "../lattice/index.js";
 
+/**
+ * A memory R of one or two numbers that a field point feeds with its own v, and that answers with a step of its first number. Between two
+ * steps of v, with S = `step` (row by row) and h = `feed`,
+ *
+ *   ΔR = S·R + h·v,   R ← R + ΔR,   and the next step adds −weight·ΔR₀ to v.
+ *
+ * How a medium's pole becomes one stands in `media`.
+ */
+export interface PoleDynamics {
+  /** Numbers in R. */
+  order: 1 | 2;
+  /** order × order numbers, without unit. */
+  step: readonly number[];
+  /** order numbers, without unit. */
+  feed: readonly number[];
+}
+
+/** The same memory at neighbouring points of one row. */
+export interface PoleTerm {
+  field: EngineField;
+  dynamics: PoleDynamics;
+  firstColumn: number;
+  /** By column from `firstColumn`; without unit, 0 where the term does not act. */
+  weights: Float64Array;
+}
+
 /** Update coefficients of one row, each of the lattice's stride (index 0 is the ring). */
 export interface RowCoefficients {
   aF: Float64Array;
@@ -14,9 +40,11 @@ export interface RowCoefficients {
   bGx: Float64Array;
   aGy: Float64Array;
   bGy: Float64Array;
+  /** Memories of the row's points. None lie in the absorbing layers, nor on a G beside an F that does. */
+  terms: PoleTerm[];
 }
 
-/** Writes the coefficients of row j (0 … rows + 1) into `out`. */
+/** Writes the coefficients of row j (0 … rows + 1) into `out`, whose `terms` are empty before. */
 export type CoefficientSource = (row: number, out: RowCoefficients) => void;
 
 /**
@@ -73,7 +101,7 @@ export interface Engine {
   readonly step: number;
   /** The fields as they are between two calls; written to by tests and edits, read by everyone. */
   readonly fields: EngineFields;
-  /** a and b of one row as the engine uses them, in its precision. */
+  /** a and b of one row as the engine uses them, in its precision; `terms` are left alone. */
   readCoefficients(row: number, out: RowCoefficients): void;
 
   /**
@@ -83,10 +111,13 @@ export interface Engine {
    * @param records step-major: steps × records numbers, overwritten with what the taps read
    */
   advance(steps: number, signals: Float64Array, records: Float64Array): void;
-  /** New coefficients for rows first … last, from the next step on. Fields stay as they are. */
+  /**
+   * New coefficients for rows first … last, from the next step on. Fields stay as they are, and so does the memory of points whose
+   * terms do not change; elsewhere memories start empty, as in a medium that is polarized by the field of one instant only.
+   */
   setRows(first: number, last: number, source: CoefficientSource): void;
   setDrives(drives: readonly DrivePoint[], signals: number): void;
-  /** Fields, layers' memory and step: with the same coefficients the run goes on bit for bit. */
+  /** Fields, layers' and media's memory and step: with the same coefficients the run goes on bit for bit. */
   save(): Uint8Array;
   /** Throws a RangeError where the bytes do not fit this engine. */
   load(bytes: Uint8Array): void;
@@ -105,4 +136,5 @@ export const rowCoefficients = (stride: number): RowCoefficients => ({
   bGx: new Float64Array(stride),
   aGy: new Float64Array(stride),
   bGy: new Float64Array(stride),
+  terms: [],
 });

@@ -18,6 +18,7 @@ import type {
 import { rowCoefficients } from "./engine.js";
 import { LayerMemory } from "./layer-memory.js";
 import { packArrays, unpackArrays } from "./packing.js";
+import { PoleMemory } from "./pole-memory.js";
 
 type Precision = "f64" | "f32";
 
@@ -92,6 +93,7 @@ export class ReferenceEngine implements Engine {
   private readonly aGy: FieldArray;
   private readonly bGy: FieldArray;
   private readonly memory: LayerMemory;
+  private readonly poles: PoleMemory;
   private readonly tapsByRow: readonly (readonly Tap[])[];
   private readonly records: number;
   private drivesByRow: readonly (readonly DrivePoint[])[];
@@ -112,6 +114,7 @@ export class ReferenceEngine implements Engine {
     this.aGy = array(lattice.size);
     this.bGy = array(lattice.size);
     this.memory = new LayerMemory(lattice, setup.layers, array);
+    this.poles = new PoleMemory(lattice.rows, lattice.stride, array);
     this.tapsByRow = groupByRow(setup.taps, lattice.rows);
     this.records = setup.records;
     this.drivesByRow = groupByRow(setup.drives, lattice.rows);
@@ -126,7 +129,9 @@ export class ReferenceEngine implements Engine {
   setRows(first: number, last: number, source: CoefficientSource): void {
     const row = rowCoefficients(this.lattice.stride);
     for (let j = first; j <= last; j += 1) {
+      row.terms = [];
       source(j, row);
+      this.poles.setRow(j, row.terms);
       const base = j * this.lattice.stride;
       this.aF.set(row.aF, base);
       this.bF.set(row.bF, base);
@@ -170,12 +175,14 @@ export class ReferenceEngine implements Engine {
     recordBase: number,
   ): void {
     const { f, gx, gy } = this.fields;
-    const { aF, bF, aGx, bGx, aGy, bGy, memory } = this;
+    const { aF, bF, aGx, bGx, aGy, bGy, memory, poles } = this;
     const { stride, columns, rows } = this.lattice;
     for (let j = 0; j <= rows; j += 1) {
       const base = j * stride;
       stepG(f, gx, gy, aGx, bGx, aGy, bGy, base, columns, stride);
       memory.correctG(j, this.fields, bGx, bGy);
+      poles.correct(j, "gx", this.fields);
+      poles.correct(j, "gy", this.fields);
       const drives = this.drivesByRow[j];
       for (const drive of drives) {
         if (drive.field === undefined || drive.field === "f") continue;
@@ -187,6 +194,7 @@ export class ReferenceEngine implements Engine {
       if (j > 0) {
         stepF(f, gx, gy, aF, bF, base, columns, stride);
         memory.correctF(j, this.fields, bF);
+        poles.correct(j, "f", this.fields);
         for (const drive of drives) {
           if (drive.field === "gx" || drive.field === "gy") continue;
           const k = base + drive.column;
@@ -194,6 +202,7 @@ export class ReferenceEngine implements Engine {
           f[k] = f[k] - bF[k] * drive.weight * signal;
         }
       }
+      poles.advance(j, this.fields);
       for (const tap of this.tapsByRow[j]) {
         const index = recordBase + tap.record;
         const value = this.fields[tap.field][base + tap.column];
@@ -205,13 +214,20 @@ export class ReferenceEngine implements Engine {
 
   save(): Uint8Array {
     const { f, gx, gy } = this.fields;
-    return packArrays([Float64Array.of(this.stepsTaken), f, gx, gy, ...this.memory.arrays]);
+    return packArrays([
+      Float64Array.of(this.stepsTaken),
+      f,
+      gx,
+      gy,
+      ...this.memory.arrays,
+      ...this.poles.arrays,
+    ]);
   }
 
   load(bytes: Uint8Array): void {
     const { f, gx, gy } = this.fields;
     const step = new Float64Array(1);
-    unpackArrays(bytes, [step, f, gx, gy, ...this.memory.arrays]);
+    unpackArrays(bytes, [step, f, gx, gy, ...this.memory.arrays, ...this.poles.arrays]);
     this.stepsTaken = step[0];
   }
 

@@ -63,6 +63,37 @@ const painted = (lattice: Lattice): SectionMedia => {
   };
 };
 
+const mixed: SolverMedium = {
+  kind: "fill",
+  properties: {
+    ...VACUUM,
+    epsilon: 1.4 * VACUUM.epsilon,
+    sigma: 0.01,
+    poles: {
+      electric: [
+        { kind: "debye", delta: 3, tauNs: 0.02 },
+        { kind: "lorentz", delta: 1.5, resonanceGHz: 6, dampingGHz: 0.4 },
+        { kind: "lorentz", delta: 0.5, resonanceGHz: 3, dampingGHz: 9 },
+      ],
+      magnetic: [{ kind: "lorentz", delta: 0.8, resonanceGHz: 4, dampingGHz: 1 }],
+    },
+  },
+};
+const relaxing: SolverMedium = {
+  kind: "fill",
+  properties: {
+    ...VACUUM,
+    mu: 1.2 * VACUUM.mu,
+    poles: { electric: [], magnetic: [{ kind: "debye", delta: 2, tauNs: 0.05 }] },
+  },
+};
+
+/** The same paint, the lossy media replaced by dispersive ones. */
+export const dispersive = (lattice: Lattice): SectionMedia => ({
+  ...painted(lattice),
+  media: MEDIA.map((medium) => (medium === glass ? mixed : medium === ferrite ? relaxing : medium)),
+});
+
 export interface Case {
   polarization: LatticePolarization;
   edges: Edges;

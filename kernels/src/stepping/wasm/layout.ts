@@ -92,6 +92,34 @@ export const ENTRY_PSI_GX = 32;
 export const ENTRY_PSI_FY = 36;
 /** decay, gain and stretch of the row, of G and of F, as float32. */
 export const ENTRY_LAYER = 40;
+/** The memories of the row's points; 0 where there are none. */
+export const ENTRY_MEMORIES = 64;
+
+/** Memories of a row: the span of columns that they correct, then their terms, TERM_BYTES each. */
+export const MEMORIES_HEADER_BYTES = 32;
+/** Bytes from the row's column 0, and bytes of the span. */
+export const MEMORIES_FROM = 0;
+export const MEMORIES_BYTES = 4;
+/** Addresses of what waits to be added to gx, gy and F, and of bF, by column of the span. */
+export const MEMORIES_PENDING_GX = 8;
+export const MEMORIES_PENDING_GY = 12;
+export const MEMORIES_PENDING_F = 16;
+export const MEMORIES_B_F = 20;
+export const MEMORIES_TERMS = 24;
+
+export const TERM_BYTES = 64;
+/** FIELD_F, FIELD_GX or FIELD_GY. */
+export const TERM_FIELD = 0;
+export const TERM_FROM = 4;
+export const TERM_LENGTH = 8;
+/** Addresses by column of the term: what waits, weights, the memory's first number and its second (0: it has one). */
+export const TERM_PENDING = 12;
+export const TERM_WEIGHTS = 16;
+export const TERM_FIRST = 20;
+export const TERM_SECOND = 24;
+/** Four numbers of `step`, then two of `feed`, as float32. */
+export const TERM_STEP = 32;
+export const TERM_FEED = 48;
 
 /** A run: neighbouring vectors of one row that are stepped by one loop. Its coefficients follow its header. */
 export const RUN_HEADER_BYTES = 16;

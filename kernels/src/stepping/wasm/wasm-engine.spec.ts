@@ -1,10 +1,12 @@
 import { afterEach, describe, expect, it } from "vitest";
 import { buildLattice, ETA0 } from "../../lattice/index.js";
+import type { Lattice } from "../../lattice/index.js";
+import type { SectionMedia } from "../../media/index.js";
 import { storedEnergy } from "../../observers/index.js";
 import type { CoefficientSource, DrivePoint, Engine } from "../index.js";
 import { loadKernel, ReferenceEngine, rowCoefficients, WasmEngine } from "../index.js";
 import type { Case } from "../testing.js";
-import { BOX, edgesOf, empty, OPEN, run, setupOf, signalsFor, STEPS } from "../testing.js";
+import { BOX, dispersive, edgesOf, empty, OPEN, run, setupOf, signalsFor, STEPS } from "../testing.js";
 
 const kernel = await loadKernel();
 if (!("module" in kernel)) throw new Error(`These tests need ${kernel.missing}.`);
@@ -112,6 +114,24 @@ const CASES: (Case & { name: string })[] = (["TMz", "TEz"] as const).flatMap((po
     edges: edgesOf("absorbing", "magnetic", "magnetic", "absorbing"),
     nx: 30,
     ny: 7,
+  },
+  { name: "poles in a box", polarization, edges: BOX, nx: 61, ny: 47, media: dispersive },
+  { name: "poles and layers all round", polarization, edges: OPEN, nx: 67, ny: 43, media: dispersive },
+  {
+    name: "poles, layers and magnetic",
+    polarization,
+    edges: edgesOf("magnetic", "absorbing", "absorbing", "magnetic"),
+    nx: 41,
+    ny: 19,
+    media: dispersive,
+  },
+  {
+    name: "poles in conformal metal",
+    polarization,
+    edges: { ...BOX, left: "magnetic" as const },
+    nx: 51,
+    ny: 38,
+    media: (lattice: Lattice): SectionMedia => ({ ...dispersive(lattice), metal: "conformal" }),
   },
 ]);
 

@@ -21,6 +21,7 @@ import { Arena } from "./arena.js";
 import { checkOutsideLayers, driveShares } from "./drive-shares.js";
 import { Flushing } from "./flushing.js";
 import * as at from "./layout.js";
+import { MemoryRows } from "./memory-rows.js";
 import { readRuns, RunCutter } from "./runs.js";
 import { isLayerRow, layStrips, stripBytes } from "./strips.js";
 import type { LayerStrips } from "./strips.js";
@@ -67,6 +68,7 @@ export class WasmEngine implements Engine {
   private readonly strips: LayerStrips;
   private readonly flushing: Flushing;
   private readonly cutter: RunCutter;
+  private readonly memories: MemoryRows;
   private readonly table: number;
   private readonly energySums: number;
   private readonly rowBlocks: (RowBlock | null)[];
@@ -123,6 +125,7 @@ export class WasmEngine implements Engine {
     this.layerRows = Array.from({ length: rows + 2 }, (_, j) => isLayerRow(layers, j));
     this.rowBlocks = Array.from({ length: rows + 2 }, () => null);
     this.cutter = new RunCutter({ columns: lattice.columns, psiShifts: this.strips.psiShifts });
+    this.memories = new MemoryRows(arena, rows);
     this.writeControl();
     this.writeLayers();
     this.setRows(0, rows + 1, setup.coefficients);
@@ -186,9 +189,12 @@ export class WasmEngine implements Engine {
   setRows(first: number, last: number, source: CoefficientSource): void {
     const row = rowCoefficients(this.lattice.stride);
     for (let j = first; j <= last; j += 1) {
+      row.terms = [];
       source(j, row);
       this.cutter.cut(row, j, this.layerRows[j]);
       this.placeRuns(j);
+      const memories = this.memories.place(j, row);
+      this.arena.i32[this.entryWord(j, at.ENTRY_MEMORIES)] = memories;
     }
     if (this.drives.length > 0) this.writeDrives();
   }
@@ -348,6 +354,7 @@ export class WasmEngine implements Engine {
       gx,
       gy,
       ...this.strips.memory,
+      ...this.memories.arrays,
       this.flushing.largest,
     ]);
   }
@@ -355,7 +362,15 @@ export class WasmEngine implements Engine {
   load(bytes: Uint8Array): void {
     const { f, gx, gy } = this.fields;
     const step = new Float64Array(1);
-    unpackArrays(bytes, [step, f, gx, gy, ...this.strips.memory, this.flushing.largest]);
+    unpackArrays(bytes, [
+      step,
+      f,
+      gx,
+      gy,
+      ...this.strips.memory,
+      ...this.memories.arrays,
+      this.flushing.largest,
+    ]);
     this.stepsTaken = step[0];
   }
 
