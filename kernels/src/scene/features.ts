@@ -39,6 +39,8 @@ export type FeatureSet = ReadonlySet<Feature | Refinement>;
 export const COMPUTED: FeatureSet = new Set<Feature | Refinement>([
   "conformal-metal",
   "plane-wave",
+  "electric-poles",
+  "magnetic-poles",
   "line-probe",
   "ports",
   "limit-level",

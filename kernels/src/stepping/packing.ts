@@ -30,7 +30,7 @@ export function unpackArrays(packed: Uint8Array, arrays: readonly Packable[]): v
     header[0] === arrays.length && arrays.every((array, index) => header[index + 1] === array.byteLength);
   const total = header.byteLength + arrays.reduce((sum, array) => sum + array.byteLength, 0);
   if (!fits || total !== packed.byteLength) {
-    throw new RangeError("The snapshot belongs to another lattice, precision or set of edges.");
+    throw new RangeError("The snapshot belongs to another lattice, precision, set of edges or of media.");
   }
   let offset = header.byteLength;
   for (const array of arrays) {

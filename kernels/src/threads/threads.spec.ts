@@ -3,7 +3,7 @@ import { storedEnergy } from "../observers/index.js";
 import type { Engine } from "../stepping/index.js";
 import { loadKernel, WasmEngine } from "../stepping/index.js";
 import type { Case } from "../stepping/testing.js";
-import { BOX, bytesOf, OPEN, run, setupOf } from "../stepping/testing.js";
+import { BOX, bytesOf, dispersive, OPEN, run, setupOf } from "../stepping/testing.js";
 import { spawnHelper } from "./index.js";
 
 const kernel = await loadKernel();
@@ -19,8 +19,11 @@ afterEach(() => {
   for (const engine of open.splice(0)) engine.dispose();
 });
 
-describe("the bits of the wasm engine", () => {
-  const one: Case = { polarization: "TEz", edges: OPEN, nx: 83, ny: 61 };
+describe.each([
+  ["in constant media", undefined],
+  ["in dispersive media", dispersive],
+] as const)("the bits of the wasm engine %s", (_, media) => {
+  const one: Case = { polarization: "TEz", edges: OPEN, nx: 83, ny: 61, ...(media && { media }) };
 
   it.each([1, 2, 3, 4])("do not depend on the number of threads (%i)", (threads) => {
     const setup = setupOf(one);
@@ -32,7 +35,7 @@ describe("the bits of the wasm engine", () => {
       );
       expect(engine.threads).toBe(threads);
       expect(run(engine)).toEqual(expected);
-      expect(bytesOf(engine)).toBe(bytesOf(alone));
+      expect(bytesOf(engine) === bytesOf(alone)).toBe(true);
       expect(storedEnergy(engine)).toBe(storedEnergy(alone));
     }
   });
@@ -48,7 +51,7 @@ describe("the bits of the wasm engine", () => {
       expect(run(dealt, steps, from)).toEqual(records.subarray(3 * from, 3 * (from + steps)));
       from += steps;
     }
-    expect(bytesOf(dealt)).toBe(bytesOf(whole));
+    expect(bytesOf(dealt) === bytesOf(whole)).toBe(true);
   });
 
   it("go on from a snapshot, and refuse one of another size", () => {
@@ -62,7 +65,7 @@ describe("the bits of the wasm engine", () => {
     other.load(saved);
     expect(other.step).toBe(90);
     run(other, 90, 90);
-    expect(bytesOf(other)).toBe(bytesOf(whole));
+    expect(bytesOf(other) === bytesOf(whole)).toBe(true);
     const small = keep(new WasmEngine(module, setupOf({ ...one, nx: 20 })));
     expect(() => small.load(saved)).toThrow(/another lattice/);
   });
@@ -75,6 +78,6 @@ describe("the bits of the wasm engine", () => {
       run(alone, 9, turn);
       run(together, 9, turn);
     }
-    expect(bytesOf(together)).toBe(bytesOf(alone));
+    expect(bytesOf(together) === bytesOf(alone)).toBe(true);
   });
 });

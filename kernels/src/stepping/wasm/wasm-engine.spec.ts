@@ -6,7 +6,18 @@ import { storedEnergy } from "../../observers/index.js";
 import type { CoefficientSource, DrivePoint, Engine } from "../index.js";
 import { loadKernel, ReferenceEngine, rowCoefficients, WasmEngine } from "../index.js";
 import type { Case } from "../testing.js";
-import { BOX, dispersive, edgesOf, empty, OPEN, run, setupOf, signalsFor, STEPS } from "../testing.js";
+import {
+  BOX,
+  bytesOf,
+  dispersive,
+  edgesOf,
+  empty,
+  OPEN,
+  run,
+  setupOf,
+  signalsFor,
+  STEPS,
+} from "../testing.js";
 
 const kernel = await loadKernel();
 if (!("module" in kernel)) throw new Error(`These tests need ${kernel.missing}.`);
@@ -232,6 +243,50 @@ describe("the wasm engine against the reference", () => {
       expect(difference(fast.fields.f, slow.fields.f) / scale).toBeLessThan(roundings(STEPS));
     }
     expect(scale).toBeGreaterThan(0);
+  });
+});
+
+describe("memories of media", () => {
+  const one: Case = { polarization: "TEz", edges: OPEN, nx: 50, ny: 41, media: dispersive };
+
+  it.each(["wasm", "reference"] as const)("outlive an edit that does not touch them (%s)", (name) => {
+    const setup = setupOf(one);
+    const make = (): Engine =>
+      name === "wasm" ? keep(new WasmEngine(module, setup)) : new ReferenceEngine(setup, "f64");
+    const [edited, alone] = [make(), make()];
+    for (const engine of [edited, alone]) run(engine, 90);
+    edited.setRows(0, setup.lattice.rows + 1, setup.coefficients);
+    for (const engine of [edited, alone]) run(engine, 90, 90);
+    for (const field of FIELDS) expect(difference(edited.fields[field], alone.fields[field])).toBe(0);
+  });
+
+  it("start anew where an edit changes them, alike in both engines", () => {
+    const setup = setupOf(one);
+    const constant = setupOf({ ...one, media: empty });
+    const fast = keep(new WasmEngine(module, setup));
+    const slow = new ReferenceEngine(setup, "f64");
+    let scale = 0;
+    for (let turn = 0; turn < 10; turn += 1) {
+      for (const engine of [fast, slow]) {
+        run(engine, 20, 20 * turn);
+        const source = turn % 2 === 0 ? constant.coefficients : setup.coefficients;
+        engine.setRows(20 + turn, 40 + turn, source);
+      }
+      scale = Math.max(scale, largest(slow.fields.f));
+      expect(difference(fast.fields.f, slow.fields.f) / scale).toBeLessThan(roundings(STEPS));
+    }
+    expect(scale).toBeGreaterThan(0);
+  });
+
+  it("go on from a snapshot in the reference engine", () => {
+    const setup = setupOf(one);
+    const [whole, other] = [new ReferenceEngine(setup), new ReferenceEngine(setup)];
+    run(whole, 90);
+    other.load(whole.save());
+    for (const engine of [whole, other]) run(engine, 90, 90);
+    expect(bytesOf(other) === bytesOf(whole)).toBe(true);
+    const plain = new ReferenceEngine(setupOf({ ...one, media: empty }));
+    expect(() => plain.load(whole.save())).toThrow(/another lattice/);
   });
 });
 

@@ -1,0 +1,135 @@
+/**
+ * Slabs of Debye and Lorentz media, electric and magnetic, in a plane wave at normal incidence, against the layer-stack calculator. The
+ * wave is the TEM wave of a strip: TEz between electric edges, TMz between magnetic ones, driven by a line source across it.
+ */
+import type { FillMedium } from "@heddle/kernels/scene";
+import { stackResponse } from "@heddle/kernels/stack";
+import { describe, expect, it } from "vitest";
+import { measured } from "./support/measured.js";
+import type { Document } from "./support/run.js";
+import { phasorOf, solve } from "./support/run.js";
+
+type Wave = "TMz" | "TEz";
+const FREQUENCIES = [1.5, 2.5, 3.5, 4.5, 5.5];
+const FACE = 60;
+const THICKNESS = 9;
+
+const medium = (id: string, changes: Partial<FillMedium>): FillMedium => ({
+  id,
+  name: id,
+  relativePermittivity: 1,
+  relativePermeability: 1,
+  conductivity: 0,
+  magneticLoss: 0,
+  electricPoles: [],
+  magneticPoles: [],
+  ...changes,
+});
+
+const MEDIA = [
+  medium("debye", {
+    relativePermittivity: 2,
+    conductivity: 0.02,
+    electricPoles: [{ kind: "debye", delta: 3, tauNs: 0.05 }],
+  }),
+  medium("lorentz", {
+    relativePermittivity: 1.5,
+    electricPoles: [{ kind: "lorentz", delta: 1.2, resonanceGHz: 3.2, dampingGHz: 0.8 }],
+  }),
+  medium("magnetic-lorentz", {
+    relativePermittivity: 3,
+    magneticPoles: [{ kind: "lorentz", delta: 1.5, resonanceGHz: 3, dampingGHz: 1.5 }],
+  }),
+  medium("both", {
+    electricPoles: [
+      { kind: "debye", delta: 1.5, tauNs: 0.03 },
+      { kind: "lorentz", delta: 1, resonanceGHz: 4, dampingGHz: 6 },
+    ],
+    magneticPoles: [{ kind: "debye", delta: 1.5, tauNs: 0.1 }],
+  }),
+];
+
+const strip = (wave: Wave, cellMm: number, slab: FillMedium | null): Document => {
+  const beside = wave === "TEz" ? ("electric" as const) : ("magnetic" as const);
+  const half = cellMm / 2;
+  const at = (x: number): number => (wave === "TEz" ? x + half : x);
+  return {
+    polarization: wave,
+    section: { widthMm: 120, heightMm: 6 },
+    band: { fromGHz: 1, toGHz: 6 },
+    mesh: { cellMm },
+    edges: { left: "absorbing", right: "absorbing", bottom: beside, top: beside },
+    media: slab ? [slab] : [],
+    paint: slab
+      ? [{ kind: "rectangle", id: "slab", medium: slab.id, x: FACE, y: 0, width: THICKNESS, height: 6 }]
+      : [],
+    sources: [{ kind: "line", id: "wire", x: at(20), y: 3 }],
+    probes: [40, 90].map((x) => ({
+      kind: "point" as const,
+      id: x === 40 ? "before" : "behind",
+      x: at(x),
+      y: 3,
+      field: wave === "TEz" ? ("Hz" as const) : ("Ez" as const),
+    })),
+    stop: { maxTimeNs: 60, decayDb: 100 },
+  };
+};
+
+interface Complex {
+  re: number;
+  im: number;
+}
+const times = (a: Complex, b: Complex): Complex => ({
+  re: a.re * b.re - a.im * b.im,
+  im: a.re * b.im + a.im * b.re,
+});
+const over = (a: Complex, b: Complex): Complex => {
+  const norm = b.re * b.re + b.im * b.im;
+  return { re: (a.re * b.re + a.im * b.im) / norm, im: (a.im * b.re - a.re * b.im) / norm };
+};
+const minus = (a: Complex, b: Complex): Complex => ({ re: a.re - b.re, im: a.im - b.im });
+const size = (a: Complex): number => Math.hypot(a.re, a.im);
+const turned = (a: Complex, angle: number): Complex => times(a, { re: Math.cos(angle), im: Math.sin(angle) });
+
+/** Reflection at the front face and transmission to the back face, as ratios of the field along z. */
+async function runs(wave: Wave, cellMm: number, slab: FillMedium): Promise<{ r: Complex; t: Complex }[]> {
+  const options = { frequenciesGHz: FREQUENCIES };
+  const filled = await solve(strip(wave, cellMm, slab), options);
+  const empty = await solve(strip(wave, cellMm, null), options);
+  const probe = 40 + (wave === "TEz" ? cellMm / 2 : 0);
+  return FREQUENCIES.map((frequency, index) => {
+    const k = (2 * Math.PI * frequency) / 299.792458;
+    const incident = phasorOf(empty, "before", index);
+    const reflected = over(minus(phasorOf(filled, "before", index), incident), incident);
+    const passed = over(phasorOf(filled, "behind", index), phasorOf(empty, "behind", index));
+    return { r: turned(reflected, 2 * k * (FACE - probe)), t: turned(passed, -k * THICKNESS) };
+  });
+}
+
+describe.each(["TMz", "TEz"] as const)("dispersive slabs, %s", (wave) => {
+  it.each(MEDIA)("$id", async (slab) => {
+    const [coarse, fine] = [await runs(wave, 1, slab), await runs(wave, 0.5, slab)];
+    const worst = { coarse: 0, fine: 0, extrapolated: 0 };
+    FREQUENCIES.forEach((frequencyGHz, index) => {
+      const stack = {
+        elements: [{ kind: "layer" as const, medium: slab, thicknessMm: THICKNESS }],
+        backing: medium("air", {}),
+      };
+      const exact = stackResponse(stack, { polarization: wave, angleDeg: 0, frequencyGHz });
+      for (const [got, want] of [
+        ["r", exact.fieldReflection],
+        ["t", exact.fieldTransmission ?? { re: NaN, im: NaN }],
+      ] as const) {
+        const [a, b] = [coarse[index][got], fine[index][got]];
+        const limit = { re: (4 * b.re - a.re) / 3, im: (4 * b.im - a.im) / 3 };
+        worst.coarse = Math.max(worst.coarse, size(minus(a, want)));
+        worst.fine = Math.max(worst.fine, size(minus(b, want)));
+        worst.extrapolated = Math.max(worst.extrapolated, size(minus(limit, want)));
+      }
+    });
+    measured(`${wave} ${slab.id}, 1 mm`, worst.coarse);
+    measured(`${wave} ${slab.id}, 0.5 mm`, worst.fine);
+    measured(`${wave} ${slab.id}, extrapolated`, worst.extrapolated);
+    expect(worst.extrapolated).toBeLessThan(0.005);
+  });
+});
