@@ -44,7 +44,7 @@ export interface RowCoefficients {
   terms: PoleTerm[];
 }
 
-/** Writes the coefficients of row j (0 … rows + 1) into `out`, whose `terms` are empty before. */
+/** Writes the coefficients of row j (0 … rows + 1) into `out`; `terms` are empty before. */
 export type CoefficientSource = (row: number, out: RowCoefficients) => void;
 
 /**
