@@ -79,6 +79,50 @@ describe("a port", () => {
       "ports[0]: Along the port and behind it",
     ],
     [
+      "a thin wall in the guide behind",
+      {
+        ports: [port],
+        paint: [
+          {
+            kind: "wall",
+            id: "w",
+            points: [
+              [2, 10],
+              [8, 10],
+            ],
+          },
+        ],
+      },
+      "ports[0]: Along the port and behind it",
+    ],
+    [
+      "a guide that opens behind",
+      {
+        edges: open,
+        ports: [{ ...port, from: [10, 5], to: [10, 15] }],
+        paint: [
+          { kind: "rectangle", id: "low", medium: "pec", x: 5, y: 0, width: 55, height: 5 },
+          metal("high", 15, 5),
+        ],
+      },
+      "ports[0].from: The electric wall at (10, 5) mm does not run on behind the port",
+    ],
+    [
+      "a mode finer than the mesh",
+      { ports: [{ ...port, mode: 11 }] },
+      "ports[0].mode: Mode 11 needs at least 22 cells across the guide, which has 20",
+    ],
+    [
+      "its like at the same place",
+      { ports: [port, { ...port, id: "again" }] },
+      'ports[1]: The ports "in" and "again" are the same line and mode',
+    ],
+    [
+      "another port in the guide behind",
+      { ports: [port, { ...port, id: "later", from: [30, 0], to: [30, 20] }] },
+      'ports[1]: The port "in" lies in the guide behind the port "later"',
+    ],
+    [
       "a lossy guide",
       { media: [{ id: "m", name: "M", conductivity: 0.1 }], background: "m", ports: [port] },
       "ports[0]: Along the port and behind it",
@@ -88,6 +132,20 @@ describe("a port", () => {
       lines(changes).some((line) => line.startsWith(expected)),
       lines(changes).join("\n"),
     ).toBe(true);
+  });
+});
+
+describe("a port below its cut-off over the whole band", () => {
+  const warnings = (mode: number): string[] => {
+    const outcome = readScene({ ...base, ports: [{ ...port, mode }] });
+    return outcome.ok ? outcome.warnings.map(({ path, sentence }) => `${path}: ${sentence}`) : ["refused"];
+  };
+  it("draws a warning with the cut-off", () => {
+    // c/2w of 20 mm is 7.495 GHz.
+    expect(warnings(1)).toEqual([
+      expect.stringMatching(/^ports\[0\]\.mode: Mode 1 .* cut-off of 7\.495 GHz/) as string,
+    ]);
+    expect(warnings(0)).toEqual([]);
   });
 });
 

@@ -121,7 +121,7 @@ export interface CostEstimate {
   ny: number;
   /** Cells stepped, absorbing layers included. */
   cells: number;
-  /** Steps at which the run ends at the latest. */
+  /** Steps at which the run ends at the latest: those of every driven port together. */
   steps: number;
   stepPs: number;
   /** Memory of fields and coefficients in float64, an upper estimate. */
@@ -134,9 +134,11 @@ const BYTES_PER_CELL = 8 * (3 + 6 + 4);
 
 /** What a run of the scene costs at most, known before it starts. */
 export const estimateCost = (
-  scene: Meshed & Pick<ResolvedScene, "section" | "stop" | "edges" | "probes" | "polarization">,
+  scene: Meshed & Pick<ResolvedScene, "section" | "stop" | "edges" | "probes" | "polarization" | "ports">,
 ): CostEstimate => {
   const grid = gridOf(scene);
+  const runs = Math.max(1, scene.ports.filter(({ drive }) => drive).length);
+  const traces = scene.probes.length + 2 * scene.ports.length;
   const layers = (first: string, second: string): number =>
     (Number(first === "absorbing") + Number(second === "absorbing")) * ABSORBING_CELLS;
   const { left, right, bottom, top } = scene.edges;
@@ -145,9 +147,9 @@ export const estimateCost = (
     nx: grid.nx,
     ny: grid.ny,
     cells,
-    steps: grid.maxSteps,
+    steps: runs * grid.maxSteps,
     stepPs: grid.stepPs,
-    memoryBytes: cells * BYTES_PER_CELL + scene.probes.length * grid.maxSteps * 8,
+    memoryBytes: cells * BYTES_PER_CELL + runs * traces * grid.maxSteps * 8,
     cellsPerWavelength: cellsPerWavelength(scene, grid),
   };
 };

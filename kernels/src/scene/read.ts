@@ -95,8 +95,13 @@ const checkMeaning = (scene: Scene, context: Context): { problems: Problem[]; wa
     sound("section", "band", "mesh", "stop") && !problems.some(({ path }) => path.startsWith("section"))
       ? checkMesh(resolved)
       : { problems: [], warnings: [] };
-  const drives = sound("section", "edges", "band", "mesh") ? checkDrives(resolved) : [];
-  return { problems: [...found, ...places, ...mesh.problems, ...drives], warnings: mesh.warnings };
+  const drives = sound("section", "edges", "band", "mesh")
+    ? checkDrives(resolved)
+    : { problems: [], warnings: [] };
+  return {
+    problems: [...found, ...places, ...mesh.problems, ...drives.problems],
+    warnings: [...mesh.warnings, ...drives.warnings],
+  };
 };
 
 /**
