@@ -7,7 +7,7 @@ import { stackResponse } from "@heddle/kernels/stack";
 import { describe, expect, it } from "vitest";
 import { measured } from "./support/measured.js";
 import type { Document } from "./support/run.js";
-import { phasorOf, solve } from "./support/run.js";
+import { ELECTRIC_BOX, phasorOf, solve } from "./support/run.js";
 
 type Wave = "TMz" | "TEz";
 const FREQUENCIES = [1.5, 2.5, 3.5, 4.5, 5.5];
@@ -131,5 +131,80 @@ describe.each(["TMz", "TEz"] as const)("dispersive slabs, %s", (wave) => {
     measured(`${wave} ${slab.id}, 0.5 mm`, worst.fine);
     measured(`${wave} ${slab.id}, extrapolated`, worst.extrapolated);
     expect(worst.extrapolated).toBeLessThan(0.005);
+  });
+});
+
+describe.each(["TMz", "TEz"] as const)("a cavity filled with a Lorentz medium, %s", (wave) => {
+  // Source: the cavity's wave number is that of its shape, so that ω²μ(ω)ε(ω) = (π/a)² + (π/b)² at a complex ω
+  // (D. M. Pozar, Microwave Engineering, section 6.3, for a constant medium); Q = Re ω/(2 Im ω). Bar: 0.5 % in Q.
+  const [a, b] = [30, 20];
+  const filling = medium("filling", {
+    relativePermittivity: 2,
+    electricPoles: [{ kind: "lorentz", delta: 0.8, resonanceGHz: 9, dampingGHz: 0.6 }],
+    magneticPoles: [{ kind: "lorentz", delta: 0.3, resonanceGHz: 14, dampingGHz: 0.4 }],
+  });
+  /** χ at a complex frequency in GHz. */
+  const chi = (pole: FillMedium["electricPoles"][number], f: Complex): Complex => {
+    if (pole.kind !== "lorentz") throw new Error("Only Lorentz poles fill this cavity.");
+    const squared = times(f, f);
+    const strength = pole.delta * pole.resonanceGHz ** 2;
+    const under = {
+      re: pole.resonanceGHz ** 2 - squared.re - pole.dampingGHz * f.im,
+      im: -squared.im + pole.dampingGHz * f.re,
+    };
+    return over({ re: strength, im: 0 }, under);
+  };
+  const index2 = (f: Complex): Complex => {
+    const [e, m] = [chi(filling.electricPoles[0], f), chi(filling.magneticPoles[0], f)];
+    return times(
+      { re: filling.relativePermittivity + e.re, im: e.im },
+      { re: filling.relativePermeability + m.re, im: m.im },
+    );
+  };
+  /** The root below both resonances, by f ← f₀/√(εμ(f)). */
+  const exact = (): Complex => {
+    const empty = 299.792458 * Math.hypot(0.5 / a, 0.5 / b);
+    let f: Complex = { re: empty / Math.SQRT2, im: 0 };
+    for (let n = 0; n < 500; n += 1) {
+      const ratio = over({ re: empty * empty, im: 0 }, index2(f));
+      const modulus = Math.sqrt(size(ratio));
+      const angle = Math.atan2(ratio.im, ratio.re) / 2;
+      f = { re: (f.re + modulus * Math.cos(angle)) / 2, im: (f.im + modulus * Math.sin(angle)) / 2 };
+    }
+    return f;
+  };
+
+  it("rings at the right frequency with the right Q", async () => {
+    const root = exact();
+    const [f, q] = [root.re, root.re / (2 * root.im)];
+    const onField = wave === "TMz" ? ("Ez" as const) : ("Hz" as const);
+    const rings = await Promise.all(
+      [1, 0.5].map(async (cellMm) => {
+        const result = await solve({
+          polarization: wave,
+          section: { widthMm: a, heightMm: b },
+          band: { fromGHz: 0.85 * f, toGHz: 1.15 * f },
+          mesh: { cellMm },
+          edges: ELECTRIC_BOX,
+          media: [filling],
+          background: "filling",
+          sources: [{ kind: "line", id: "wire", x: 7, y: 5 }],
+          probes: [{ kind: "point", id: "p", x: 23, y: 6, field: onField }],
+          stop: { maxTimeNs: 60, decayDb: 120 },
+        });
+        const told = (result.resonances ?? [])
+          .toSorted((m, n) => Math.abs(m.GHz - f) - Math.abs(n.GHz - f))
+          .at(0);
+        if (!told) throw new Error("No resonance was found.");
+        return told;
+      }),
+    );
+    rings.forEach((ring) => {
+      measured(`${wave} cavity, f ${ring.GHz} for ${f}`, ring.GHz / f - 1);
+      measured(`${wave} cavity, Q ${String(ring.q)} for ${q}`, (ring.q ?? Infinity) / q - 1);
+    });
+    const [coarse, fine] = rings;
+    expect(Math.abs((4 * fine.GHz - coarse.GHz) / 3 / f - 1)).toBeLessThan(1e-4);
+    expect(Math.abs((4 * (fine.q ?? Infinity) - (coarse.q ?? Infinity)) / 3 / q - 1)).toBeLessThan(0.005);
   });
 });

@@ -2,7 +2,7 @@
 import { lossTangent, SPEED_OF_LIGHT, skinDepthMm, wavelengthMm } from "./media-figures.js";
 import { cutsCells } from "./metal-cuts.js";
 import type { ResolvedScene } from "./schema.js";
-import { AIR, isPerfect } from "./schema-media.js";
+import { AIR, hasPoles, isPerfect } from "./schema-media.js";
 import type { FillMedium } from "./schema-media.js";
 
 /** Δt over the two-dimensional stability limit of the plain grid. */
@@ -39,12 +39,9 @@ export const fillMediaInUse = (scene: Omit<Meshed, "mesh" | "band">): FillMedium
     .filter((medium): medium is FillMedium => medium !== undefined && !isPerfect(medium));
 };
 
-const isDispersive = (medium: FillMedium): boolean =>
-  medium.electricPoles.length > 0 || medium.magneticPoles.length > 0;
-
 /** Shortest wavelength in the band, in mm; null where the medium is too lossy to count. */
 const shortestInMedium = (medium: FillMedium, band: ResolvedScene["band"]): number | null => {
-  const frequencies = isDispersive(medium)
+  const frequencies = hasPoles(medium)
     ? Array.from(
         { length: BAND_POINTS },
         (_, index) => band.fromGHz + ((band.toGHz - band.fromGHz) * index) / (BAND_POINTS - 1),

@@ -51,6 +51,9 @@ export type Medium = z.output<typeof mediumSchema>;
 
 export const isPerfect = (medium: Medium): medium is PerfectMedium => "perfect" in medium;
 
+export const hasPoles = ({ electricPoles, magneticPoles }: FillMedium): boolean =>
+  electricPoles.length + magneticPoles.length > 0;
+
 /** The media that exist without being listed. */
 export const AIR: FillMedium = {
   id: "air",

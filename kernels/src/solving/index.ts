@@ -17,6 +17,9 @@ export { SOLVER_VERSION } from "./version.js";
 /** Spectra have this many frequencies, evenly over the band, unless others are asked for. */
 export const DEFAULT_FREQUENCIES = 401;
 
+const FROZEN_POLES =
+  "A dispersive medium touches an absorbing edge: in the layers behind it, it keeps its ε and σ of the band's middle, so that waves in it are reflected at other frequencies.";
+
 const evenly = (from: number, to: number, count: number): number[] =>
   Array.from({ length: count }, (_, index) => from + ((to - from) * index) / (count - 1));
 
@@ -61,7 +64,10 @@ export async function openSession(scene: Scene, options: SessionOptions = {}): P
     return new EngineSession({
       scene: read.scene,
       resolved,
-      warnings: read.warnings.map(({ sentence }) => sentence),
+      warnings: [
+        ...read.warnings.map(({ sentence }) => sentence),
+        ...(coefficients.freezesPoles ? [FROZEN_POLES] : []),
+      ],
       grid,
       engine,
       coefficients,

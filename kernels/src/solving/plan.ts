@@ -16,7 +16,14 @@ import { buildLattice, C0, ETA0 } from "../lattice/index.js";
 import type { LatticeBox, SectionMedia, SolverMedium } from "../media/index.js";
 import { propertiesOf, SectionCoefficients } from "../media/index.js";
 import type { Grid, Medium, ResolvedScene } from "../scene/index.js";
-import { canonicalJson, gridOf, hasConformalMetal, isPerfect } from "../scene/index.js";
+import {
+  canonicalJson,
+  gridOf,
+  hasConformalMetal,
+  hasPoles,
+  isPerfect,
+  propagation,
+} from "../scene/index.js";
 import type { DrivePoint } from "../stepping/index.js";
 
 export interface PlannedSource {
@@ -95,13 +102,18 @@ export function coefficientsOf(
   return new SectionCoefficients(lattice, section, previous);
 }
 
+/** Refractive index of the background as the layers have it: with poles that of the band's middle. */
+function layerIndex(scene: ResolvedScene): number {
+  const background = scene.mediaById.get(scene.background);
+  if (!background || isPerfect(background)) return 1;
+  if (hasPoles(background))
+    return Math.max(1, propagation(background, (scene.band.fromGHz + scene.band.toGHz) / 2).phase);
+  return Math.sqrt(background.relativePermittivity * background.relativePermeability);
+}
+
 /** The layers behind absorbing edges, matched in grading to the background. */
 export function layersOf(scene: ResolvedScene, lattice: Lattice): AbsorbingLayers {
-  const background = scene.mediaById.get(scene.background);
-  const index =
-    background && !isPerfect(background)
-      ? Math.sqrt(background.relativePermittivity * background.relativePermeability)
-      : 1;
+  const index = layerIndex(scene);
   const sides: Record<Side, number> = { left: index, right: index, bottom: index, top: index };
   return absorbingLayers(lattice, scene.band.fromGHz * 1e9, sides);
 }

@@ -3,7 +3,7 @@ import { layerReflectionDb } from "../boundaries/index.js";
 import type { Lattice } from "../lattice/index.js";
 import { C0, SIDES, worstDispersionError } from "../lattice/index.js";
 import type { ResolvedScene, SolveResult } from "../scene/index.js";
-import { COURANT, cellsPerWavelength, isPerfect, shortestWavelengthMm } from "../scene/index.js";
+import { COURANT, cellsPerWavelength, hasPoles, isPerfect, shortestWavelengthMm } from "../scene/index.js";
 import { layersOf } from "./plan.js";
 import type { GridSummary } from "./session.js";
 
@@ -21,14 +21,14 @@ const REFLECTION_DEGREES = [0, 15, 30, 45];
 
 /**
  * The worst reflection of the absorbing edges for plane waves of the background up to 45° from normal, at the band's edges and
- * middle, from the layers' own coefficients; null where there is no such edge or the background is not lossless.
+ * middle, from the layers' own coefficients; null where there is no such edge or the background is lossy or dispersive.
  */
 function boundaryReflectionDb(input: QualityInput): number | null {
   const { resolved, lattice } = input;
   const sides = SIDES.filter((side) => lattice.edges[side] === "absorbing");
   const background = resolved.mediaById.get(resolved.background);
   if (sides.length === 0 || !background || isPerfect(background)) return null;
-  if (background.conductivity > 0 || background.magneticLoss > 0) return null;
+  if (background.conductivity > 0 || background.magneticLoss > 0 || hasPoles(background)) return null;
   const index = Math.sqrt(background.relativePermittivity * background.relativePermeability);
   const layers = layersOf(resolved, lattice);
   const { fromGHz, toGHz } = resolved.band;
@@ -58,7 +58,7 @@ export function qualityOf(input: QualityInput): SolveResult["quality"] {
   const reflection = boundaryReflectionDb(input);
   if (reflection === null && SIDES.some((side) => lattice.edges[side] === "absorbing")) {
     warnings.push(
-      "The reflection of the absorbing edges is not stated: it is computed for a lossless background only.",
+      "The reflection of the absorbing edges is not stated: it is computed for a lossless background without poles only.",
     );
   }
   if (Number.isNaN(dispersion)) {
