@@ -1,6 +1,9 @@
 /**
- * The guide as a line of its own, in float64: ψ follows the waveform at its first point and travels with the mode's own phase on the
+ * The guide as a line of its own, in float64: ψ is driven at its first point and travels with the mode's own phase on the
  * lattice (see port-mode.ts). The second point stands on the port's line; behind it an absorbing layer ends the line.
+ *
+ * What drives is w less what of it lies at the cut-off, w ← δ²w + λw in steps of Δt, zero at 4 sin²(ωΔt/2) = λ: waves there hardly
+ * travel, and would go on ringing long after all others have left. Where λ = 0 (TEM) it is w itself.
  *
  * Drive points on the port's line put the wave into the fields on the inward side alone: F there lacks the line's g half
  * a step behind it, and the g behind it must not feel the line's F (total and scattered field; A. Taflove and S. C. Hagness,
@@ -42,6 +45,15 @@ function lineLayers(
   return { f: columnsF, g: columnsG };
 }
 
+/** λ of a mode without a cut-off, up to rounding. */
+const TEM = 1e-9;
+/** Steps by which the line drives longer than its waveform. */
+export const LATER_STEPS = 3;
+
+/** What drives the line at a frequency, over the waveform's own spectrum: its magnitude. */
+export const drivingGain = (mode: PortMode, dt: number, hz: number): number =>
+  mode.lambda <= TEM ? 1 : Math.abs(mode.lambda - 4 * Math.sin(Math.PI * hz * dt) ** 2);
+
 export class GuideLine implements SignalGenerator {
   readonly signals = 2;
   private readonly count = OPEN_CELLS + LAYER_CELLS;
@@ -73,8 +85,16 @@ export class GuideLine implements SignalGenerator {
       this.stepGamma();
       out[t * width + column + 1] = this.gamma[0];
       this.stepPsi();
-      this.psi[0] = this.amplitude * this.waveform.valueAt((first + t + 1) * this.dt);
+      this.psi[0] = this.amplitude * this.driving((first + t + 1) * this.dt);
     }
+  }
+
+  private driving(time: number): number {
+    const { dt, mode, waveform } = this;
+    const here = waveform.valueAt(time);
+    if (mode.lambda <= TEM) return here;
+    const before = waveform.valueAt(time - dt);
+    return here - (2 - mode.lambda) * before + waveform.valueAt(time - 2 * dt);
   }
 
   private stepGamma(): void {

@@ -5,6 +5,7 @@ import type { ComplexTable, PortWaves } from "../ports/index.js";
 import {
   complexTable,
   largestGain,
+  latticeCutoff,
   PORT_FIRST_SAMPLES,
   PORT_RECORDS,
   portWaves,
@@ -12,7 +13,7 @@ import {
 } from "../ports/index.js";
 import type { SolveResult } from "../scene/index.js";
 import type { LegRecord } from "./leg-record.js";
-import { portDrives } from "./port-plan.js";
+import { NEAR_CUTOFF, portDrives } from "./port-plan.js";
 import type { PortPlan } from "./port-plan.js";
 import { EXCITED_TO, RUNG_DOWN_DB, TAIL_LEFT, waveformSignal } from "./spectra.js";
 
@@ -87,6 +88,14 @@ export function legWaves(record: LegRecord): LegWaves | null {
     unfinished = true;
     warnings.push(`The run was stopped while the port "${ports.modes[ports.driven].id}" was still driving.`);
   }
+  const slow = ports.modes.filter((mode) => {
+    const cutoff = latticeCutoff(lattice, mode);
+    return own.some((hz) => hz > cutoff && hz < NEAR_CUTOFF * cutoff);
+  });
+  for (const mode of slow)
+    warnings.push(
+      `Below ${NEAR_CUTOFF} times the cut-off of the port "${mode.id}" (${(latticeCutoff(lattice, mode) / 1e9).toPrecision(4)} GHz) S is rough: waves there leave too slowly.`,
+    );
   const signals = portSignals(record);
   const powerOf = (port: number): number => Math.sqrt(ports.modes[port].norm);
   const sent = largestOf(signals[ports.driven][0].values) * powerOf(ports.driven);
@@ -185,11 +194,17 @@ export function portsInDocument(
   const s = runs.flatMap(({ driven }) =>
     ids.map((to) => ({ to, from: ids[driven], re: nothing(), im: nothing(), groupDelayNs: nothing() })),
   );
+  const reliable = (hz: number): boolean =>
+    first.ports.modes.every((mode) => {
+      const cutoff = latticeCutoff(first.lattice, mode);
+      return hz <= cutoff || hz >= NEAR_CUTOFF * cutoff;
+    });
   let worst: number | null = null;
   let atGHz: number | null = null;
   for (let n = 0; n < count; n += 1) {
     const [here, below, above] = [n, n + count, n + 2 * count].map((at) => scatteringAt(runs, at));
-    const gain = here.runs.length > 0 ? largestGain(here.table) : Number.NaN;
+    const judged = here.runs.length > 0 && reliable(GHz[n] * 1e9);
+    const gain = judged ? largestGain(here.table) : Number.NaN;
     if (Number.isFinite(gain) && gain > (worst ?? -1)) {
       worst = gain;
       atGHz = GHz[n];
