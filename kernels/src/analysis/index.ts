@@ -1,6 +1,8 @@
 /** What is made of traces. */
 export { completeRingDown, excitedBand } from "./completion.js";
 export type { Completion } from "./completion.js";
+export { extrapolate, extrapolateComplex } from "./extrapolation.js";
+export type { Extrapolated } from "./extrapolation.js";
 export { fallenDb } from "./decay.js";
 export { judgeLevels, limitAt } from "./limits.js";
 export type { Judgement, LevelLimit } from "./limits.js";

@@ -8,6 +8,10 @@ export interface SolveOptions {
   /** Where the result goes; null: standard output. */
   out: string | null;
   frequenciesGHz: number[] | null;
+  /** Solve the scene without its shield patches too. */
+  shielding: boolean;
+  /** Solve on cells half as large too. */
+  twoMesh: boolean;
   /** Undefined: the session's own choice. */
   engine: EngineName | undefined;
   precision: Precision | undefined;
@@ -16,7 +20,7 @@ export interface SolveOptions {
 }
 
 export const SOLVE_USAGE =
-  "npm run --silent solve -- SCENE.json [--out RESULT.json] [--frequencies 1,2.5,4] [--engine wasm|reference] [--precision f32|f64] [--threads N]";
+  "npm run --silent solve -- SCENE.json [--out RESULT.json] [--frequencies 1,2.5,4] [--shielding] [--two-mesh] [--engine wasm|reference] [--precision f32|f64] [--threads N]";
 
 const MOST_FREQUENCIES = 100_000;
 const MOST_THREADS = 64;
@@ -38,23 +42,6 @@ const parseFrequencies = (text: string): number[] | Problem => {
       sentence: `Entry ${String(wrong + 1)} is no frequency; give GHz above 0 separated by commas, such as 1,2.5,4.`,
     };
   return values;
-};
-
-/** Options that the contract has but that nothing computes yet. */
-const notYet = (values: { shielding?: boolean; "two-mesh"?: boolean }): Problem[] => {
-  const problems: Problem[] = [];
-  if (values.shielding === true)
-    problems.push({
-      path: "--shielding",
-      sentence: "Shielding is not computed yet; solve both scenes and compare.",
-    });
-  if (values["two-mesh"] === true)
-    problems.push({
-      path: "--two-mesh",
-      sentence:
-        "The comparison of two meshes is not computed yet; solve with two values of mesh and compare.",
-    });
-  return problems;
 };
 
 /** Parses the arguments after the command's name. All problems come at once, with the option as path. */
@@ -80,7 +67,7 @@ export const parseSolveOptions = (args: readonly string[]): ParsedOptions => {
     return { ok: false, problems: [{ path: "options", sentence: `${reason}. Usage: ${SOLVE_USAGE}` }] };
   }
   const { values, positionals } = parsed;
-  const problems = notYet(values);
+  const problems: Problem[] = [];
   const [sceneFile, ...more] = positionals;
   if (positionals.length === 0)
     problems.push({ path: "options", sentence: `Name the scene to solve. Usage: ${SOLVE_USAGE}` });
@@ -113,6 +100,8 @@ export const parseSolveOptions = (args: readonly string[]): ParsedOptions => {
       sceneFile,
       out: values.out ?? null,
       frequenciesGHz: frequencies,
+      shielding: values.shielding === true,
+      twoMesh: values["two-mesh"] === true,
       engine: engine !== undefined && isEngine(engine) ? engine : undefined,
       precision: precision !== undefined && isPrecision(precision) ? precision : undefined,
       threads: values.threads === undefined ? undefined : threads,

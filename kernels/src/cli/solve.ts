@@ -1,7 +1,8 @@
 /** `solve`: a scene file in, a result document out; exit statuses as in the contract of the command line. */
 import type { Writable } from "node:stream";
 import { setImmediate as nextTurn } from "node:timers/promises";
-import { readScene, type Scene, SceneError } from "../scene/index.js";
+import { readScene, type Scene, SceneError, type SolveResult } from "../scene/index.js";
+import { refinedScene, sceneWithoutShield, withFinerMesh, withShielding } from "../solving/index.js";
 import type { SessionOptions, SolveSession } from "../solving/session.js";
 import { allThreads, spawnHelper } from "../threads/index.js";
 import { readSceneFile, say, sayProblems } from "./messages.js";
@@ -47,12 +48,12 @@ const runToEnd = async (io: SolveIo, session: SolveSession): Promise<RunEnd> => 
   }
 };
 
-const solveScene = async (
+/** One run to its end: its result, or the status to leave with. */
+const runScene = async (
   io: SolveIo,
   scene: Scene,
   options: SolveOptions,
-  file: OutputFile | null,
-): Promise<ExitStatus> => {
+): Promise<SolveResult | ExitStatus> => {
   const session = await io.openSession(scene, {
     ...(options.engine && { engine: options.engine }),
     ...(options.precision && { precision: options.precision }),
@@ -63,18 +64,58 @@ const solveScene = async (
   });
   try {
     const end = await runToEnd(io, session);
+    if (end.kind === "ended") return session.result();
     if (end.kind === "interrupted") return EXIT.interrupted;
-    if (end.kind === "failed") {
-      say(io, end.sentence);
-      return EXIT.failed;
-    }
-    const text = `${JSON.stringify(session.result())}\n`;
-    if (file === null) await writeStream(io.stdout, text);
-    else file.write(text);
-    return EXIT.done;
+    say(io, end.sentence);
+    return EXIT.failed;
   } finally {
     session.dispose();
   }
+};
+
+/** Further runs that the options ask for, each with what becomes of the result. */
+function* comparisons(
+  scene: Scene,
+  options: SolveOptions,
+): Generator<{ scene: Scene; merge: (result: SolveResult, other: SolveResult) => SolveResult }> {
+  if (options.shielding) {
+    const bare = sceneWithoutShield(scene);
+    if (bare === null)
+      throw new SceneError([
+        {
+          path: "--shielding",
+          sentence:
+            'No patch of the scene is marked "shield": true, so there is nothing to take away; mark the enclosure.',
+        },
+      ]);
+    yield { scene: bare, merge: withShielding };
+  }
+  if (options.twoMesh)
+    yield {
+      scene: refinedScene(scene),
+      merge: (result, other) => withFinerMesh(scene, result, other),
+    };
+}
+
+const solveScene = async (
+  io: SolveIo,
+  scene: Scene,
+  options: SolveOptions,
+  file: OutputFile | null,
+): Promise<ExitStatus> => {
+  const more = [...comparisons(scene, options)];
+  let result = await runScene(io, scene, options);
+  for (const { scene: other, merge } of more) {
+    if (typeof result === "number") return result;
+    const compared = await runScene(io, other, options);
+    if (typeof compared === "number") return compared;
+    result = merge(result, compared);
+  }
+  if (typeof result === "number") return result;
+  const text = `${JSON.stringify(result)}\n`;
+  if (file === null) await writeStream(io.stdout, text);
+  else file.write(text);
+  return EXIT.done;
 };
 
 /**

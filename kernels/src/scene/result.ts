@@ -62,6 +62,52 @@ const balanceSchema = z.strictObject({
   mismatch: curve,
 });
 
+/** Figures at zero cell size, each with its uncertainty: |fine − coarse| over what the order promises. */
+const extrapolationSchema = z.strictObject({
+  /** Coarse cell over fine cell. */
+  ratio: real,
+  /** The order in the cell size that the geometry promises. */
+  order: real,
+  probes: z.array(
+    z.union([
+      z.strictObject({
+        id: z.string(),
+        drive: z.string().nullable(),
+        GHz: z.array(real),
+        re: curve,
+        im: curve,
+        uncertainty: curve,
+      }),
+      z.strictObject({
+        id: z.string(),
+        drive: z.string().nullable(),
+        GHz: z.array(real),
+        value: curve,
+        uncertainty: curve,
+      }),
+    ]),
+  ),
+  s: z.array(
+    z.strictObject({
+      to: z.string(),
+      from: z.string(),
+      GHz: z.array(real),
+      re: curve,
+      im: curve,
+      uncertainty: curve,
+    }),
+  ),
+  resonances: z.array(
+    z.strictObject({
+      probe: z.string(),
+      GHz: real,
+      ghzUncertainty: real,
+      q: nullable,
+      qUncertainty: nullable,
+    }),
+  ),
+});
+
 /** margin > 0: kept, in dB or in the unit of the limit's `value`. `holds` null: it could not be judged. */
 export const limitResultSchema = z.strictObject({
   id: z.string(),
@@ -101,14 +147,7 @@ export const resultSchema = z.strictObject({
   shielding: z.array(z.strictObject({ probe: z.string(), GHz: z.array(real), dB: curve })).optional(),
   balance: balanceSchema.optional(),
   limits: z.array(limitResultSchema).optional(),
-  extrapolation: z
-    .strictObject({
-      ratio: real,
-      probes: z.array(z.unknown()),
-      s: z.array(z.unknown()),
-      resonances: z.array(z.unknown()),
-    })
-    .optional(),
+  extrapolation: extrapolationSchema.optional(),
   quality: z.strictObject({
     cellsPerWavelength: z.record(z.string(), real),
     /** Relative phase-velocity error, worst direction, at the band's upper edge in the slowest counted medium. */
@@ -131,3 +170,4 @@ export type ProbeResult = z.output<typeof probeResultSchema>;
 export type Resonance = z.output<typeof resonanceSchema>;
 export type LimitResult = z.output<typeof limitResultSchema>;
 export type SolveResult = z.output<typeof resultSchema>;
+export type Extrapolation = z.output<typeof extrapolationSchema>;

@@ -12,6 +12,8 @@ import type { SessionOptions, SolveSession } from "./session.js";
 import { waveBoundaryProblems } from "./wave-boundary.js";
 
 export * from "./session.js";
+export { sceneWithoutShield, withShielding } from "./shielding.js";
+export { refinedScene, withFinerMesh } from "./two-mesh.js";
 export { SOLVER_VERSION } from "./version.js";
 
 /** Spectra have this many frequencies, evenly over the band, unless others are asked for. */

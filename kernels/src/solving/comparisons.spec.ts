@@ -1,0 +1,119 @@
+/** What is made of two runs: figures at zero cell size, and shielding. */
+import { describe, expect, it } from "vitest";
+import type { Scene, SceneInput, SolveResult } from "../scene/index.js";
+import { meshOrder, readScene, resolveScene, resultSchema } from "../scene/index.js";
+import { openSession, refinedScene, sceneWithoutShield, withFinerMesh, withShielding } from "./index.js";
+
+const sceneOf = (changes: Partial<SceneInput>): Scene => {
+  const read = readScene({
+    format: "heddle-scene",
+    version: 1,
+    name: "A box",
+    polarization: "TMz",
+    section: { widthMm: 60, heightMm: 40 },
+    band: { fromGHz: 4, toGHz: 8 },
+    mesh: { cellMm: 2 },
+    edges: { left: "electric", right: "electric", bottom: "electric", top: "electric" },
+    sources: [{ kind: "line", id: "wire", x: 17, y: 13 }],
+    probes: [{ kind: "point", id: "p", x: 41, y: 22, field: "Ez" }],
+    stop: { maxTimeNs: 60, decayDb: 60 },
+    ...changes,
+  });
+  if (!read.ok) throw new Error(read.problems.map(({ path, sentence }) => `${path}: ${sentence}`).join("\n"));
+  return read.scene;
+};
+
+const solve = async (scene: Scene): Promise<SolveResult> => {
+  const session = await openSession(scene);
+  try {
+    expect(session.advance(1e7)).toMatchObject({ kind: "ended" });
+    return session.result();
+  } finally {
+    session.dispose();
+  }
+};
+
+describe("two meshes", () => {
+  // f = (c/2)√((m/a)² + (n/b)²): D. M. Pozar, Microwave Engineering, 4th ed., sec. 6.3, with nothing varying along z.
+  it("give the frequency of a box to a twentieth of the coarse mesh's error, within the stated uncertainty", async () => {
+    const scene = sceneOf({});
+    const exact = 0.299_792_458 * 500 * Math.hypot(1 / 60, 1 / 40);
+    const coarse = await solve(scene);
+    const result = withFinerMesh(scene, coarse, await solve(refinedScene(scene)));
+    expect(resultSchema.safeParse(result).error?.message).toBeUndefined();
+    expect(result.extrapolation).toMatchObject({ ratio: 2, order: 2 });
+    const nearest = (list: readonly { GHz: number }[]): number =>
+      list.reduce((best, { GHz }) => (Math.abs(GHz - exact) < Math.abs(best - exact) ? GHz : best), 0);
+    const raw = Math.abs(nearest(coarse.resonances ?? []) - exact);
+    const found = result.extrapolation?.resonances ?? [];
+    const best = found.find(({ GHz }) => GHz === nearest(found));
+    expect(raw / exact).toBeGreaterThan(1e-4);
+    expect(Math.abs((best?.GHz ?? 0) - exact)).toBeLessThan(raw / 20);
+    expect(best?.ghzUncertainty).toBeGreaterThan(Math.abs((best?.GHz ?? 0) - exact));
+  });
+
+  it("take the order from the geometry", () => {
+    const order = (changes: Partial<SceneInput>): number => meshOrder(resolveScene(sceneOf(changes)));
+    const area = { id: "a", x: 20, y: 10 };
+    const post = { ...area, kind: "ellipse", rx: 4, ry: 4, medium: "pec" } as const;
+    const block = { ...area, kind: "rectangle", width: 10, height: 10, medium: "pec" } as const;
+    expect(order({ paint: [post] })).toBe(2);
+    expect(order({ paint: [block] })).toBeCloseTo(4 / 3, 12);
+    // A block over the whole height of the right end has no corner in the field.
+    expect(order({ paint: [{ ...block, x: 50, y: 0, height: 40 }] })).toBe(2);
+    expect(order({ paint: [{ ...block, medium: "air" }], background: "pec" })).toBe(2);
+    expect(order({ paint: [post], mesh: { cellMm: 2, metal: "staircase" } })).toBe(1);
+    expect(
+      order({
+        paint: [
+          {
+            ...wall,
+            points: [
+              [30, 0],
+              [30, 20],
+            ],
+          },
+        ],
+      }),
+    ).toBe(1);
+    const glass = [{ id: "glass", name: "Glass", relativePermittivity: 4 }];
+    expect(order({ paint: [{ ...block, medium: "glass" }], media: glass })).toBe(2);
+    const across = { polarization: "TEz", probes: [], media: glass } satisfies Partial<SceneInput>;
+    expect(order({ ...across, paint: [{ ...block, medium: "glass" }] })).toBe(1.5);
+  });
+});
+
+describe("shielding", () => {
+  it("is the field without the marked patches over that with them", async () => {
+    const lid = {
+      kind: "rectangle",
+      id: "lid",
+      x: 30,
+      y: 0,
+      width: 4,
+      height: 30,
+      medium: "pec",
+      shield: true,
+    } as const;
+    const scene = sceneOf({
+      paint: [lid],
+      edges: { left: "absorbing", right: "absorbing", bottom: "electric", top: "electric" },
+    });
+    const bare = sceneWithoutShield(scene);
+    expect(bare?.paint).toEqual([]);
+    if (!bare) return;
+    const [within, without] = [await solve(scene), await solve(bare)];
+    const result = withShielding(within, without);
+    expect(resultSchema.safeParse(result).error?.message).toBeUndefined();
+    const [{ probe, GHz, dB }] = result.shielding ?? [];
+    expect([probe, GHz.length, dB.length]).toEqual(["p", 401, 401]);
+    const level = ({ probes }: SolveResult, n: number): number => {
+      const spectrum = probes[0].spectrum;
+      if (!spectrum || !("re" in spectrum)) throw new Error("There is no spectrum.");
+      return 20 * Math.log10(Math.hypot(spectrum.re[n] ?? 0, spectrum.im[n] ?? 0));
+    };
+    expect(dB[200]).toBeCloseTo(level(without, 200) - level(within, 200), 9);
+    expect(dB[200]).toBeGreaterThan(3);
+    expect(sceneWithoutShield(bare)).toBeNull();
+  });
+});
