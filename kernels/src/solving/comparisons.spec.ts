@@ -67,7 +67,8 @@ describe("two meshes", () => {
       order({
         paint: [
           {
-            ...wall,
+            kind: "wall",
+            id: "w",
             points: [
               [30, 0],
               [30, 20],
