@@ -20,6 +20,9 @@ import { createRunStream } from "./run-stream";
 /** Live edits go out at most this often, so that the field answers a stroke within 200 ms and the server keeps up. */
 const EDIT_INTERVAL_MS = 120;
 
+/** The slider gives a pace with every pixel; the run hears of it this often. */
+const PACE_INTERVAL_MS = 60;
+
 export interface RunNotice {
   sentence: string;
   problems: readonly ProblemDto[];
@@ -171,12 +174,32 @@ export function useRun({ sceneId, sinks, view, save }: UseRunOptions): RunHandle
     [act, runId, client],
   );
 
+  // Not through `act`: a pace on its way must not swallow the command that is given next.
+  const paces = useMemo(
+    () =>
+      createLatestWins<{ runId: string; pace: number | null }>(async (asked) => {
+        try {
+          tellRun(client, await commandRun(asked.runId, { kind: "pace", picosecondsPerSecond: asked.pace }));
+        } catch (error) {
+          if (error instanceof ApiError && error.code === "wrong-state") return;
+          setNotice(noticeOf(error));
+        }
+      }, PACE_INTERVAL_MS),
+    [client, setNotice],
+  );
+  useEffect(
+    () => () => {
+      paces.cancel();
+    },
+    [paces],
+  );
+
   const setPace = useCallback(
     (pace: number | null) => {
       setChosenPace(pace);
-      if (live) command({ kind: "pace", picosecondsPerSecond: pace });
+      if (live && runId !== null) paces.push({ runId, pace });
     },
-    [live, command, setChosenPace],
+    [live, runId, paces, setChosenPace],
   );
 
   const edits = useMemo(
