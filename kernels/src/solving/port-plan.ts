@@ -42,11 +42,13 @@ function unitAmplitude(scene: ResolvedScene, lattice: Lattice, mode: PortMode): 
 
 /** Up to this many times its cut-off a mode is too slow for a run to wait for. */
 export const NEAR_CUTOFF = 1.1;
+/** Level at the band's lower end over the largest in the band: 20 dB. */
+const LOWER_END = 0.1;
 const WIDENINGS = 40;
 
 /**
- * The pulse of a port's guide line (see there for what the line makes of it): within 20 dB of its peak over the whole band, as sent into
- * the guide, from 1.1 times the cut-off on. It is made wider downward until the lower end is high enough.
+ * The pulse of a port's guide line (see there for what the line makes of it), within 20 dB of its peak over the band from 1.1 times the
+ * cut-off on, as sent into the guide. It is made wider downward until the lower end is high enough.
  */
 function portPulse({ band }: ResolvedScene, lattice: Lattice, mode: PortMode): Waveform {
   const cutoff = latticeCutoff(lattice, mode) / 1e9;
@@ -57,7 +59,7 @@ function portPulse({ band }: ResolvedScene, lattice: Lattice, mode: PortMode): W
     const level = (f: number): number =>
       10 ** -(((f - toGHz + half) / half) ** 2) * drivingGain(mode, lattice.dt, f * 1e9);
     const inBand = Array.from({ length: 33 }, (_, n) => level(from + ((toGHz - from) * n) / 32));
-    return inBand[0] >= 0.1 * Math.max(...inBand);
+    return inBand[0] >= LOWER_END * Math.max(...inBand);
   };
   const widest = toGHz / 2;
   let half = (toGHz - from) / 2;

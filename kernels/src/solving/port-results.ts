@@ -1,6 +1,6 @@
 /** Scattering parameters from the runs of a scene's driven ports. */
 import type { ComplexValues, SampledSignal } from "../analysis/index.js";
-import { completeRingDown, excitedBand, fallenDb, fourierSum } from "../analysis/index.js";
+import { fallenDb, fourierSum } from "../analysis/index.js";
 import type { ComplexTable, PortWaves } from "../ports/index.js";
 import {
   complexTable,
@@ -15,16 +15,14 @@ import type { SolveResult } from "../scene/index.js";
 import type { LegRecord } from "./leg-record.js";
 import { NEAR_CUTOFF, portDrives } from "./port-plan.js";
 import type { PortPlan } from "./port-plan.js";
-import { EXCITED_TO, RUNG_DOWN_DB, TAIL_LEFT, waveformSignal } from "./spectra.js";
+import { RUNG_DOWN_DB } from "./spectra.js";
 
 /** Sums take so many samples a period of the band's upper edge: what folds over lies far above what a pulse excites. */
 const SAMPLES_A_PERIOD = 8;
 /** Group delays are differences of the phase over this share of the band to both sides. */
 const DELAY_SHARE = 1 / 4000;
 /** A tail this far below what was sent in is taken as over, whatever it has fallen from. */
-const NOTHING_DB = 120;
-/** Fits over all cut-off traces of a run: the cost of completing them. */
-const PIECES = 64;
+const NOTHING_DB = 60;
 
 /** The waves of one run. */
 export interface LegWaves {
@@ -104,31 +102,13 @@ export function legWaves(record: LegRecord): LegWaves | null {
     const below = level + 20 * Math.log10(sent / (largestOf(psi.values) * powerOf(port)));
     return below >= NOTHING_DB ? Number.POSITIVE_INFINITY : level;
   });
-  const cut = fallen.filter((level) => level < RUNG_DOWN_DB).length;
-  const pieces = Math.max(1, Math.floor(PIECES / Math.max(1, 2 * cut)));
-  const excited = excitedBand(
-    waveformSignal({ drives, dt: lattice.dt, steps: record.steps }),
-    EXCITED_TO * resolved.band.toGHz * 1e9,
-  );
   const waves = signals.map((pair, port): PortWaves => {
     const sums = pair.map((signal) => sparseSum(signal, record, frequencies));
     if (over && fallen[port] < RUNG_DOWN_DB) {
-      const tails = pair.map((signal) =>
-        completeRingDown(signal, excited, drives.endSeconds, frequencies, pieces),
+      unfinished = true;
+      warnings.push(
+        `The wave at the port "${ports.modes[port].id}" had fallen by ${fallen[port].toFixed(0)} dB only when the run that drives "${ports.modes[ports.driven].id}" stopped (${RUNG_DOWN_DB} dB are needed): S is rough, and no limit is judged on it. Run longer.`,
       );
-      if (tails.every((tail) => tail !== null && tail.left <= TAIL_LEFT)) {
-        tails.forEach((tail, of) => {
-          sums[of].re.forEach((_, n) => {
-            sums[of].re[n] += tail?.tail.re[n] ?? 0;
-            sums[of].im[n] += tail?.tail.im[n] ?? 0;
-          });
-        });
-      } else {
-        unfinished = true;
-        warnings.push(
-          `The wave at the port "${ports.modes[port].id}" had fallen by ${fallen[port].toFixed(0)} dB only when the run that drives "${ports.modes[ports.driven].id}" stopped (${RUNG_DOWN_DB} dB are needed): no limit is judged on S. Run longer.`,
-        );
-      }
     }
     return portWaves(lattice, ports.modes[port], frequencies, sums[0], sums[1]);
   });

@@ -16,12 +16,12 @@ import type { PlannedProbe } from "./probe-plan.js";
 /** A trace that has not fallen by this much at the stop is cut off: its poles complete it, or its spectrum stands with a warning. */
 export const RUNG_DOWN_DB = 40;
 /** The poles may leave this share of the tail; then no limit is judged. */
-export const TAIL_LEFT = 0.01;
+const TAIL_LEFT = 0.01;
 /** Fits over all cut-off traces, and at least for each: the cost of completing them. */
 const PIECES = 64;
 const LEAST_PIECES = 1;
 /** The search for what the waveform excites ends at this many times the band's upper edge. */
-export const EXCITED_TO = 4;
+const EXCITED_TO = 4;
 /** A tone is taken over at most this many whole periods at the end. */
 const TONE_PERIODS = 20;
 /** Two successive windows of a tone that differ by more than this share are not steady. */
@@ -55,7 +55,7 @@ const none = (probes: readonly PlannedProbe[], warning: string): Spectra => ({
 });
 
 /** w as it drove the steps, before the amplitude: from its own time 0 on. */
-export function waveformSignal(input: Pick<SpectrumInput, "drives" | "dt" | "steps">): SampledSignal {
+export function waveformSignal(input: SpectrumInput): SampledSignal {
   const { waveform, offset } = input.drives.sources[0];
   const { dt, steps } = input;
   const last = Math.max(0, input.drives.firstStep + steps);
@@ -99,8 +99,9 @@ function pulseSpectra(input: SpectrumInput): Spectra {
     const sum = fourierSum(signals[index], frequencies);
     const GHz = [...input.frequenciesGHz];
     if (over && fallen[index] >= RUNG_DOWN_DB) return { GHz, ...quotient(sum, divisor) };
+    // What is left in a guide are waves near its cut-off, which no poles tell.
     const completion =
-      over && !probe.power
+      over && !probe.power && !input.sent
         ? completeRingDown(signals[index], excited, input.drives.endSeconds, frequencies, pieces)
         : null;
     if (completion && completion.left <= TAIL_LEFT) {

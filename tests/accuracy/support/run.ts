@@ -50,3 +50,18 @@ export function phasorOf(result: SolveResult, id: string, index = 0): { re: numb
     throw new Error(`The spectrum of "${id}" is undefined at ${complex.GHz[index]} GHz.`);
   return { re, im };
 }
+
+/** S from one port to another at the frequency numbered `index`. */
+export function scatteringOf(
+  result: SolveResult,
+  to: string,
+  from: string,
+  index: number,
+): { re: number; im: number } {
+  const entry = result.ports?.s.find((one) => one.to === to && one.from === from);
+  const re = entry?.re[index] ?? null;
+  const im = entry?.im[index] ?? null;
+  if (re === null || im === null)
+    throw new Error(`There is no S from "${from}" to "${to}" at index ${index}.`);
+  return { re, im };
+}
