@@ -1,7 +1,8 @@
-/** One step of one row: its runs from left to right, then the memories, the drives and the taps that lie on it. */
+/** One step of one row: its runs from left to right, then the memories, the drives, the branches and the taps that lie on it. */
 import {
   COLUMN_LAYERS,
   DRIVE_BYTES,
+  ENTRY_BRANCHES,
   ENTRY_BYTES,
   ENTRY_DRIVES,
   ENTRY_DRIVES_END,
@@ -34,6 +35,7 @@ import {
   TABLE,
   TAP_BYTES,
 } from "../src/stepping/wasm/layout";
+import { advanceBranches, drawBranches } from "./branches";
 import {
   columnLayerUniform,
   columnLayerVaried,
@@ -121,7 +123,10 @@ export function stepRow(row: usize, signals: usize, records: usize): void {
     const signal = load<f64>(signals + load<usize>(drive, 4));
     store<f32>(at, <f32>(<f64>load<f32>(at) - load<f64>(drive, 8) * signal));
   }
+  const branches: usize = load<usize>(entry, ENTRY_BRANCHES);
+  if (branches != 0) drawBranches(branches);
   if (memories != 0) advanceMemories(memories, base);
+  if (branches != 0) advanceBranches(branches);
   let tap: usize = load<usize>(entry, ENTRY_TAPS);
   const tapsEnd: usize = load<usize>(entry, ENTRY_TAPS_END);
   for (; tap < tapsEnd; tap += TAP_BYTES) {

@@ -10,27 +10,32 @@
  */
 import type { Lattice, Side } from "../lattice/index.js";
 import { cellOfColumn, cellOfRow, columnShare, rowShare } from "../lattice/index.js";
-import type { EngineField, RowCoefficients } from "../stepping/index.js";
+import type { Branch, EngineField, RowCoefficients } from "../stepping/index.js";
 import type { PairKind, Quarter } from "./averaging.js";
 import { arithmeticMean, inPlaneMean } from "./averaging.js";
 import type { ConductorInput, LatticeBox } from "./conductors.js";
-import { ConductorMap, FIXED_F, FIXED_GX, FIXED_GY } from "./conductors.js";
+import { ConductorMap } from "./conductors.js";
+import { fixConductors } from "./fix-conductors.js";
 import { conformalCuts } from "./conformal.js";
 import type { CutCells } from "./cut-cells.js";
 import type { PointMean, WeightedPole } from "./dispersion.js";
 import { DispersiveMeans } from "./dispersion.js";
+import type { Film, FilmPlan } from "./films.js";
+import { planFilms } from "./films.js";
 import type { CutsBefore } from "./open-faces.js";
 import type { Properties, SolverMedium } from "./properties.js";
 import type { QuarterRow } from "./quarters.js";
 import { QuarterRaster } from "./quarters.js";
 import { RowTerms } from "./row-terms.js";
 import { layerZones, walkRuns } from "./row-runs.js";
-import { scaledStorage, updateOf } from "./update.js";
+import { addedLoss, scaledStorage, updateOf } from "./update.js";
 
 export interface SectionMedia extends Omit<ConductorInput, "kinds"> {
   media: readonly SolverMedium[];
   /** rad/s at which means along a field are exact: the band's middle. */
   omega: number;
+  /** Default: none. */
+  films?: readonly Film[];
   /** How electric conductors are cut; default "staircase". Magnetic ones are always staircases. */
   metal?: "conformal" | "staircase";
 }
@@ -61,6 +66,7 @@ export class SectionCoefficients {
   private readonly updates: readonly MediumUpdates[];
   /** Those of the absorbing layers. */
   private readonly layerUpdates: readonly MediumUpdates[];
+  private readonly films: FilmPlan;
   private terms: RowTerms;
   private frozen = false;
   private readonly kindF: PairKind;
@@ -109,6 +115,17 @@ export class SectionCoefficients {
     this.updates = updates(false);
     this.layerUpdates = this.means.any ? updates(true) : this.updates;
     this.terms = new RowTerms(lattice.stride);
+    this.films = planFilms(lattice, section.films ?? [], section.omega, (j, out) => this.writeRow(j, out));
+  }
+
+  /** The films, in an engine's form; their losses are among the coefficients. */
+  get branches(): readonly Branch[] {
+    return this.films.branches;
+  }
+
+  /** Whether a film in TEz does not run along the mesh, and is so much the less exact. */
+  get slantsFilms(): boolean {
+    return this.films.slanted;
   }
 
   /** What of its cuts an edit may keep; undefined where it had none. */
@@ -142,11 +159,24 @@ export class SectionCoefficients {
 
   /** Writes row j, 0 … rows + 1. */
   readonly row = (j: number, out: RowCoefficients): void => {
+    this.writeRow(j, out);
+    for (const { field, column, loss } of this.films.losses.get(j) ?? []) {
+      const { a, b } = this.arraysOf(field, out);
+      if (b[column] === 0) continue;
+      const update = addedLoss({ a: a[column], b: b[column] }, loss);
+      this.terms.scale(field, column, update.b / b[column]);
+      a[column] = update.a;
+      b[column] = update.b;
+    }
+    out.terms = this.terms.finish(out);
+  };
+
+  /** The row without films; its terms wait in `terms`. */
+  private writeRow(j: number, out: RowCoefficients): void {
     for (const values of [out.aF, out.bF, out.aGx, out.bGx, out.aGy, out.bGy]) values.fill(0);
     const { rows } = this.lattice;
-    out.terms = [];
-    if (j > rows) return;
     this.terms = new RowTerms(this.lattice.stride);
+    if (j > rows) return;
     const y = 2 * cellOfRow(this.lattice, j);
     const below = this.quarters.row(y - 1);
     const here = this.quarters.row(y);
@@ -160,9 +190,8 @@ export class SectionCoefficients {
     if (this.hasGx(j)) this.writeField("gx", j, here, above, 1, columns, out);
     this.applyWalls(j, out);
     this.applyCuts(j, out);
-    this.applyConductors(j, out);
-    out.terms = this.terms.finish(out);
-  };
+    fixConductors(this.lattice, this.conductors, j, out);
+  }
 
   /** gx exists between rows of F, and in TEz on the walls below and above them. */
   private hasGx(j: number): boolean {
@@ -304,39 +333,6 @@ export class SectionCoefficients {
       if (!cuts.scalesLoss) this.terms.scale("f", i, update.b / out.bF[i]);
       out.aF[i] = update.a;
       out.bF[i] = update.b;
-    }
-  }
-
-  private applyConductors(j: number, out: RowCoefficients): void {
-    const { stride, columns } = this.lattice;
-    const { flags, touched } = this.conductors;
-    if (touched[j] === 0) return;
-    const base = j * stride;
-    for (let i = 0; i <= columns; i += 1) {
-      const k = base + i;
-      const own = flags[k];
-      // Between fixed points of F (or inside fixed G) nothing can change: no field is left frozen there.
-      const fBoth = own & FIXED_F;
-      const fixGx = own & FIXED_GX || (fBoth && flags[k + stride] & FIXED_F);
-      const fixGy = own & FIXED_GY || (fBoth && flags[k + 1] & FIXED_F);
-      const enclosed =
-        own & FIXED_GX &&
-        own & FIXED_GY &&
-        k > stride &&
-        flags[k - 1] & FIXED_GY &&
-        flags[k - stride] & FIXED_GX;
-      if (own & FIXED_F || enclosed) {
-        out.aF[i] = 0;
-        out.bF[i] = 0;
-      }
-      if (fixGx) {
-        out.aGx[i] = 0;
-        out.bGx[i] = 0;
-      }
-      if (fixGy) {
-        out.aGy[i] = 0;
-        out.bGy[i] = 0;
-      }
     }
   }
 }

@@ -9,3 +9,4 @@ export { FIXED, halfStorage, lossOf, updateOf } from "./update.js";
 export type { Update } from "./update.js";
 export type { MediumFigures } from "./figures.js";
 export { mediumFigures } from "./figures.js";
+export type { Film } from "./films.js";

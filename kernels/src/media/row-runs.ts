@@ -39,7 +39,22 @@ export function walkRuns(
 /** Columns from … to, and whether they lie in an absorbing layer. */
 export type Zone = readonly [from: number, to: number, inLayer: boolean];
 
-/** A field's columns `first` to `last` of row j, cut at the absorbing layers. G counts as in one where an F beside it is. */
+const beyond = (index: number, low: number, high: number, count: number): boolean =>
+  (low > 0 && index <= low) || (high > 0 && index > count - high);
+
+/** Whether a point lies in an absorbing layer. G counts as in one where an F beside it is. */
+export function isInLayer(
+  { layers, columns, rows }: Lattice,
+  field: EngineField,
+  j: number,
+  i: number,
+): boolean {
+  const row = (at: number): boolean => beyond(at, layers.bottom, layers.top, rows);
+  const column = (at: number): boolean => beyond(at, layers.left, layers.right, columns);
+  return row(j) || column(i) || (field === "gx" && row(j + 1)) || (field === "gy" && column(i + 1));
+}
+
+/** A field's columns `first` to `last` of row j, cut at the absorbing layers. */
 export function layerZones(
   { layers, columns, rows }: Lattice,
   field: EngineField,
@@ -47,8 +62,7 @@ export function layerZones(
   first: number,
   last: number,
 ): Zone[] {
-  const inRow = (row: number): boolean =>
-    (layers.bottom > 0 && row <= layers.bottom) || (layers.top > 0 && row > rows - layers.top);
+  const inRow = (row: number): boolean => beyond(row, layers.bottom, layers.top, rows);
   if (inRow(j) || (field === "gx" && inRow(j + 1))) return [[first, last, true]];
   const left = layers.left > 0 ? layers.left + 1 : first;
   const right = layers.right > 0 ? columns - layers.right - (field === "gy" ? 1 : 0) : last;

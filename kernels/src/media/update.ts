@@ -44,3 +44,10 @@ export function scaledStorage({ a, b }: Update, factor: number, withLoss: boolea
   const loss = (1 - a) / b;
   return { a: (storage - loss) / (storage + loss), b: 2 / (storage + loss) };
 }
+
+/** The update with a loss added, in units of (1 − a)/b. */
+export function addedLoss({ a, b }: Update, added: number): Update {
+  const storage = (1 + a) / b;
+  const loss = (1 - a) / b + added;
+  return { a: (storage - loss) / (storage + loss), b: 2 / (storage + loss) };
+}

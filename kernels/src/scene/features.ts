@@ -41,6 +41,7 @@ export const COMPUTED: FeatureSet = new Set<Feature | Refinement>([
   "plane-wave",
   "electric-poles",
   "magnetic-poles",
+  "film",
   "line-probe",
   "ports",
   "limit-level",

@@ -206,6 +206,7 @@ export class EngineSession implements SolveSession {
       this.coefficients = coefficientsOf(resolved, lattice, previous);
       const clearing = this.clearOverdamped(this.coefficients.row);
       engine.setRows(box.firstRow, box.lastRow, clearing);
+      engine.setBranches(this.coefficients.branches);
     }
     // Ports drive as before: an edit keeps them.
     if (!this.parts.ports) this.drives = drivesOf(resolved, lattice, this.drives);

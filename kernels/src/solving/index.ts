@@ -22,6 +22,9 @@ export const DEFAULT_FREQUENCIES = 401;
 const FROZEN_POLES =
   "A dispersive medium touches an absorbing edge: in the layers behind it, it keeps its ε and σ of the band's middle, so that waves in it are reflected at other frequencies.";
 
+const SLANTED_FILMS =
+  "A film does not run along the mesh: in TEz it acts on the field across it too, like a coating of a fraction of a cell; a finer mesh makes it less.";
+
 const evenly = (from: number, to: number, count: number): number[] =>
   Array.from({ length: count }, (_, index) => from + ((to - from) * index) / (count - 1));
 
@@ -52,6 +55,7 @@ export async function openSession(scene: Scene, options: SessionOptions = {}): P
     const engine = makeEngine({
       lattice,
       coefficients: coefficients.row,
+      branches: coefficients.branches,
       layers: layersOf(resolved, lattice),
       drives: drives.points,
       signals: drives.signals,
@@ -69,6 +73,7 @@ export async function openSession(scene: Scene, options: SessionOptions = {}): P
       warnings: [
         ...read.warnings.map(({ sentence }) => sentence),
         ...(coefficients.freezesPoles ? [FROZEN_POLES] : []),
+        ...(coefficients.slantsFilms ? [SLANTED_FILMS] : []),
       ],
       grid,
       engine,

@@ -13,7 +13,7 @@ import {
 import type { PaintedArea } from "../geometry/index.js";
 import type { Lattice, Side } from "../lattice/index.js";
 import { buildLattice, C0, ETA0 } from "../lattice/index.js";
-import type { LatticeBox, SectionMedia, SolverMedium } from "../media/index.js";
+import type { Film, LatticeBox, SectionMedia, SolverMedium } from "../media/index.js";
 import { propertiesOf, SectionCoefficients } from "../media/index.js";
 import type { Grid, Medium, ResolvedScene } from "../scene/index.js";
 import {
@@ -85,15 +85,22 @@ export function coefficientsOf(
   };
   const areas: PaintedArea[] = [];
   const walls: (readonly [number, number])[][] = [];
+  const films: Film[] = [];
   for (const patch of scene.paint) {
     if (patch.kind === "wall") walls.push(patch.points.map(([x, y]) => [x, y] as const));
-    else if (patch.kind !== "film") areas.push({ shape: patch, medium: indexOf(patch.medium) });
+    else if (patch.kind === "film")
+      films.push({
+        points: patch.points.map(([x, y]) => [x, y] as const),
+        ohmsPerSquare: patch.ohmsPerSquare,
+      });
+    else areas.push({ shape: patch, medium: indexOf(patch.medium) });
   }
   const section: SectionMedia = {
     media: [...scene.mediaById.values()].map(solverMedium),
     areas,
     background: indexOf(scene.background),
     walls,
+    films,
     widthMm: scene.section.widthMm,
     heightMm: scene.section.heightMm,
     metal: hasConformalMetal(scene) ? "conformal" : "staircase",

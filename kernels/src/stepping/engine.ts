@@ -76,12 +76,34 @@ export interface Tap {
   record: number;
 }
 
+/** A point of a branch: the branch's voltage takes weight·v of it, and weight times the branch's current is drawn from it. */
+export interface BranchPoint {
+  field: EngineField;
+  row: number;
+  column: number;
+  weight: number;
+}
+
+/**
+ * A resistor and an inductor in series that feel V = Σ weight·v of one to four points of one row, or of two neighbouring rows. By the
+ * trapezoidal rule its current is I⁺ = κI + q(V⁺ + V), with κ = `decay` and q = `conductance`. What of it needs fields that are not there yet
+ * stands in the coefficients, as a loss q·|w|·Σ|w| of each point; see `BranchMemory` for the rest. Points lie outside the
+ * absorbing layers.
+ */
+export interface Branch {
+  points: readonly BranchPoint[];
+  decay: number;
+  conductance: number;
+}
+
 export interface EngineSetup {
   lattice: Lattice;
   coefficients: CoefficientSource;
   layers: AbsorbingLayers;
   drives: readonly DrivePoint[];
   signals: number;
+  /** Default: none. */
+  branches?: readonly Branch[];
   taps: readonly Tap[];
   records: number;
 }
@@ -117,7 +139,9 @@ export interface Engine {
    */
   setRows(first: number, last: number, source: CoefficientSource): void;
   setDrives(drives: readonly DrivePoint[], signals: number): void;
-  /** Fields, layers' and media's memory and step: with the same coefficients the run goes on bit for bit. */
+  /** New branches from the next step on; those that stay as they were keep their currents. */
+  setBranches(branches: readonly Branch[]): void;
+  /** Fields, layers', media's and branches' memory and step: with the same coefficients the run goes on bit for bit. */
   save(): Uint8Array;
   /** Throws a RangeError where the bytes do not fit this engine. */
   load(bytes: Uint8Array): void;

@@ -6,7 +6,9 @@
  * j − 1 of the new one; so after row j of G comes row j of F, and each array is read and written once.
  */
 import type { FieldArray, Lattice } from "../lattice/index.js";
+import { BranchMemory } from "./branch-memory.js";
 import type {
+  Branch,
   CoefficientSource,
   DrivePoint,
   Engine,
@@ -94,6 +96,8 @@ export class ReferenceEngine implements Engine {
   private readonly bGy: FieldArray;
   private readonly memory: LayerMemory;
   private readonly poles: PoleMemory;
+  private readonly branches = new BranchMemory();
+  private branchDrives: readonly (readonly DrivePoint[])[];
   private readonly tapsByRow: readonly (readonly Tap[])[];
   private readonly records: number;
   private drivesByRow: readonly (readonly DrivePoint[])[];
@@ -119,6 +123,7 @@ export class ReferenceEngine implements Engine {
     this.records = setup.records;
     this.drivesByRow = groupByRow(setup.drives, lattice.rows);
     this.signals = setup.signals;
+    this.branchDrives = this.branchesByRow(setup.branches ?? []);
     this.setRows(0, lattice.rows + 1, setup.coefficients);
   }
 
@@ -158,6 +163,15 @@ export class ReferenceEngine implements Engine {
     this.signals = signals;
   }
 
+  setBranches(branches: readonly Branch[]): void {
+    this.branchDrives = this.branchesByRow(branches);
+  }
+
+  private branchesByRow(branches: readonly Branch[]): readonly (readonly DrivePoint[])[] {
+    this.branches.set(branches);
+    return groupByRow(this.branches.drives, this.lattice.rows);
+  }
+
   advance(steps: number, signals: Float64Array, records: Float64Array): void {
     if (signals.length < steps * this.signals || records.length < steps * this.records) {
       throw new RangeError(
@@ -177,32 +191,24 @@ export class ReferenceEngine implements Engine {
     const { f, gx, gy } = this.fields;
     const { aF, bF, aGx, bGx, aGy, bGy, memory, poles } = this;
     const { stride, columns, rows } = this.lattice;
+    const own = signals.subarray(signalBase, signalBase + this.signals);
     for (let j = 0; j <= rows; j += 1) {
       const base = j * stride;
       stepG(f, gx, gy, aGx, bGx, aGy, bGy, base, columns, stride);
       memory.correctG(j, this.fields, bGx, bGy);
       poles.correct(j, "gx", this.fields);
       poles.correct(j, "gy", this.fields);
-      const drives = this.drivesByRow[j];
-      for (const drive of drives) {
-        if (drive.field === undefined || drive.field === "f") continue;
-        const b = drive.field === "gx" ? bGx : bGy;
-        const field = this.fields[drive.field];
-        const k = base + drive.column;
-        field[k] = field[k] - b[k] * drive.weight * signals[signalBase + drive.signal];
-      }
+      this.driveG(j, this.drivesByRow[j], own);
+      this.driveG(j, this.branchDrives[j], this.branches.currents);
       if (j > 0) {
         stepF(f, gx, gy, aF, bF, base, columns, stride);
         memory.correctF(j, this.fields, bF);
         poles.correct(j, "f", this.fields);
-        for (const drive of drives) {
-          if (drive.field === "gx" || drive.field === "gy") continue;
-          const k = base + drive.column;
-          const signal = signals[signalBase + drive.signal];
-          f[k] = f[k] - bF[k] * drive.weight * signal;
-        }
+        this.driveF(j, this.drivesByRow[j], own);
+        this.driveF(j, this.branchDrives[j], this.branches.currents);
       }
       poles.advance(j, this.fields);
+      this.branches.advance(j, this.fields, stride);
       for (const tap of this.tapsByRow[j]) {
         const index = recordBase + tap.record;
         const value = this.fields[tap.field][base + tap.column];
@@ -210,6 +216,25 @@ export class ReferenceEngine implements Engine {
       }
     }
     this.stepsTaken += 1;
+  }
+
+  private driveG(j: number, drives: readonly DrivePoint[], signals: Float64Array): void {
+    for (const { field, column, weight, signal } of drives) {
+      if (field === undefined || field === "f") continue;
+      const b = field === "gx" ? this.bGx : this.bGy;
+      const values = this.fields[field];
+      const k = j * this.lattice.stride + column;
+      values[k] = values[k] - b[k] * weight * signals[signal];
+    }
+  }
+
+  private driveF(j: number, drives: readonly DrivePoint[], signals: Float64Array): void {
+    const { f } = this.fields;
+    for (const { field, column, weight, signal } of drives) {
+      if (field === "gx" || field === "gy") continue;
+      const k = j * this.lattice.stride + column;
+      f[k] = f[k] - this.bF[k] * weight * signals[signal];
+    }
   }
 
   save(): Uint8Array {
@@ -221,13 +246,14 @@ export class ReferenceEngine implements Engine {
       gy,
       ...this.memory.arrays,
       ...this.poles.arrays,
+      this.branches.state,
     ]);
   }
 
   load(bytes: Uint8Array): void {
     const { f, gx, gy } = this.fields;
     const step = new Float64Array(1);
-    unpackArrays(bytes, [step, f, gx, gy, ...this.memory.arrays, ...this.poles.arrays]);
+    unpackArrays(bytes, [step, f, gx, gy, ...this.memory.arrays, ...this.poles.arrays, this.branches.state]);
     this.stepsTaken = step[0];
   }
 

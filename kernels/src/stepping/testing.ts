@@ -2,7 +2,7 @@
 import { absorbingLayers } from "../boundaries/index.js";
 import type { EdgeKind, Lattice, LatticePolarization, Side } from "../lattice/index.js";
 import { buildLattice } from "../lattice/index.js";
-import type { SectionMedia, SolverMedium } from "../media/index.js";
+import type { Film, SectionMedia, SolverMedium } from "../media/index.js";
 import { SectionCoefficients, VACUUM } from "../media/index.js";
 import type { Engine, EngineSetup } from "./index.js";
 
@@ -94,6 +94,25 @@ export const dispersive = (lattice: Lattice): SectionMedia => ({
   media: MEDIA.map((medium) => (medium === glass ? mixed : medium === ferrite ? relaxing : medium)),
 });
 
+/** Films of every kind over the dispersive paint: along the mesh, off its lines, slanted, bent, crossing, into an absorbing edge. */
+export const filmed = (lattice: Lattice): SectionMedia => {
+  const section = dispersive(lattice);
+  const [w, h] = [section.widthMm, section.heightMm];
+  const film = (ohmsPerSquare: number, ...points: [number, number][]): Film => ({
+    ohmsPerSquare,
+    points: points.map(([x, y]): [number, number] => [x * w, y * h]),
+  });
+  return {
+    ...section,
+    films: [
+      film(50, [0.15, 0.1], [0.15, 0.9]),
+      film(377, [0.1, 0.55], [0.62, 0.55], [0.62, 0.2]),
+      film(5, [0.3, 0.15], [0.8, 0.9], [0.9, 0.45]),
+      film(1e4, [0, 0.31], [1, 0.31]),
+    ],
+  };
+};
+
 export interface Case {
   polarization: LatticePolarization;
   edges: Edges;
@@ -107,9 +126,11 @@ export const empty = (lattice: Lattice): SectionMedia => ({ ...painted(lattice),
 export const setupOf = ({ polarization, edges, nx, ny, media = painted }: Case): EngineSetup => {
   const lattice = buildLattice({ polarization, nx, ny, dx: 1e-3, dy: 1.3e-3, edges });
   const { rows, columns } = lattice;
+  const coefficients = new SectionCoefficients(lattice, media(lattice));
   return {
     lattice,
-    coefficients: new SectionCoefficients(lattice, media(lattice)).row,
+    coefficients: coefficients.row,
+    branches: coefficients.branches,
     layers: absorbingLayers(lattice, 5e9),
     drives: [
       { row: Math.ceil(rows / 2), column: Math.ceil(columns / 2), weight: 0.7, signal: 0 },

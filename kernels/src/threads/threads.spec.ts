@@ -3,7 +3,7 @@ import { storedEnergy } from "../observers/index.js";
 import type { Engine } from "../stepping/index.js";
 import { loadKernel, WasmEngine } from "../stepping/index.js";
 import type { Case } from "../stepping/testing.js";
-import { BOX, bytesOf, dispersive, OPEN, run, setupOf } from "../stepping/testing.js";
+import { BOX, bytesOf, filmed, OPEN, run, setupOf } from "../stepping/testing.js";
 import { spawnHelper } from "./index.js";
 
 const kernel = await loadKernel();
@@ -21,7 +21,7 @@ afterEach(() => {
 
 describe.each([
   ["in constant media", undefined],
-  ["in dispersive media", dispersive],
+  ["in dispersive media with films", filmed],
 ] as const)("the bits of the wasm engine %s", (_, media) => {
   const one: Case = { polarization: "TEz", edges: OPEN, nx: 83, ny: 61, ...(media && { media }) };
 

@@ -95,6 +95,23 @@ export const ENTRY_LAYER = 40;
 /** The memories of the row's points; 0 where there are none. */
 export const ENTRY_MEMORIES = 64;
 
+/** The row's branches; 0 where there are none. */
+export const ENTRY_BRANCHES = 68;
+
+/** Branches of a row: where its draws begin and end, which are drives with the address of their signal, then its branches. */
+export const BRANCHES_HEADER_BYTES = 16;
+export const BRANCHES_DRAWS = 0;
+export const BRANCHES_DRAWS_END = 4;
+export const BRANCHES_FIRST = 8;
+export const BRANCHES_END = 12;
+/** A branch: addresses of its four points and of its numbers, then as float64 its weights, κ, q and Σ|w|. Points too many weigh 0. */
+export const BRANCH_BYTES = 80;
+export const BRANCH_STATE = 16;
+export const BRANCH_WEIGHTS = 24;
+export const BRANCH_DECAY = 56;
+export const BRANCH_CONDUCTANCE = 64;
+export const BRANCH_TOTAL = 72;
+
 /** Memories of a row: the span of columns that they correct, then their terms, TERM_BYTES each. */
 export const MEMORIES_HEADER_BYTES = 32;
 /** Bytes from the row's column 0, and bytes of the span. */

@@ -12,6 +12,7 @@ import {
   dispersive,
   edgesOf,
   empty,
+  filmed,
   OPEN,
   run,
   setupOf,
@@ -136,6 +137,16 @@ const CASES: (Case & { name: string })[] = (["TMz", "TEz"] as const).flatMap((po
     ny: 19,
     media: dispersive,
   },
+  { name: "films in a box", polarization, edges: BOX, nx: 61, ny: 47, media: filmed },
+  { name: "films and layers all round", polarization, edges: OPEN, nx: 67, ny: 43, media: filmed },
+  {
+    name: "films, layers and magnetic",
+    polarization,
+    edges: edgesOf("magnetic", "absorbing", "absorbing", "magnetic"),
+    nx: 41,
+    ny: 19,
+    media: filmed,
+  },
   {
     name: "poles in conformal metal",
     polarization,
@@ -246,8 +257,8 @@ describe("the wasm engine against the reference", () => {
   });
 });
 
-describe("memories of media", () => {
-  const one: Case = { polarization: "TEz", edges: OPEN, nx: 50, ny: 41, media: dispersive };
+describe("memories of media and films", () => {
+  const one: Case = { polarization: "TEz", edges: OPEN, nx: 50, ny: 41, media: filmed };
 
   it.each(["wasm", "reference"] as const)("outlive an edit that does not touch them (%s)", (name) => {
     const setup = setupOf(one);
@@ -256,6 +267,7 @@ describe("memories of media", () => {
     const [edited, alone] = [make(), make()];
     for (const engine of [edited, alone]) run(engine, 90);
     edited.setRows(0, setup.lattice.rows + 1, setup.coefficients);
+    edited.setBranches(structuredClone(setup.branches ?? []));
     for (const engine of [edited, alone]) run(engine, 90, 90);
     for (const field of FIELDS) expect(difference(edited.fields[field], alone.fields[field])).toBe(0);
   });
@@ -271,6 +283,7 @@ describe("memories of media", () => {
         run(engine, 20, 20 * turn);
         const source = turn % 2 === 0 ? constant.coefficients : setup.coefficients;
         engine.setRows(20 + turn, 40 + turn, source);
+        engine.setBranches((setup.branches ?? []).slice(turn));
       }
       scale = Math.max(scale, largest(slow.fields.f));
       expect(difference(fast.fields.f, slow.fields.f) / scale).toBeLessThan(roundings(STEPS));

@@ -6,6 +6,7 @@
 import type { AbsorbingLayers } from "../../boundaries/index.js";
 import type { FieldArray, Lattice } from "../../lattice/index.js";
 import type {
+  Branch,
   CoefficientSource,
   DrivePoint,
   Engine,
@@ -16,8 +17,10 @@ import type {
   Tap,
 } from "../engine.js";
 import { rowCoefficients } from "../engine.js";
+import { branchDrives } from "../branch-memory.js";
 import { packArrays, unpackArrays } from "../packing.js";
 import { Arena } from "./arena.js";
+import { BranchRows } from "./branch-rows.js";
 import { checkOutsideLayers, driveShares } from "./drive-shares.js";
 import { Flushing } from "./flushing.js";
 import * as at from "./layout.js";
@@ -69,6 +72,7 @@ export class WasmEngine implements Engine {
   private readonly flushing: Flushing;
   private readonly cutter: RunCutter;
   private readonly memories: MemoryRows;
+  private readonly branches: BranchRows;
   private readonly table: number;
   private readonly energySums: number;
   private readonly rowBlocks: (RowBlock | null)[];
@@ -126,11 +130,13 @@ export class WasmEngine implements Engine {
     this.rowBlocks = Array.from({ length: rows + 2 }, () => null);
     this.cutter = new RunCutter({ columns: lattice.columns, psiShifts: this.strips.psiShifts });
     this.memories = new MemoryRows(arena, rows);
+    this.branches = new BranchRows(arena, this, this.table, this.fieldAddresses);
     this.writeControl();
     this.writeLayers();
     this.setRows(0, rows + 1, setup.coefficients);
     this.writeTaps(setup.taps);
     this.setDrives(setup.drives, setup.signals);
+    this.setBranches(setup.branches ?? []);
 
     this.kernel = new platform.Instance(module, { env: { memory: arena.memory } }).exports;
     for (let helper = 1; helper < this.threads; helper += 1)
@@ -197,6 +203,13 @@ export class WasmEngine implements Engine {
       this.arena.i32[this.entryWord(j, at.ENTRY_MEMORIES)] = memories;
     }
     if (this.drives.length > 0) this.writeDrives();
+    this.branches.write();
+  }
+
+  setBranches(branches: readonly Branch[]): void {
+    for (const { points } of branches) this.checkRows(points);
+    checkOutsideLayers(branchDrives(branches), this.layers);
+    this.branches.set(branches);
   }
 
   private placeRuns(row: number): void {
@@ -355,6 +368,7 @@ export class WasmEngine implements Engine {
       gy,
       ...this.strips.memory,
       ...this.memories.arrays,
+      this.branches.state,
       this.flushing.largest,
     ]);
   }
@@ -369,6 +383,7 @@ export class WasmEngine implements Engine {
       gy,
       ...this.strips.memory,
       ...this.memories.arrays,
+      this.branches.state,
       this.flushing.largest,
     ]);
     this.stepsTaken = step[0];
