@@ -10,20 +10,33 @@ export interface Extrapolated {
   uncertainty: number;
 }
 
+/**
+ * Where metal corners fall anywhere in their cells, the factor before cellᵖ differs from mesh to mesh, even in sign, and no value
+ * can be extrapolated: the finer mesh's value stands. Its uncertainty is the whole difference and, on top of it, the correction
+ * that an error of a steady sign would have asked for.
+ */
+export function unsteady(coarse: number, fine: number, ratio: number, order: number): Extrapolated {
+  const { uncertainty } = extrapolate(coarse, fine, ratio, order);
+  return { value: fine, uncertainty: Math.abs(fine - coarse) + uncertainty };
+}
+
+/**
+ * The largest uncertainty within `reach` entries: two meshes can agree at a frequency by chance, where their curves cross.
+ *
+ * @param curves those that one error moves together, such as all S of one drive; null where undefined
+ */
+export function widest(curves: readonly (readonly (number | null)[])[], reach: number): (number | null)[] {
+  const length = curves.at(0)?.length ?? 0;
+  const here = Array.from({ length }, (_, n) => Math.max(...curves.map((curve) => curve[n] ?? 0)));
+  return Array.from({ length }, (_, n) =>
+    curves.every((curve) => curve[n] === null)
+      ? null
+      : Math.max(...here.slice(Math.max(0, n - reach), n + reach + 1)),
+  );
+}
+
 /** @param ratio coarse cell over fine cell, above 1; @param order the p above, above 0 */
 export function extrapolate(coarse: number, fine: number, ratio: number, order: number): Extrapolated {
   const correction = (fine - coarse) / (ratio ** order - 1);
   return { value: fine + correction, uncertainty: Math.abs(correction) };
-}
-
-/** The same of a complex number; the uncertainty is the length of the correction. */
-export function extrapolateComplex(
-  coarse: readonly [number, number],
-  fine: readonly [number, number],
-  ratio: number,
-  order: number,
-): { re: number; im: number; uncertainty: number } {
-  const re = extrapolate(coarse[0], fine[0], ratio, order);
-  const im = extrapolate(coarse[1], fine[1], ratio, order);
-  return { re: re.value, im: im.value, uncertainty: Math.hypot(re.uncertainty, im.uncertainty) };
 }

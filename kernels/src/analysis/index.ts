@@ -1,7 +1,7 @@
 /** What is made of traces. */
 export { completeRingDown, excitedBand } from "./completion.js";
 export type { Completion } from "./completion.js";
-export { extrapolate, extrapolateComplex } from "./extrapolation.js";
+export { extrapolate, unsteady, widest } from "./extrapolation.js";
 export type { Extrapolated } from "./extrapolation.js";
 export { fallenDb } from "./decay.js";
 export { judgeLevels, limitAt } from "./limits.js";

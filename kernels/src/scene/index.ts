@@ -19,7 +19,7 @@ export {
 export { hasConformalMetal } from "./metal-cuts.js";
 export { canonicalJson, documentSha256, resultSha256, sceneSha256 } from "./hash.js";
 export * from "./media-figures.js";
-export { meshOrder } from "./mesh-order.js";
+export { type MeshPromise, meshPromise } from "./mesh-order.js";
 export { mediumAt, patchContains } from "./contains.js";
 export { evaluateExpression, type Evaluation } from "./expressions.js";
 export * from "./features.js";

@@ -8,6 +8,7 @@
  *   - a dielectric interface off the mesh lines where E crosses it (TEz), a magnetic one in TMz: 3/2;
  *   - else 2.
  */
+import { cutsCells } from "./metal-cuts.js";
 import type { ResolvedPatch, ResolvedScene } from "./schema.js";
 import type { Medium } from "./schema-media.js";
 import { isPerfect } from "./schema-media.js";
@@ -100,13 +101,21 @@ function hasCrossedInterface(scene: ResolvedScene): boolean {
   return new Set(figures).size > 1;
 }
 
-/** The order that the scene's geometry promises. */
-export function meshOrder(scene: ResolvedScene): number {
+/** What two meshes of a scene can tell. */
+export interface MeshPromise {
+  /** The order in the cell size. */
+  order: number;
+  /** Whether the error keeps its sign and factor from mesh to mesh: not where corners of metal lie off the mesh lines. */
+  steady: boolean;
+}
+
+/** The order that the scene's geometry promises on a mesh of nx × ny cells. */
+export function meshPromise(scene: ResolvedScene, nx: number, ny: number): MeshPromise {
   const thin = scene.paint.some(({ kind }) => kind === "wall" || kind === "film");
   const metal = [scene.background, ...scene.paint.flatMap((p) => ("medium" in p ? [p.medium] : []))].some(
     (id) => isMetal(scene.mediaById.get(id)),
   );
-  if (thin || (metal && scene.mesh.metal === "staircase")) return EDGE_ORDER;
-  if (hasMetalCorner(scene)) return CORNER_ORDER;
-  return hasCrossedInterface(scene) ? INTERFACE_ORDER : SMOOTH_ORDER;
+  if (thin || (metal && scene.mesh.metal === "staircase")) return { order: EDGE_ORDER, steady: false };
+  if (hasMetalCorner(scene)) return { order: CORNER_ORDER, steady: !cutsCells(scene, nx, ny) };
+  return { order: hasCrossedInterface(scene) ? INTERFACE_ORDER : SMOOTH_ORDER, steady: true };
 }

@@ -62,12 +62,14 @@ const balanceSchema = z.strictObject({
   mismatch: curve,
 });
 
-/** Figures at zero cell size, each with its uncertainty: |fine − coarse| over what the order promises. */
+/** Figures at zero cell size, each with its uncertainty, which is never below |fine − coarse| over what the order promises. */
 const extrapolationSchema = z.strictObject({
   /** Coarse cell over fine cell. */
   ratio: real,
   /** The order in the cell size that the geometry promises. */
   order: real,
+  /** False where the error may change its sign from mesh to mesh: the finer mesh's figures then stand, nothing is extrapolated. */
+  steady: z.boolean(),
   probes: z.array(
     z.union([
       z.strictObject({

@@ -1,7 +1,7 @@
 /** What is made of two runs: figures at zero cell size, and shielding. */
 import { describe, expect, it } from "vitest";
 import type { Scene, SceneInput, SolveResult } from "../scene/index.js";
-import { meshOrder, readScene, resolveScene, resultSchema } from "../scene/index.js";
+import { meshPromise, readScene, resolveScene, resultSchema } from "../scene/index.js";
 import { openSession, refinedScene, sceneWithoutShield, withFinerMesh, withShielding } from "./index.js";
 
 const sceneOf = (changes: Partial<SceneInput>): Scene => {
@@ -41,7 +41,7 @@ describe("two meshes", () => {
     const coarse = await solve(scene);
     const result = withFinerMesh(scene, coarse, await solve(refinedScene(scene)));
     expect(resultSchema.safeParse(result).error?.message).toBeUndefined();
-    expect(result.extrapolation).toMatchObject({ ratio: 2, order: 2 });
+    expect(result.extrapolation).toMatchObject({ ratio: 2, order: 2, steady: true });
     const nearest = (list: readonly { GHz: number }[]): number =>
       list.reduce((best, { GHz }) => (Math.abs(GHz - exact) < Math.abs(best - exact) ? GHz : best), 0);
     const raw = Math.abs(nearest(coarse.resonances ?? []) - exact);
@@ -53,7 +53,8 @@ describe("two meshes", () => {
   });
 
   it("take the order from the geometry", () => {
-    const order = (changes: Partial<SceneInput>): number => meshOrder(resolveScene(sceneOf(changes)));
+    const order = (changes: Partial<SceneInput>): number =>
+      meshPromise(resolveScene(sceneOf(changes)), 30, 20).order;
     const area = { id: "a", x: 20, y: 10 };
     const post = { ...area, kind: "ellipse", rx: 4, ry: 4, medium: "pec" } as const;
     const block = { ...area, kind: "rectangle", width: 10, height: 10, medium: "pec" } as const;
@@ -81,6 +82,53 @@ describe("two meshes", () => {
     expect(order({ paint: [{ ...block, medium: "glass" }], media: glass })).toBe(2);
     const across = { polarization: "TEz", probes: [], media: glass } satisfies Partial<SceneInput>;
     expect(order({ ...across, paint: [{ ...block, medium: "glass" }] })).toBe(1.5);
+  });
+});
+
+describe("an error bar of two meshes", () => {
+  // An iris whose corners lie off the lines of both meshes, and of the third that stands for the truth.
+  it("covers a mesh of a third of the cell, at every frequency", { timeout: 60_000 }, async () => {
+    const post = (id: string, y: number) =>
+      ({
+        kind: "rectangle",
+        id,
+        x: 20.3,
+        y,
+        width: 2.1,
+        height: 7.3,
+        medium: "pec",
+      }) as const;
+    const iris = (cellMm: number): Scene =>
+      sceneOf({
+        section: { widthMm: 43, heightMm: 22.86 },
+        band: { fromGHz: 8.2, toGHz: 12.4 },
+        mesh: { cellMm },
+        edges: { left: "absorbing", right: "absorbing", bottom: "electric", top: "electric" },
+        paint: [post("low", 0), post("high", 15.56)],
+        sources: [],
+        probes: [],
+        ports: [
+          { id: "in", from: [8, 0], to: [8, 22.86], inward: "+x", mode: 1, drive: true },
+          { id: "out", from: [35, 0], to: [35, 22.86], inward: "-x", mode: 1 },
+        ],
+        stop: { maxTimeNs: 6, decayDb: 80 },
+      });
+    const scene = iris(0.6);
+    const coarse = await solve(scene);
+    const result = withFinerMesh(scene, coarse, await solve(refinedScene(scene)));
+    const truth = await solve(iris(0.2));
+    expect(result.extrapolation?.steady).toBe(false);
+    let widestBar = 0;
+    for (const { to, re, im, uncertainty } of result.extrapolation?.s ?? []) {
+      const finer = truth.ports?.s.find((one) => one.to === to);
+      re.forEach((value, n) => {
+        const off = Math.hypot((value ?? 9) - (finer?.re[n] ?? 0), (im[n] ?? 9) - (finer?.im[n] ?? 0));
+        expect(off).toBeLessThan(uncertainty[n] ?? 0);
+        widestBar = Math.max(widestBar, uncertainty[n] ?? 9);
+      });
+    }
+    expect(result.extrapolation?.s).toHaveLength(2);
+    expect(widestBar).toBeLessThan(0.03);
   });
 });
 

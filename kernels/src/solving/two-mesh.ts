@@ -1,7 +1,8 @@
 /** The same scene on two meshes: figures at zero cell size, with an error bar. */
-import { extrapolate, extrapolateComplex } from "../analysis/index.js";
-import type { ComplexSpectrum, Extrapolation, Resonance, Scene, SolveResult } from "../scene/index.js";
-import { gridOf, meshOrder, resolveScene } from "../scene/index.js";
+import type { Extrapolated } from "../analysis/index.js";
+import { extrapolate, unsteady, widest } from "../analysis/index.js";
+import type { Extrapolation, MeshPromise, Resonance, Scene, SolveResult } from "../scene/index.js";
+import { gridOf, meshPromise, resolveScene } from "../scene/index.js";
 
 /** The scene on cells half as large. */
 export function refinedScene(scene: Scene): Scene {
@@ -9,42 +10,73 @@ export function refinedScene(scene: Scene): Scene {
   return { ...scene, mesh: { metal: scene.mesh.metal, cellMm: Math.max(dxMm, dyMm) / 2 } };
 }
 
-interface Rule {
+interface Rule extends MeshPromise {
   ratio: number;
-  order: number;
 }
 type Curve = (number | null)[];
 
-function complexCurves(
-  coarse: Pick<ComplexSpectrum, "re" | "im">,
-  fine: Pick<ComplexSpectrum, "re" | "im">,
-  { ratio, order }: Rule,
-): { re: Curve; im: Curve; uncertainty: Curve } {
-  const curves: { re: Curve; im: Curve; uncertainty: Curve } = { re: [], im: [], uncertainty: [] };
-  fine.re.forEach((re, n) => {
-    const im = fine.im[n];
-    const [re0, im0] = [coarse.re[n], coarse.im[n]];
-    const at =
-      re === null || im === null || re0 === null || im0 === null
-        ? null
-        : extrapolateComplex([re0, im0], [re, im], ratio, order);
-    curves.re.push(at && at.re);
-    curves.im.push(at && at.im);
-    curves.uncertainty.push(at && at.uncertainty);
-  });
-  return curves;
-}
+/** Uncertainties are the widest over this share of the frequencies to either side. */
+const REACH = 1 / 40;
 
-function realCurves(
-  coarse: Curve,
-  fine: Curve,
-  { ratio, order }: Rule,
-): { value: Curve; uncertainty: Curve } {
+const atZero = (coarse: number, fine: number, { ratio, order, steady }: Rule): Extrapolated =>
+  (steady ? extrapolate : unsteady)(coarse, fine, ratio, order);
+
+function realCurves(coarse: Curve, fine: Curve, rule: Rule): { value: Curve; uncertainty: Curve } {
   const both = fine.map((value, n) => {
     const before = coarse[n];
-    return value === null || before === null ? null : extrapolate(before, value, ratio, order);
+    return value === null || before === null ? null : atZero(before, value, rule);
   });
   return { value: both.map((at) => at && at.value), uncertainty: both.map((at) => at && at.uncertainty) };
+}
+
+interface Complex {
+  re: Curve;
+  im: Curve;
+}
+
+function complexCurves(coarse: Complex, fine: Complex, rule: Rule): Complex & { uncertainty: Curve } {
+  const re = realCurves(coarse.re, fine.re, rule);
+  const im = realCurves(coarse.im, fine.im, rule);
+  const uncertainty = re.uncertainty.map((part, n) => {
+    const other = im.uncertainty[n];
+    return part === null || other === null ? null : Math.hypot(part, other);
+  });
+  return { re: re.value, im: im.value, uncertainty };
+}
+
+const widened = (curves: readonly Curve[]): Curve =>
+  widest(curves, Math.ceil((curves.at(0)?.length ?? 0) * REACH));
+
+function probesOf(coarse: SolveResult, fine: SolveResult, rule: Rule): Extrapolation["probes"] {
+  return fine.probes.flatMap(({ id, drive, spectrum }): Extrapolation["probes"] => {
+    const before = coarse.probes.find((probe) => probe.id === id && probe.drive === drive)?.spectrum;
+    if (!spectrum || !before) return [];
+    const { GHz } = spectrum;
+    if ("re" in spectrum && "re" in before) {
+      const curves = complexCurves(before, spectrum, rule);
+      return [{ id, drive, GHz, ...curves, uncertainty: widened([curves.uncertainty]) }];
+    }
+    if ("value" in spectrum && "value" in before) {
+      const curves = realCurves(before.value, spectrum.value, rule);
+      return [{ id, drive, GHz, ...curves, uncertainty: widened([curves.uncertainty]) }];
+    }
+    return [];
+  });
+}
+
+/** What moves one S of a drive moves the others: all of them have the widest uncertainty among them. */
+function sOf(coarse: SolveResult, fine: SolveResult, rule: Rule): Extrapolation["s"] {
+  const GHz = fine.ports?.GHz ?? [];
+  const found = (fine.ports?.s ?? []).flatMap((one) => {
+    const before = coarse.ports?.s.find(({ to, from }) => to === one.to && from === one.from);
+    return before ? [{ to: one.to, from: one.from, GHz, ...complexCurves(before, one, rule) }] : [];
+  });
+  return found.map((entry) => ({
+    ...entry,
+    uncertainty: widened(
+      found.filter(({ from }) => from === entry.from).map(({ uncertainty }) => uncertainty),
+    ),
+  }));
 }
 
 /** Pairs of the same resonance: nearest to each other among those of one probe. */
@@ -62,9 +94,8 @@ function pairsOf(coarse: readonly Resonance[], fine: readonly Resonance[]): [Res
 
 function resonancesOf(coarse: SolveResult, fine: SolveResult, rule: Rule): Extrapolation["resonances"] {
   return pairsOf(coarse.resonances ?? [], fine.resonances ?? []).map(([before, after]) => {
-    const GHz = extrapolate(before.GHz, after.GHz, rule.ratio, rule.order);
-    const q =
-      before.q === null || after.q === null ? null : extrapolate(before.q, after.q, rule.ratio, rule.order);
+    const GHz = atZero(before.GHz, after.GHz, rule);
+    const q = before.q === null || after.q === null ? null : atZero(before.q, after.q, rule);
     return {
       probe: after.probe,
       GHz: GHz.value,
@@ -76,43 +107,27 @@ function resonancesOf(coarse: SolveResult, fine: SolveResult, rule: Rule): Extra
 }
 
 /**
- * The result of the scene's own mesh with the extrapolation from it and from the result of a finer mesh at the same frequencies.
+ * The result of the scene's own mesh with the figures at zero cell size from it and from the result of a finer mesh at the same
+ * frequencies.
  *
  * @param scene the scene of `coarse`, whose geometry tells the order
  */
 export function withFinerMesh(scene: Scene, coarse: SolveResult, fine: SolveResult): SolveResult {
   const ratio = Math.sqrt((coarse.grid.dxMm * coarse.grid.dyMm) / (fine.grid.dxMm * fine.grid.dyMm));
-  const rule = { ratio, order: meshOrder(resolveScene(scene)) };
-  const probes = fine.probes.flatMap(({ id, drive, spectrum }): Extrapolation["probes"] => {
-    const before = coarse.probes.find((probe) => probe.id === id && probe.drive === drive)?.spectrum;
-    if (!spectrum || !before) return [];
-    const { GHz } = spectrum;
-    if ("re" in spectrum && "re" in before)
-      return [{ id, drive, GHz, ...complexCurves(before, spectrum, rule) }];
-    if ("value" in spectrum && "value" in before)
-      return [{ id, drive, GHz, ...realCurves(before.value, spectrum.value, rule) }];
-    return [];
-  });
-  const s = (fine.ports?.s ?? []).flatMap(({ to, from, re, im }): Extrapolation["s"] => {
-    const before = coarse.ports?.s.find((one) => one.to === to && one.from === from);
-    const GHz = fine.ports?.GHz ?? [];
-    return before ? [{ to, from, GHz, ...complexCurves(before, { re, im }, rule) }] : [];
-  });
+  const rule = { ratio, ...meshPromise(resolveScene(scene), coarse.grid.nx, coarse.grid.ny) };
+  const more = fine.quality.warnings.filter((sentence) => !coarse.quality.warnings.includes(sentence));
   return {
     ...coarse,
-    extrapolation: { ...rule, probes, s, resonances: resonancesOf(coarse, fine, rule) },
+    extrapolation: {
+      ...rule,
+      probes: probesOf(coarse, fine, rule),
+      s: sOf(coarse, fine, rule),
+      resonances: resonancesOf(coarse, fine, rule),
+    },
     quality: {
       ...coarse.quality,
-      warnings: [
-        ...coarse.quality.warnings,
-        ...fine.quality.warnings
-          .filter((sentence) => !coarse.quality.warnings.includes(sentence))
-          .map((sentence) => `On the finer mesh: ${sentence}`),
-      ],
+      warnings: [...coarse.quality.warnings, ...more.map((sentence) => `On the finer mesh: ${sentence}`)],
     },
-    timing: {
-      ...coarse.timing,
-      seconds: coarse.timing.seconds + fine.timing.seconds,
-    },
+    timing: { ...coarse.timing, seconds: coarse.timing.seconds + fine.timing.seconds },
   };
 }
