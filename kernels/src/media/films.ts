@@ -94,9 +94,11 @@ function onNodes(lattice: Lattice, a: Point, b: Point, ohms: number): Piece[] {
   const pieces: Piece[] = [];
   for (const [from, to] of parts(crossings(a[along], b[along], 0.5))) {
     if ((to - from) * length < TINY * dx) continue;
-    const middle = (axis: number): number => a[axis] + ((b[axis] - a[axis]) * (from + to)) / 2;
-    const strip = Math.round(middle(along));
-    const [low, alpha] = fractionOf(middle(across));
+    const strip = Math.round(a[along] + ((b[along] - a[along]) * (from + to)) / 2);
+    // Where the piece, drawn out, crosses the line of nodes: beside that line it would feel E's kink from outside.
+    const [low, alpha] = fractionOf(
+      a[across] + ((b[across] - a[across]) * (strip - a[along])) / (b[along] - a[along]),
+    );
     const at = (offset: number): { field: "f"; row: number; column: number } => {
       const [x, y] = steep ? [low + offset, strip] : [strip, low + offset];
       return { field: "f", row: y + 1 + layers.bottom, column: x + 1 + layers.left };
