@@ -9,7 +9,7 @@ import type { Lattice } from "../lattice/index.js";
 import type { Engine, EngineFields } from "../stepping/index.js";
 import type { AreaBox, AreaPoints } from "./area-points.js";
 import { areaPoints, isElectric, pointsWhere } from "./area-points.js";
-import { FrameTransform } from "./frame-transform.js";
+import { concat, FrameTransform } from "./frame-transform.js";
 
 export type AreaQuantity = "absorbed" | "energy";
 
@@ -155,8 +155,7 @@ export class AreaProbe {
       worst = Math.max(worst, size);
     };
     if (polarization === "TMz") {
-      for (let n = 0; n < f.indices.length; n += 1)
-        take(f.shares[n], re[base + n] ** 2 + im[base + n] ** 2);
+      for (let n = 0; n < f.indices.length; n += 1) take(f.shares[n], re[base + n] ** 2 + im[base + n] ** 2);
     } else {
       const { shares, neighbours } = this.cells;
       const square = (first: number, second: number, length: number): number => {
@@ -176,7 +175,7 @@ export class AreaProbe {
 
   /** Frames, the trace, the sums. */
   save(): Float64Array {
-    return Float64Array.from([this.count, ...this.values, ...this.transform.save()]);
+    return concat([Float64Array.of(this.count), this.values, this.transform.save()]);
   }
 
   /** Takes what `save` gave from the front of `packed` and returns what follows. */

@@ -14,7 +14,7 @@ import { firstColumn, firstRow, sectionColumns, sectionRows } from "../lattice/i
 import { lossOf } from "../media/index.js";
 import type { DrivePoint, Engine, EngineField } from "../stepping/index.js";
 import { rowCoefficients } from "../stepping/index.js";
-import { FrameTransform } from "./frame-transform.js";
+import { concat, FrameTransform } from "./frame-transform.js";
 
 export interface BalanceSpec {
   drives: readonly DrivePoint[];
@@ -140,7 +140,10 @@ export class PowerBalance {
     this.lossy = lossyPoints(engine);
     this.absorbing = transform(FIELDS.map((field) => [field, this.lossy[field].indices]));
     const links = linksOf(this.lattice);
-    this.links = [...links.filter(({ field }) => field === "gx"), ...links.filter(({ field }) => field === "gy")];
+    this.links = [
+      ...links.filter(({ field }) => field === "gx"),
+      ...links.filter(({ field }) => field === "gy"),
+    ];
     const across = (field: "gx" | "gy"): number[] =>
       this.links.filter((link) => link.field === field).map(({ g }) => g);
     this.crossing = transform([
@@ -245,7 +248,7 @@ export class PowerBalance {
       this.signalRe,
       this.signalIm,
     ];
-    return Float64Array.from(parts.flatMap((part) => [...part]));
+    return concat(parts);
   }
 
   load(packed: Float64Array): void {

@@ -43,6 +43,8 @@ export const COMPUTED: FeatureSet = new Set<Feature | Refinement>([
   "magnetic-poles",
   "film",
   "line-probe",
+  "area-probe",
+  "limit-absorbed-share",
   "ports",
   "limit-level",
   "limit-s",

@@ -23,6 +23,9 @@ export const powerSpectrumSchema = z.strictObject({
   value: curve,
   electric: curve.optional(),
   magnetic: curve.optional(),
+  /** Of an area, in V/m per unit source: |E| by area, and its largest. */
+  meanField: curve.optional(),
+  worstField: curve.optional(),
 });
 
 export const probeResultSchema = z.strictObject({

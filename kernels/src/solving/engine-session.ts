@@ -11,6 +11,7 @@ import { rowCoefficients } from "../stepping/index.js";
 import { packBlocks, unpackBlocks } from "./blocks.js";
 import { changedBox, editProblems } from "./editing.js";
 import { nonFiniteFailure } from "./failure.js";
+import type { FrameLooks } from "./frame-looks.js";
 import type { DrivePlan } from "./plan.js";
 import { coefficientsOf, drivesOf } from "./plan.js";
 import type { ProbePlan } from "./probe-plan.js";
@@ -47,6 +48,8 @@ export interface SessionParts {
   ports: PortPlan | null;
   probes: ProbePlan;
   frequenciesGHz: readonly number[];
+  /** Null where nothing looks at whole frames. */
+  frames: FrameLooks | null;
 }
 
 /** What a snapshot says in words; the numbers follow in blocks. */
@@ -124,7 +127,8 @@ export class EngineSession implements SolveSession {
     let left = Math.max(0, Math.floor(steps));
     while (left > 0 && !this.stopReason && !this.failure) {
       const toCheck = CHECK_INTERVAL - (this.engine.step % CHECK_INTERVAL);
-      const taken = Math.min(left, toCheck, this.grid.maxSteps - this.engine.step);
+      const toFrame = this.parts.frames?.stepsToNext(this.engine.step) ?? toCheck;
+      const taken = Math.min(left, toCheck, toFrame, this.grid.maxSteps - this.engine.step);
       this.takeSteps(taken);
       left -= taken;
     }
@@ -146,6 +150,7 @@ export class EngineSession implements SolveSession {
     const records = new Float64Array(steps * this.parts.probes.records);
     this.engine.advance(steps, signals, records);
     this.traces.append(samplesOf(this.parts.probes, records, steps), steps);
+    this.parts.frames?.look(this.engine, signals);
     const atEnd = this.engine.step >= this.grid.maxSteps;
     if (this.engine.step % CHECK_INTERVAL === 0 || atEnd) this.check(signals);
     if (atEnd && !this.failure) this.stopReason ??= "time";
@@ -171,14 +176,24 @@ export class EngineSession implements SolveSession {
   tracesSince(from: number): TraceIncrement[] {
     const { probes } = this.parts.probes;
     const stepNs = this.lattice.dt * 1e9;
-    return probes.map((probe, index) => ({
-      probe: probe.id,
-      unit: probe.unit,
-      startNs: (this.drives.firstStep + probe.firstSampleStep) * stepNs,
-      stepNs,
-      from: Math.min(from, this.traces.length),
-      values: this.traces.since(index, from).slice(),
-    }));
+    return probes.map((probe, index) => {
+      const values = this.samplesOf(index);
+      const first = Math.min(Math.floor(from / probe.every), values.length);
+      return {
+        probe: probe.id,
+        unit: probe.unit,
+        startNs: (this.drives.firstStep + probe.firstSampleStep) * stepNs,
+        stepNs: probe.every * stepNs,
+        every: probe.every,
+        from: first,
+        values: values.slice(first),
+      };
+    });
+  }
+
+  /** Samples of one column so far; a view. */
+  private samplesOf(column: number): Float64Array {
+    return this.parts.frames?.areas.get(column)?.probe.values ?? this.traces.since(column, 0);
   }
 
   sampleField(request: ViewRequest): FieldSample {
@@ -207,6 +222,7 @@ export class EngineSession implements SolveSession {
       const clearing = this.clearOverdamped(this.coefficients.row);
       engine.setRows(box.firstRow, box.lastRow, clearing);
       engine.setBranches(this.coefficients.branches);
+      this.parts.frames?.refresh(engine);
     }
     // Ports drive as before: an edit keeps them.
     if (!this.parts.ports) this.drives = drivesOf(resolved, lattice, this.drives);
@@ -264,12 +280,14 @@ export class EngineSession implements SolveSession {
     };
     const traces = this.traces.save();
     const sums = saveSums(this.parts.probes.probes);
+    const looks = this.parts.frames?.save() ?? new Float64Array(0);
     const driving = saveGenerators(this.drives.sources.map(({ generator }) => generator));
     const bytes = packBlocks(header, [
       of === "run" ? this.engine.save() : new Uint8Array(0),
       new Uint8Array(traces.buffer, traces.byteOffset, traces.byteLength),
       new Uint8Array(sums.buffer, sums.byteOffset, sums.byteLength),
       new Uint8Array(driving.buffer, driving.byteOffset, driving.byteLength),
+      new Uint8Array(looks.buffer, looks.byteOffset, looks.byteLength),
     ]);
     return { version: 1, step: this.step, bytes };
   }
@@ -279,7 +297,7 @@ export class EngineSession implements SolveSession {
     const words = header as SnapshotHeader;
     if (words.openedSha256 !== this.openedSha256)
       throw new RangeError("The snapshot belongs to another scene.");
-    if (words.engineText !== this.engineText() || blocks.length !== 4) {
+    if (words.engineText !== this.engineText() || blocks.length !== 5) {
       throw new RangeError("The snapshot belongs to another grid, engine or precision.");
     }
     const scene = words.scene ?? this.opened;
@@ -293,6 +311,7 @@ export class EngineSession implements SolveSession {
       this.drives.sources.map(({ generator }) => generator),
       new Float64Array(blocks[3].slice().buffer),
     );
+    this.parts.frames?.load(new Float64Array(blocks[4].slice().buffer));
     this.energy = words.energy;
     this.energyMax = words.energyMax;
     this.stopReason = words.stopReason;
@@ -306,7 +325,7 @@ export class EngineSession implements SolveSession {
 
   /** What the result is made of; it stays when the engine is disposed of. */
   record(): LegRecord {
-    const { engine, lattice, traces } = this;
+    const { engine, lattice } = this;
     return {
       scene: this.opened,
       sceneSha256: this.openedSha256,
@@ -318,13 +337,14 @@ export class EngineSession implements SolveSession {
       probes: this.parts.probes.probes,
       drives: this.drives,
       ports: this.parts.ports,
-      traces: (column) => traces.since(column, 0),
+      frames: this.parts.frames,
+      traces: (column) => this.samplesOf(column),
       frequenciesGHz: this.parts.frequenciesGHz,
       reason: this.stopReason ?? "cancelled",
       energy: this.energy,
       energyMax: this.energyMax,
       edits: this.editLog,
-      warnings: this.parts.warnings,
+      warnings: [...this.parts.warnings, ...(this.parts.frames?.warnings ?? [])],
       seconds: this.seconds,
       cellSteps: (lattice.columns - 1) * (lattice.rows - 1) * this.stepsTimed,
     };

@@ -3,6 +3,7 @@ import type { Scene } from "../scene/index.js";
 import { readScene, resolveScene, SceneError } from "../scene/index.js";
 import { EngineSession } from "./engine-session.js";
 import { chooseEngine } from "./engines.js";
+import { frameLooks, framesEvery, highestOf } from "./frame-looks.js";
 import { LegsSession } from "./legs.js";
 import { coefficientsOf, drivesOf, latticeOf, layersOf } from "./plan.js";
 import type { PortPlan } from "./port-plan.js";
@@ -51,7 +52,8 @@ export async function openSession(scene: Scene, options: SessionOptions = {}): P
     const drives = ports ? portDrives(resolved, lattice, ports) : drivesOf(resolved, lattice);
     // The scene's time ends where it says, wherever it starts.
     const grid = { ...scenesGrid, maxSteps: scenesGrid.maxSteps - drives.firstStep };
-    const probes = probesOf(resolved, lattice, frequenciesGHz, modes);
+    const every = framesEvery(drives, lattice.dt, highestOf(frequenciesGHz, lattice));
+    const probes = probesOf(resolved, lattice, frequenciesGHz, modes, every);
     const engine = makeEngine({
       lattice,
       coefficients: coefficients.row,
@@ -82,6 +84,7 @@ export async function openSession(scene: Scene, options: SessionOptions = {}): P
       ports,
       probes,
       frequenciesGHz,
+      frames: frameLooks({ scene: resolved, engine, drives, frequenciesGHz, every }),
     });
   };
   const driven = resolved.ports.flatMap(({ drive }, index) => (drive ? [index] : []));

@@ -2,6 +2,7 @@
 import type { Lattice } from "../lattice/index.js";
 import type { ResolvedScene, Scene } from "../scene/index.js";
 import type { EngineName, Precision } from "./engines.js";
+import type { FrameLooks } from "./frame-looks.js";
 import type { DrivePlan } from "./plan.js";
 import type { PortPlan } from "./port-plan.js";
 import type { PlannedProbe } from "./probe-plan.js";
@@ -19,6 +20,8 @@ export interface LegRecord {
   drives: DrivePlan;
   /** Null where sources drive. */
   ports: PortPlan | null;
+  /** Null where nothing looks at whole frames. */
+  frames: FrameLooks | null;
   /** Samples by column: the probes in their order, then those of the ports. */
   traces: (column: number) => Float64Array;
   frequenciesGHz: readonly number[];

@@ -41,11 +41,6 @@ interface LegsHeader {
   steps: number[];
 }
 
-const samplesOf = (traces: readonly TraceIncrement[]): number => {
-  const first = traces.at(0);
-  return first ? first.from + first.values.length : 0;
-};
-
 export class LegsSession implements SolveSession {
   readonly grid: GridSummary;
   readonly quantities: readonly FieldQuantity[];
@@ -105,7 +100,7 @@ export class LegsSession implements SolveSession {
       record: current.record(),
       saved: current.snapshot("record"),
       traces,
-      samples: samplesOf(traces),
+      samples: current.step,
     });
     current.dispose();
     this.current = this.legs[this.finished.length].open();
@@ -124,7 +119,9 @@ export class LegsSession implements SolveSession {
       const parts: Float64Array[] = [];
       let start = 0;
       for (const { traces, samples } of this.finished) {
-        if (from < start + samples) parts.push(traces[probe].values.subarray(Math.max(0, from - start)));
+        const { every = 1, values } = traces[probe];
+        if (from < start + samples)
+          parts.push(values.subarray(Math.floor(Math.max(0, from - start) / every)));
         start += samples;
       }
       parts.push(trace.values);
@@ -134,7 +131,8 @@ export class LegsSession implements SolveSession {
         values.set(part, at);
         at += part.length;
       }
-      return { ...trace, from: Math.min(from, before + trace.from + trace.values.length), values };
+      const all = this.finished.reduce((sum, leg) => sum + leg.traces[probe].values.length, 0);
+      return { ...trace, from: all + trace.from + trace.values.length - values.length, values };
     });
   }
 

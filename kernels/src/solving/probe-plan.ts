@@ -16,12 +16,13 @@ import type { Tap } from "../stepping/index.js";
 
 export interface PlannedProbe {
   id: string;
-  kind: "point" | "line";
-  /** A field component, "voltage" or "power". */
+  kind: "point" | "line" | "area";
+  /** A field component, "voltage", "power", "absorbed" or "energy". */
   quantity: string;
   unit: string;
-  /** Time of sample 0 over Δt. */
+  /** Time of sample 0 over Δt, and of each from the one before. */
   firstSampleStep: number;
+  every: number;
   /** Running sums of a power probe. */
   power: LinePower | null;
 }
@@ -52,12 +53,14 @@ function everyStep(scene: ResolvedScene, dt: number): number {
  *
  * @param frequenciesGHz those of the spectra
  * @param modes those of the ports
+ * @param framesEvery steps between two frames, the samples of area probes
  */
 export function probesOf(
   scene: ResolvedScene,
   lattice: Lattice,
   frequenciesGHz: readonly number[],
   modes: readonly PortMode[],
+  framesEvery: number,
 ): ProbePlan {
   const probes: PlannedProbe[] = [];
   const taps = modes.flatMap((mode, index) => portTaps(mode, scene.probes.length + PORT_RECORDS * index));
@@ -67,8 +70,12 @@ export function probesOf(
   for (const probe of scene.probes) {
     const { id } = probe;
     const record = probes.length;
-    if (probe.kind === "area") throw new RangeError(`The probe "${id}" is of a kind no engine reads.`);
-    if (probe.kind === "point") {
+    if (probe.kind === "area") {
+      const { kind, quantity } = probe;
+      const unit = quantity === "absorbed" ? "W/m" : "J/m";
+      const times = { firstSampleStep: framesEvery, every: framesEvery };
+      probes.push({ id, kind, quantity, unit, ...times, power: null });
+    } else if (probe.kind === "point") {
       const place = engineFieldOf(lattice, probe.field);
       if (!place)
         throw new RangeError(`The probe "${id}" reads ${probe.field}, which ${scene.polarization} lacks.`);
@@ -79,6 +86,7 @@ export function probesOf(
         quantity: probe.field,
         unit: unitOf(probe.field),
         firstSampleStep: firstSampleStep(place.field),
+        every: 1,
         power: null,
       });
     } else if (probe.quantity === "voltage") {
@@ -89,6 +97,7 @@ export function probesOf(
         quantity: "voltage",
         unit: "V",
         firstSampleStep: firstSampleStep("gx"),
+        every: 1,
         power: null,
       });
     } else {
@@ -107,7 +116,7 @@ export function probesOf(
         every: everyStep(scene, lattice.dt),
       });
       records += 2 * line.pieces;
-      probes.push({ id, kind: "line", quantity: "power", unit: "W/m", firstSampleStep: 0, power });
+      probes.push({ id, kind: "line", quantity: "power", unit: "W/m", firstSampleStep: 0, every: 1, power });
     }
   }
   return { probes, taps, samples: recorded, records };

@@ -35,8 +35,8 @@ export function resonancesInDocument(input: SpectrumInput, scene: ResolvedScene)
   const first = sources.at(0);
   if (!first || !Number.isFinite(endSeconds) || input.steps === 0) return undefined;
   // A power rings at sums and differences of the fields' frequencies.
-  const traces = input.probes.flatMap(({ id, power }, index) =>
-    power ? [] : [{ id, signal: traceSignal(input, index) }],
+  const traces = input.probes.flatMap(({ id, kind, power }, index) =>
+    power || kind === "area" ? [] : [{ id, signal: traceSignal(input, index) }],
   );
   const band = { from: scene.band.fromGHz * 1e9, to: scene.band.toGHz * 1e9 };
   if (!ringDownLasts(traces, band, endSeconds)) return undefined;

@@ -1,5 +1,6 @@
 /** The result document of a run: one leg, or several in turn that are merged. */
 import type { ProbeResult, Resonance, SolveResult } from "../scene/index.js";
+import { balanceInDocument, judgeShares } from "./balance.js";
 import type { LegRecord } from "./leg-record.js";
 import { judgeLines } from "./limits.js";
 import { legWaves, portsInDocument, sentWave } from "./port-results.js";
@@ -15,6 +16,7 @@ interface LegPart {
   results: ProbeResult[];
   resonances: Resonance[] | undefined;
   waves: ReturnType<typeof legWaves>;
+  balance: NonNullable<SolveResult["balance"]> | null;
   unfinished: ReadonlySet<string>;
   warnings: string[];
 }
@@ -25,6 +27,7 @@ function partOf(record: LegRecord, edited: boolean): LegPart {
   const drive = record.ports?.modes[record.ports.driven].id ?? null;
   const driven: SpectrumInput = {
     probes: record.probes,
+    frames: record.frames,
     drives: record.drives,
     traces: record.traces,
     dt,
@@ -43,7 +46,7 @@ function partOf(record: LegRecord, edited: boolean): LegPart {
       unit: probe.unit,
       trace: {
         startNs: (record.drives.firstStep + probe.firstSampleStep) * dt * 1e9,
-        stepNs: dt * 1e9,
+        stepNs: probe.every * dt * 1e9,
         values: Array.from(record.traces(index)),
       },
       spectrum: spectra?.spectra[index] ?? null,
@@ -53,6 +56,7 @@ function partOf(record: LegRecord, edited: boolean): LegPart {
     results,
     resonances: edited ? undefined : resonancesInDocument(driven, record.resolved),
     waves,
+    balance: spectra ? balanceInDocument(driven) : null,
     unfinished: spectra?.unfinished ?? new Set(),
     warnings: [...record.warnings, ...(waves?.warnings ?? []), ...(spectra?.warnings ?? [])],
   };
@@ -82,20 +86,23 @@ export function buildResult(records: readonly LegRecord[]): SolveResult {
   const results = parts.flatMap((part) => part.results);
   // Resonances belong to the section, whichever port excites them: the first leg tells them.
   const { resonances } = parts[0];
+  const balance = parts[0].balance ?? undefined;
   const ports = portsInDocument(
     records,
     parts.map(({ waves }) => waves),
   );
+  const unfinished = new Set(parts.flatMap((part) => [...part.unfinished]));
   const limits = edited
     ? []
     : [
         ...judgeLines(first.resolved, {
           results,
-          unfinished: new Set(parts.flatMap(({ unfinished }) => [...unfinished])),
+          unfinished,
           ports,
           portsUnfinished: parts.some(({ waves }) => waves?.unfinished ?? false),
         }),
         ...judgeQ(first.resolved, resonances),
+        ...judgeShares(first.resolved, results, balance, unfinished),
       ];
   const warnings = [...new Set(parts.flatMap((part) => part.warnings))];
   if (edited) {
@@ -126,6 +133,7 @@ export function buildResult(records: readonly LegRecord[]): SolveResult {
     probes: results,
     ...(ports ? { ports } : {}),
     ...(resonances ? { resonances } : {}),
+    ...(balance ? { balance } : {}),
     ...(limits.length > 0 ? { limits } : {}),
     quality: qualityOf({ ...loudest, warnings }),
     ...(edited ? { edits } : {}),

@@ -49,6 +49,8 @@ export interface TraceIncrement {
   /** Time of the probe's sample 0, and the spacing, in ns. */
   startNs: number;
   stepNs: number;
+  /** Steps from sample to sample; left out: 1. */
+  every?: number;
   /** Index of `values[0]` in the whole trace. */
   from: number;
   values: Float64Array;
@@ -83,7 +85,7 @@ export interface SolveSession {
   advance(steps: number): AdvanceOutcome;
   /** Ends the run here; the result then says "cancelled". */
   cancel(): void;
-  /** Samples recorded at index `from` and later, per probe in the scene's order. */
+  /** Samples recorded at step `from` and later, per probe in the scene's order. */
   tracesSince(from: number): TraceIncrement[];
   /** One field quantity resampled to the size asked for (never finer than the lattice). */
   sampleField(request: ViewRequest): FieldSample;

@@ -10,6 +10,7 @@ import {
   tonePhasor,
 } from "../analysis/index.js";
 import type { ComplexSpectrum, PowerSpectrum } from "../scene/index.js";
+import type { AreaLook, FrameLooks } from "./frame-looks.js";
 import type { DrivePlan } from "./plan.js";
 import type { PlannedProbe } from "./probe-plan.js";
 
@@ -29,6 +30,7 @@ const STEADY = 0.01;
 
 export interface SpectrumInput {
   probes: readonly PlannedProbe[];
+  frames: FrameLooks | null;
   drives: DrivePlan;
   traces: (probe: number) => Float64Array;
   /** Seconds. */
@@ -66,9 +68,28 @@ export function waveformSignal(input: SpectrumInput): SampledSignal {
 
 export const traceSignal = (input: SpectrumInput, probe: number): SampledSignal => ({
   start: (input.drives.firstStep + input.probes[probe].firstSampleStep) * input.dt,
-  step: input.dt,
+  step: input.probes[probe].every * input.dt,
   values: input.traces(probe),
 });
+
+/** Probes whose spectra are averages of products of fields. */
+const isAverage = ({ kind, power }: PlannedProbe): boolean => power !== null || kind === "area";
+
+const defined = (values: Float64Array): (number | null)[] =>
+  Array.from(values, (value) => (Number.isFinite(value) ? value : null));
+
+/** @param divisor |…|² of what drives, at the area's frequencies */
+function areaSpectrum({ probe, frequenciesGHz }: AreaLook, divisor: Float64Array): PowerSpectrum {
+  const { electric, magnetic, meanField, worstField } = probe.figures();
+  return {
+    GHz: [...frequenciesGHz],
+    value: defined(electric.map((value, n) => (value + magnetic[n]) / divisor[n])),
+    electric: defined(electric.map((value, n) => value / divisor[n])),
+    magnetic: defined(magnetic.map((value, n) => value / divisor[n])),
+    meanField: defined(meanField.map((value, n) => value / Math.sqrt(divisor[n]))),
+    worstField: defined(worstField.map((value, n) => value / Math.sqrt(divisor[n]))),
+  };
+}
 
 function pulseSpectra(input: SpectrumInput): Spectra {
   const frequencies = input.frequenciesGHz.map((frequency) => frequency * 1e9);
@@ -83,8 +104,10 @@ function pulseSpectra(input: SpectrumInput): Spectra {
     );
   const signals = input.probes.map((_, index) => traceSignal(input, index));
   // A power falls twice as fast as the fields that make it.
-  const fallen = signals.map(({ values }, index) => fallenDb(values) / (input.probes[index].power ? 2 : 1));
-  const cut = fallen.filter((level) => level < RUNG_DOWN_DB).length;
+  const fallen = signals.map(
+    ({ values }, index) => fallenDb(values) / (isAverage(input.probes[index]) ? 2 : 1),
+  );
+  const cut = fallen.filter((level, index) => level < RUNG_DOWN_DB && !isAverage(input.probes[index])).length;
   const pieces = Math.max(LEAST_PIECES, Math.floor(PIECES / Math.max(1, cut)));
   const excited: WideBand = excitedBand(waveform, EXCITED_TO * input.band.toGHz * 1e9);
   const powerSpectrum = (powers: readonly number[]): PowerSpectrum => ({
@@ -94,8 +117,24 @@ function pulseSpectra(input: SpectrumInput): Spectra {
       return Number.isFinite(value) ? value : null;
     }),
   });
+  const noteUnfinished = (id: string, index: number, why: string): void => {
+    unfinished.add(id);
+    warnings.push(
+      `The trace of "${id}" had fallen by ${fallen[index].toFixed(0)} dB only when the run stopped (${RUNG_DOWN_DB} dB are needed)${why}: sharp peaks of its spectrum read too low, and no limit is judged on it. Run longer.`,
+    );
+  };
+  const divisorOf = (wantedGHz: readonly number[]): Float64Array =>
+    Float64Array.from(wantedGHz, (frequency) => {
+      const n = input.frequenciesGHz.indexOf(frequency);
+      return divisor.re[n] ** 2 + divisor.im[n] ** 2;
+    });
   const spectra = input.probes.map((probe, index): ComplexSpectrum | PowerSpectrum => {
     if (probe.power && over && fallen[index] >= RUNG_DOWN_DB) return powerSpectrum(probe.power.powers());
+    const area = input.frames?.areas.get(index);
+    if (area) {
+      if (!over || fallen[index] < RUNG_DOWN_DB) noteUnfinished(probe.id, index, "");
+      return areaSpectrum(area, divisorOf(area.frequenciesGHz));
+    }
     const sum = fourierSum(signals[index], frequencies);
     const GHz = [...input.frequenciesGHz];
     if (over && fallen[index] >= RUNG_DOWN_DB) return { GHz, ...quotient(sum, divisor) };
@@ -111,13 +150,10 @@ function pulseSpectra(input: SpectrumInput): Spectra {
       });
       return { GHz, ...quotient(sum, divisor), completed: true };
     }
-    unfinished.add(probe.id);
     const why = completion
       ? ` and its poles leave ${(100 * completion.left).toPrecision(2)} % of the rest untold`
       : "";
-    warnings.push(
-      `The trace of "${probe.id}" had fallen by ${fallen[index].toFixed(0)} dB only when the run stopped (${RUNG_DOWN_DB} dB are needed)${why}: sharp peaks of its spectrum read too low, and no limit is judged on it. Run longer.`,
-    );
+    noteUnfinished(probe.id, index, why);
     return probe.power ? powerSpectrum(probe.power.powers()) : { GHz, ...quotient(sum, divisor) };
   });
   return { spectra, unfinished, warnings };
@@ -145,10 +181,12 @@ function toneSpectra(input: SpectrumInput, hz: number): Spectra {
   );
   const warnings: string[] = [];
   const unfinished = new Set<string>();
-  if (probes.some(({ power }) => power))
-    warnings.push("With a tone, probes of power have a trace but no average; drive with a pulse for it.");
+  if (probes.some(isAverage))
+    warnings.push(
+      "With a tone, probes of power and energy have a trace but no average; drive with a pulse for it.",
+    );
   const spectra = probes.map((probe, index): ComplexSpectrum | null => {
-    if (probe.power) return null;
+    if (isAverage(probe)) return null;
     const signal = traceSignal(input, index);
     const last = tonePhasor(signal, hz, steps - window, steps);
     const before = tonePhasor(signal, hz, steps - 2 * window, steps - window);
