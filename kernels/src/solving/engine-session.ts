@@ -84,6 +84,8 @@ export class EngineSession implements SolveSession {
   private energyMax = 0;
   private stopReason: StopReason | null = null;
   private failure: RunFailure | null = null;
+  /** Signals of the steps since fields were last found finite. */
+  private unchecked: Float64Array[] = [];
   private seconds = 0;
   private stepsTimed = 0;
   /** Steps of a run that was restored without its fields. */
@@ -152,12 +154,14 @@ export class EngineSession implements SolveSession {
     this.traces.append(samplesOf(this.parts.probes, records, steps), steps);
     this.parts.frames?.look(this.engine, signals);
     const atEnd = this.engine.step >= this.grid.maxSteps;
-    if (this.engine.step % CHECK_INTERVAL === 0 || atEnd) this.check(signals);
+    this.unchecked.push(signals);
+    if (this.engine.step % CHECK_INTERVAL === 0 || atEnd) this.check();
     if (atEnd && !this.failure) this.stopReason ??= "time";
   }
 
-  /** @param signals those of the last steps */
-  private check(signals: Float64Array): void {
+  private check(): void {
+    const signals = this.unchecked;
+    this.unchecked = [];
     this.energy = storedEnergy(this.engine);
     if (!Number.isFinite(this.energy)) {
       this.failure = nonFiniteFailure(this.engine, this.resolved, this.drives, signals);

@@ -25,15 +25,17 @@ const placeMm = (lattice: Lattice, row: number, column: number): [number, number
 /** The first source of which a signal reaches `limit` or is no number. */
 function loudSource(
   { sources, signals: width }: DrivePlan,
-  signals: Float64Array,
+  blocks: readonly Float64Array[],
   limit: number,
 ): PlannedSource | null {
   let column = 0;
   for (const source of sources) {
     const end = column + source.generator.signals;
-    for (let n = 0; n < signals.length; n += 1) {
-      const within = n % width >= column && n % width < end;
-      if (within && !(Math.abs(signals[n]) < limit)) return source;
+    for (const signals of blocks) {
+      for (let n = 0; n < signals.length; n += 1) {
+        const within = n % width >= column && n % width < end;
+        if (within && !(Math.abs(signals[n]) < limit)) return source;
+      }
     }
     column = end;
   }
@@ -45,7 +47,7 @@ export function nonFiniteFailure(
   engine: Engine,
   scene: ResolvedScene,
   drives: DrivePlan,
-  signals: Float64Array,
+  signals: readonly Float64Array[],
 ): RunFailure {
   const step = `step ${engine.step}`;
   const limit = engine.precision === "f32" ? 1e30 : 1e290;
