@@ -34,6 +34,13 @@ export const DEFAULT_GRADING: LayerGrading = {
   alphaOrder: 1,
 };
 
+/**
+ * Across guides with a cut-off. What rings there below the cut-off (a dielectric post holds such a mode) reaches the layer as an
+ * evanescent wave, on which the layer with less α has gain: a post in a guide grew by 0.5 dB per 1,000 steps, and decays so.
+ * Reflection of travelling waves is −82 dB at 1.25 times the band's lower edge in place of −102 dB.
+ */
+export const GUIDE_GRADING: LayerGrading = { ...DEFAULT_GRADING, alphaFactor: 1 };
+
 /** What a layer does to the points of one axis, at F's points or at the half points between them. */
 export interface AxisStretch {
   /** By column (or row) index: ψ's decay and gain, and 1/κ − 1. All zero outside the layers. */

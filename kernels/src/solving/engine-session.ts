@@ -36,6 +36,9 @@ import { TraceStore } from "./trace-store.js";
 /** Energy is looked at, and non-finite fields are found, at multiples of this many steps. */
 export const CHECK_INTERVAL = 64;
 
+/** S is a ratio at each frequency, and a port's pulse is weak at the ends of the band: its runs go on until this much less is left. */
+const PORTS_FURTHER_DB = 10;
+
 export interface SessionParts {
   scene: Scene;
   resolved: ResolvedScene;
@@ -169,7 +172,8 @@ export class EngineSession implements SolveSession {
     }
     this.energyMax = Math.max(this.energyMax, this.energy);
     const over = (this.drives.firstStep + this.engine.step) * this.lattice.dt > this.drives.endSeconds;
-    const floor = this.energyMax * 10 ** (-this.resolved.stop.decayDb / 10);
+    const decayDb = this.resolved.stop.decayDb + (this.parts.ports ? PORTS_FURTHER_DB : 0);
+    const floor = this.energyMax * 10 ** (-decayDb / 10);
     if (over && this.energyMax > 0 && this.energy <= floor) this.stopReason = "decay";
   }
 

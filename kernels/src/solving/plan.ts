@@ -1,5 +1,5 @@
 /** A scene compiled for an engine: lattice, coefficients, drives. */
-import { absorbingLayers } from "../boundaries/index.js";
+import { absorbingLayers, DEFAULT_GRADING, GUIDE_GRADING } from "../boundaries/index.js";
 import type { AbsorbingLayers } from "../boundaries/index.js";
 import type { CompiledWaveform, SignalGenerator } from "../drives/index.js";
 import {
@@ -122,7 +122,8 @@ function layerIndex(scene: ResolvedScene): number {
 export function layersOf(scene: ResolvedScene, lattice: Lattice): AbsorbingLayers {
   const index = layerIndex(scene);
   const sides: Record<Side, number> = { left: index, right: index, bottom: index, top: index };
-  return absorbingLayers(lattice, scene.band.fromGHz * 1e9, sides);
+  const cutOff = scene.ports.some(({ mode }) => mode > 0);
+  return absorbingLayers(lattice, scene.band.fromGHz * 1e9, sides, cutOff ? GUIDE_GRADING : DEFAULT_GRADING);
 }
 
 interface Driving {
