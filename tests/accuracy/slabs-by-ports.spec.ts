@@ -5,7 +5,7 @@
  *
  * Two meshes of the default engine, the coarser with at least 20 cells per shortest wavelength of its band (finer where that puts
  * faces on its lines), extrapolated with order 2. Bars: 0.005 in |R| and |T|, 1° in phase where they are above 0.1. Left
- * out: sheets of no thickness, angles above 60°, and at angles every other frequency and those below 6 GHz, where guides are wide.
+ * out: angles above 60°, and at angles every other frequency and those below 6 GHz, where guides are wide.
  */
 import { describe, expect, it } from "vitest";
 import { z } from "zod";
@@ -29,8 +29,10 @@ const mediumSchema = z.object({
   sigma_m: z.number(),
 });
 type LayerMedium = z.output<typeof mediumSchema>;
+const layerSchema = mediumSchema.extend({ thickness_m: z.number() });
 const geometrySchema = z.object({
-  layers: z.array(mediumSchema.extend({ thickness_m: z.number() })),
+  /** Sheets of no thickness among them. */
+  layers: z.array(z.union([layerSchema, z.object({ sheet_ohm_per_sq: z.number() })])),
   backing: z.union([z.literal("air"), z.literal("pec"), mediumSchema]),
 });
 type Geometry = z.output<typeof geometrySchema>;
@@ -55,14 +57,17 @@ const BACKING_CELLS = 24;
 /** Cells across a TEM guide. */
 const ACROSS = 2;
 
-const mediaOf = ({ layers, backing }: Geometry): LayerMedium[] => [
-  ...layers,
-  ...(typeof backing === "string" ? [] : [backing]),
+const solid = ({ layers }: Geometry): z.output<typeof layerSchema>[] =>
+  layers.flatMap((layer) => ("thickness_m" in layer ? [layer] : []));
+
+const mediaOf = (geometry: Geometry): LayerMedium[] => [
+  ...solid(geometry),
+  ...(typeof geometry.backing === "string" ? [] : [geometry.backing]),
 ];
 
 /** The largest cell of at most `most` mm that puts all faces on its lines; the first layer alone where no such cell is near. */
-function cellOf({ layers }: Geometry, most: number): number {
-  const thicknesses = layers.map(({ thickness_m }) => 1000 * thickness_m);
+function cellOf(geometry: Geometry, most: number): number {
+  const thicknesses = solid(geometry).map(({ thickness_m }) => 1000 * thickness_m);
   const first = thicknesses.at(0);
   if (first === undefined) return most;
   const fits = (cell: number): boolean =>
@@ -71,6 +76,10 @@ function cellOf({ layers }: Geometry, most: number): number {
   for (let count = start; count < 2 * start + 8; count += 1) if (fits(first / count)) return first / count;
   return first / start;
 }
+
+type Patch = NonNullable<Document["paint"]>[number];
+type PaintedArea = Extract<Patch, { kind: "rectangle" }>;
+type Film = Extract<Patch, { kind: "film" }>;
 
 interface Guide {
   polarization: "TMz" | "TEz";
@@ -89,26 +98,41 @@ function sceneOf(geometry: Geometry, guide: Guide, refinement: number): Document
   const height = guide.width ?? ACROSS * coarse;
   const gap = GUIDE_CELLS * coarse;
   const face = 2 * gap;
-  const thickness = layers.reduce((sum, { thickness_m }) => sum + 1000 * thickness_m, 0);
+  const thickness = solid(geometry).reduce((sum, { thickness_m }) => sum + 1000 * thickness_m, 0);
   const behind = backing === "pec" ? 0 : backing === "air" ? 2 * gap : BACKING_CELLS * coarse;
   // The cells are those asked for where the section is a whole number of them.
   const widthMm =
     backing === "pec" ? face + thickness : cell * Math.ceil((face + thickness + behind) / cell - 1e-9);
   let x = face;
-  const paint = mediaOf(geometry).map((_, n) => {
-    const own = n < layers.length ? 1000 * layers[n].thickness_m : widthMm - x;
+  let painted = 0;
+  const area = (width: number): PaintedArea => {
     const patch = {
       kind: "rectangle",
-      id: `layer-${n}`,
-      medium: `m-${n}`,
+      id: `layer-${painted}`,
+      medium: `m-${painted}`,
       x,
       y: 0,
-      width: own,
+      width,
       height,
     } as const;
-    x += own;
+    x += width;
+    painted += 1;
     return patch;
-  });
+  };
+  const paint = layers.map((layer, n): PaintedArea | Film =>
+    "thickness_m" in layer
+      ? area(1000 * layer.thickness_m)
+      : {
+          kind: "film",
+          id: `sheet-${n}`,
+          points: [
+            [x, 0],
+            [x, height],
+          ],
+          ohmsPerSquare: layer.sheet_ohm_per_sq,
+        },
+  );
+  if (typeof backing !== "string") paint.push(area(widthMm - x));
   const port = { mode: guide.mode, shiftMm: gap };
   return {
     polarization: guide.polarization,
@@ -205,8 +229,8 @@ const LOWEST_AT_ANGLES = 6;
 const ANGLES_TO = 60;
 
 describe("layers at right angles, by the TEM mode", () => {
-  it("covers every layered entry without sheets", () => {
-    expect(entries.length).toBe(17);
+  it("covers every layered entry", () => {
+    expect(entries.length).toBe(19);
   });
   it.each(entries)("$id", async ({ id, geometry, cases }) => {
     const straight = cases.filter(({ theta_deg }) => theta_deg === 0);

@@ -220,6 +220,52 @@ const step = (changes: Partial<SceneInput> = {}): SceneInput =>
     ...changes,
   });
 
+describe("three driven ports along both axes", () => {
+  // TEz's mode 1 would also lose power to its mode 0.
+  it.each([CASES[0], CASES[2]])(
+    "are reciprocal and lossless on unequal cells: $polarization, mode $mode",
+    async (of) => {
+      const { polarization, mode } = of;
+      // A tee of two guides 20 mm wide; its cells are 1 mm by 0.87 mm.
+      const result = await solve(
+        guide({
+          polarization,
+          section: { widthMm: 60, heightMm: 46.98 },
+          band: { fromGHz: mode === 0 ? 2 : 9, toGHz: mode === 0 ? 6 : 13 },
+          mesh: { cellMm: 1 },
+          edges: across({ top: "absorbing" }),
+          paint: [
+            { kind: "rectangle", id: "l", medium: "pec", x: 0, y: 20, width: 20, height: 40 },
+            { kind: "rectangle", id: "r", medium: "pec", x: 40, y: 20, width: 20, height: 40 },
+          ],
+          ports: [
+            port("a", 8, "+x", { mode, to: [8, 20] }),
+            port("b", 52, "-x", { mode, to: [52, 20] }),
+            { id: "c", from: [20, 38], to: [40, 38], inward: "-y", mode, drive: true },
+          ],
+        }),
+        { frequenciesGHz: mode === 0 ? [2.5, 4, 5.5] : [9.5, 11, 12.5] },
+      );
+      for (const [to, from] of [
+        ["a", "b"],
+        ["a", "c"],
+        ["b", "c"],
+      ] as const) {
+        const back = sOf(result, from, to);
+        sOf(result, to, from).forEach((value, n) => expect(apart(value, back[n])).toBeLessThan(5e-4));
+      }
+      for (const from of ["a", "b", "c"]) {
+        const powers = ["a", "b", "c"].map((to) =>
+          sOf(result, to, from).map(([re, im]) => re ** 2 + im ** 2),
+        );
+        powers[0].forEach((power, n) => expect(power + powers[1][n] + powers[2][n]).toBeCloseTo(1, 3));
+        for (const power of powers.flat()) expect(power).toBeGreaterThan(1e-3);
+      }
+      expect(result.ports?.passivity.worst).toBeCloseTo(1, 3);
+    },
+  );
+});
+
 describe("two driven ports", () => {
   const frequenciesGHz = [8.8, 9.5, 10.5, 11.5];
 
