@@ -2,12 +2,12 @@
  * Lossy layers and absorbing edges. A line source between two electric edges closer than half a wavelength excites the TEM wave
  * alone a few cells away, which is a plane wave at normal incidence.
  */
-import { absorbingLayers, layerReflectionDb } from "@heddle/kernels/boundaries";
+import { absorbingLayers, evanescentReflectionDb, layerReflectionDb } from "@heddle/kernels/boundaries";
 import { buildLattice } from "@heddle/kernels/lattice";
 import { describe, expect, it } from "vitest";
 import { measured } from "./support/measured.js";
 import type { Document } from "./support/run.js";
-import { phasorOf, solve, traceOf } from "./support/run.js";
+import { OPEN_SPACE, phasorOf, solve, traceOf } from "./support/run.js";
 
 const ETA0 = 376.730313668;
 const EPS0 = 8.8541878128e-12;
@@ -201,5 +201,68 @@ describe("the absorbing edge", () => {
     measured(`edge computed, dB`, computed);
     expect(inRun).toBeLessThan(-80);
     expect(agree(inRun, computed)).toBe(true);
+  });
+
+  // The bar for 12 cells: −80 dB to 45°, −65 dB at 60°, −40 dB at 75°, computed from the layer's own coefficients.
+  it.each(["TMz", "TEz"] as const)(
+    "sends back what the bar allows at every angle and mesh, %s",
+    (polarization) => {
+      const lattice = buildLattice({ polarization, nx: 60, ny: 60, dx: 1e-3, dy: 1e-3, edges: OPEN_SPACE });
+      const cellHz = 299.792458e9;
+      const layers = absorbingLayers(lattice, cellHz / 200);
+      for (const side of ["left", "top"] as const)
+        for (const cells of [20, 40, 80, 200])
+          for (const [degrees, bar] of [
+            [0, -80],
+            [15, -80],
+            [30, -80],
+            [45, -80],
+            [60, -65],
+            [75, -40],
+          ] as const)
+            expect(layerReflectionDb(lattice, layers, { side, hz: cellHz / cells, degrees })).toBeLessThan(
+              bar,
+            );
+    },
+  );
+
+  it("sends back an evanescent wave as computed, 1.5 times the free wave number along the edge", async () => {
+    // A guide w wide at two thirds of its cut-off; at `gap` cells from the edge the answer has come twice as far.
+    const [w, gap] = [20, 4];
+    const f = 299.792458 / (2 * w) / 1.5;
+    const guide = (widthMm: number): Document => ({
+      polarization: "TMz",
+      section: { widthMm, heightMm: w },
+      band: { fromGHz: 0.8 * f, toGHz: 1.2 * f },
+      mesh: { cellMm: 1 },
+      edges: EDGES,
+      sources: [
+        {
+          kind: "line",
+          id: "wire",
+          x: 20,
+          y: w / 2,
+          waveform: { kind: "pulse", centerGHz: f, widthGHz: 0.4 * f },
+        },
+      ],
+      probes: [{ kind: "point", id: "p", x: 40 - gap, y: w / 2, field: "Ez" }],
+      stop: { maxTimeNs: 20, decayDb: 120 },
+    });
+    const at = { frequenciesGHz: [f] };
+    const near = await solve(guide(40), at);
+    const far = await solve(guide(100), at);
+    const a = phasorOf(near, "p");
+    const b = phasorOf(far, "p");
+    const lattice = buildLattice({ polarization: "TMz", nx: 40, ny: w, dx: 1e-3, dy: 1e-3, edges: EDGES });
+    const layers = absorbingLayers(lattice, 0.8 * f * 1e9);
+    const query = { side: "right", hz: f * 1e9, tangential: 1.5 } as const;
+    const computed = evanescentReflectionDb(lattice, layers, query);
+    const alpha = (Math.PI / w) * Math.sqrt(1 - 1 / 1.5 ** 2);
+    const inRun =
+      20 * Math.log10(Math.hypot(a.re - b.re, a.im - b.im) / Math.hypot(b.re, b.im)) +
+      20 * Math.log10(Math.exp(2 * alpha * gap));
+    measured("edge in a run, evanescent, dB", inRun);
+    measured("edge computed, evanescent, dB", computed);
+    expect(Math.abs(inRun - computed)).toBeLessThan(1);
   });
 });

@@ -21,13 +21,21 @@ const divide = (a: Complex, b: Complex): Complex => {
   return [(a[0] * b[0] + a[1] * b[1]) / norm, (a[1] * b[0] - a[0] * b[1]) / norm];
 };
 
-export interface ReflectionQuery {
+interface EdgeQuery {
   side: Side;
   hz: number;
-  /** Angle of incidence from the layer's normal, in degrees, 0 ≤ angle < 90. */
-  degrees: number;
   /** Refractive index of the lossless medium; 1 for air. */
   index?: number;
+}
+
+export interface ReflectionQuery extends EdgeQuery {
+  /** Angle of incidence from the layer's normal, in degrees, 0 ≤ angle < 90. */
+  degrees: number;
+}
+
+export interface EvanescentQuery extends EdgeQuery {
+  /** Wave number along the layer over that of a free wave, above 1: the wave decays toward the layer. */
+  tangential: number;
 }
 
 /** S of one point of the layer at z = exp(jωΔt). */
@@ -37,19 +45,61 @@ function stretchFactor(stretch: AxisStretch, i: number, omegaDt: number): Comple
   return [1 + stretch.stretch[i] + memory[0], memory[1]];
 }
 
+/** Points of F from the layer's last one inward to where the incoming wave is told from the one sent back. */
+const SPLIT_POINTS = 4;
+
+const isAlongX = (side: Side): boolean => side === "left" || side === "right";
+
 /** |reflected/incident| of F in dB; NaN where the lattice carries no wave of this frequency in this direction. */
 export function layerReflectionDb(lattice: Lattice, layers: AbsorbingLayers, query: ReflectionQuery): number {
   const { side, hz, degrees, index = 1 } = query;
-  const alongX = side === "left" || side === "right";
+  const radians = (degrees * Math.PI) / 180;
+  const angle = isAlongX(side) ? radians : Math.PI / 2 - radians;
+  const k = latticeWaveNumber(lattice, C0 / index, 2 * Math.PI * hz, angle);
+  const turn = k * Math.cos(radians) * (isAlongX(side) ? lattice.dx : lattice.dy);
+  return reflectionDb(lattice, layers, query, k * Math.sin(radians), [Math.cos(turn), Math.sin(turn)]);
+}
+
+/**
+ * The same of a wave that decays toward the layer, both taken at the section's edge; NaN where the lattice has no such wave. It grows
+ * inward by exp(αΔ) a cell with sinh²(αΔ/2)/Δ² = sin²(k_tΔ_t/2)/Δ_t² − sin²(ωΔt/2)/(cΔt)².
+ */
+export function evanescentReflectionDb(
+  lattice: Lattice,
+  layers: AbsorbingLayers,
+  query: EvanescentQuery,
+): number {
+  const { side, hz, tangential, index = 1 } = query;
+  const [normal, along] = isAlongX(side) ? [lattice.dx, lattice.dy] : [lattice.dy, lattice.dx];
+  const speed = C0 / index;
+  const omega = 2 * Math.PI * hz;
+  const k = (tangential * omega) / speed;
+  const squared =
+    (Math.sin((k * along) / 2) / along) ** 2 -
+    (Math.sin((omega * lattice.dt) / 2) / (speed * lattice.dt)) ** 2;
+  const growth = Math.exp(2 * Math.asinh(Math.sqrt(squared) * normal));
+  // On its way from the edge to where the waves are split and back, the wave has changed by growth² a cell.
+  const cells = SPLIT_POINTS - 1 + lattice.offset;
+  return reflectionDb(lattice, layers, query, k, [growth, 0]) + 2 * cells * 20 * Math.log10(growth);
+}
+
+/**
+ * @param kTangential wave number along the layer
+ * @param inward by what the incident wave turns or grows from one of F's points to the next one inward
+ */
+function reflectionDb(
+  lattice: Lattice,
+  layers: AbsorbingLayers,
+  { side, hz, index = 1 }: EdgeQuery,
+  kTangential: number,
+  inward: Complex,
+): number {
+  const alongX = isAlongX(side);
   const count = alongX ? lattice.columns : lattice.rows;
   const normal = alongX ? lattice.dx : lattice.dy;
   const tangential = alongX ? lattice.dy : lattice.dx;
   const speed = C0 / index;
   const omega = 2 * Math.PI * hz;
-  const radians = (degrees * Math.PI) / 180;
-  const k = latticeWaveNumber(lattice, speed, omega, alongX ? radians : Math.PI / 2 - radians);
-  const kNormal = k * Math.cos(radians);
-  const kTangential = k * Math.sin(radians);
   // With i counted outward from the section, half points lie beyond their point of F on the upper sides, before it on the lower.
   const upper = side === "right" || side === "top";
   const pointF = (n: number): number => (upper ? count - n : 1 + n);
@@ -72,7 +122,7 @@ export function layerReflectionDb(lattice: Lattice, layers: AbsorbingLayers, que
   let flux: Complex = onNodes ? stretchFactor(g, halfG(0), omegaDt) : [0, 0];
   let inner: Complex = onNodes ? [1, 0] : [1, 0];
   let n = onNodes ? 1 : 0;
-  const last = thickness + 4;
+  const last = thickness + SPLIT_POINTS;
   for (; n < last; n += 1) {
     const fluxIn = add(flux, divide(multiply([eigenvalue, 0], inner), stretchFactor(f, pointF(n), omegaDt)));
     const next = add(inner, divide(fluxIn, stretchFactor(g, halfG(n), omegaDt)));
@@ -80,11 +130,9 @@ export function layerReflectionDb(lattice: Lattice, layers: AbsorbingLayers, que
     inner = next;
     flux = fluxIn;
   }
-  // Split two neighbours in the section: outward wave exp(+jkΔ) per step inward, reflected exp(−jkΔ).
-  const turn = kNormal * normal;
-  const plus: Complex = [Math.cos(turn), Math.sin(turn)];
-  const minus: Complex = [Math.cos(turn), -Math.sin(turn)];
-  const incident = subtract(inner, multiply(minus, outer));
-  const reflected = subtract(inner, multiply(plus, outer));
+  // Split two neighbours in the section into the wave that comes and the one that is sent back.
+  const outward = divide([1, 0], inward);
+  const incident = subtract(inner, multiply(outward, outer));
+  const reflected = subtract(inner, multiply(inward, outer));
   return 20 * Math.log10(Math.hypot(...reflected) / Math.hypot(...incident));
 }
