@@ -3,7 +3,8 @@
  * (J. C. Slater, Rev. Mod. Phys. 18 (1946) 441; D. M. Pozar, Microwave Engineering, 4th ed. 2012, §6.1–6.3).
  *
  * With W = ¼∫μ|H|² = ¼∫ε|E|², Q = 2ωW/P; walls take P = ½R_s∮|H_t|²dl with R_s = √(ωμ₀/2σ), media
- * P = ½∫σ|E|² + ½∫σ*|H|², films ½∮|E_t|²/R dl. Good while Q is well above 1.
+ * P = ½∫σ|E|² + ½∫σ*|H|², films ½∮|E_t|²/R dl. Good while Q is well above 1; see
+ * `damped` for media that change the mode itself.
  */
 import { EPS0, MU0 } from "../lattice/index.js";
 import { elementMatrix, ELEMENT_NUMBERS } from "./algebra/quadratic.js";

@@ -196,12 +196,14 @@ describe("modes of a closed section", () => {
 });
 
 describe("what is lost in a mode", () => {
-  it("has Q = ωε/σ and ωμ/σ* in a uniform fill", () => {
+  // (s + σ/ε)(s + σ*/μ) = −ω₀² at s = jω: Re ω = √(ω₀² − (σ/ε − σ*/μ)²/4), 2 Im ω = σ/ε + σ*/μ.
+  it("has the Q of the damped mode in a uniform fill", () => {
     const omega = 2 * Math.PI * (HALF_C / 30) * 1e9;
     const media = [{ id: "fill", name: "", conductivity: 1e-3, magneticLoss: 20 }];
     const [mode] = modesOf({ media, background: "fill" }, 1);
-    const loss = 1e-3 / 8.8541878128e-12 + 20 / 1.25663706212e-6;
-    expect(Math.abs((mode.mediaQ ?? 0) / (omega / loss) - 1)).toBeLessThan(1e-6);
+    const [electric, magnetic] = [1e-3 / 8.8541878128e-12, 20 / 1.25663706212e-6];
+    const exact = Math.sqrt(omega ** 2 - (electric - magnetic) ** 2 / 4) / (electric + magnetic);
+    expect(Math.abs((mode.mediaQ ?? 0) / exact - 1)).toBeLessThan(1e-6);
     expect(mode.wallQ).toBeNull();
   });
 

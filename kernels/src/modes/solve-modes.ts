@@ -5,6 +5,8 @@ import { gridOf, isPerfect, resolveScene, SceneError } from "../scene/index.js";
 import type { Eigenpair } from "./algebra/lanczos.js";
 import type { ModesDocument } from "./document.js";
 import { lowestModes } from "./eigenmodes.js";
+import { dampedQ } from "./damped.js";
+import type { ModeLosses } from "./losses.js";
 import { modeLosses } from "./losses.js";
 import type { SectionMesh } from "./mesh/section-mesh.js";
 import { meshSection, openLengths } from "./mesh/section-mesh.js";
@@ -28,6 +30,8 @@ const FINER_LEGS = [0.5, 1, 2, 4, 8, 16, 32, 64];
 const UNCOVERED = 1e-3;
 /** Shares of the time: the coarser mesh, then the finer. */
 const COARSE_SHARE = 0.25;
+/** Above this Q, what perturbation leaves out is some 1e-4 of it. */
+const LOW_LOSS_Q = 1000;
 /** Steps that a search takes, about. */
 const USUAL_STEPS = 30;
 
@@ -99,6 +103,17 @@ function* solveLevel(
 const frequencyGHz = (value: number): number => (Math.sqrt(Math.max(0, value)) * C0 * 1e-6) / (2 * Math.PI);
 
 /**
+ * What the damped mode's own Q is to that by perturbation, found on the coarser mesh; 1 where the loss is so low that it does not matter,
+ * and where films stand in the section, whose currents the elements' F does not carry.
+ */
+function dampingOf({ space }: Level, pair: Eigenpair, { mediaQ }: ModeLosses): number {
+  if (mediaQ === null || mediaQ > LOW_LOSS_Q || space.mesh.films.some((film) => film > 0)) return 1;
+  const perturbed = modeLosses(space, pair.vector, Math.sqrt(pair.value) * C0 * 1e3, undefined).mediaQ;
+  const damped = perturbed === null ? null : dampedQ(space, pair.vector, pair.value, perturbed);
+  return damped === null || perturbed === null ? 1 : damped / perturbed;
+}
+
+/**
  * The lowest cut-off frequencies of a closed section, TM or TE by the scene's polarization, without static solutions. Each is
  * extrapolated from two meshes as second order, and its uncertainty is their full difference; Q is the finer mesh's.
  *
@@ -126,10 +141,13 @@ export function* solveModes(
     const coarser = n < coarse.pairs.length ? frequencyGHz(coarse.pairs[n].value) : 2 * finer;
     const cutoffGHz = n < coarse.pairs.length ? finer + (finer - coarser) / 3 : finer;
     const omega = 2 * Math.PI * finer * 1e9;
+    const losses = modeLosses(fine.space, pair.vector, omega, resolved.wallConductivity);
+    const correction = n < coarse.pairs.length ? dampingOf(coarse, coarse.pairs[n], losses) : 1;
     modes.push({
       cutoffGHz,
       uncertaintyGHz: Math.abs(finer - coarser),
-      ...modeLosses(fine.space, pair.vector, omega, resolved.wallConductivity),
+      wallQ: losses.wallQ,
+      mediaQ: losses.mediaQ === null ? null : losses.mediaQ * correction,
     });
   }
   return {
