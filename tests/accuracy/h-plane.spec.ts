@@ -16,7 +16,11 @@ import type { Document } from "./support/run.js";
 import { scatteringOf, solve } from "./support/run.js";
 
 const CELLS = 60;
-const CELLS_OF: Readonly<Record<string, number>> = { "hp-thickiris-a24-10-1": 72, "hp-filter-a24-B": 48 };
+const CELLS_OF: Readonly<Record<string, number>> = {
+  "hp-thickiris-a24-10-1": 72,
+  "hp-step-24-18": 64,
+  "hp-filter-a24-B": 48,
+};
 const meshesOf = (id: string): readonly [number, number] => {
   const cells = CELLS_OF[id] ?? CELLS;
   return [cells, 2 * cells];
