@@ -3,6 +3,7 @@
  * comes before F in a step, so F's answer is taken along: F += bF·((gy − gy[left]) − gx …) is linear in both.
  */
 import type { AbsorbingLayers, AxisStretch } from "../../boundaries/index.js";
+import type { Lattice } from "../../lattice/index.js";
 import type { DrivePoint, Engine, EngineField } from "../engine.js";
 import { rowCoefficients } from "../engine.js";
 
@@ -41,6 +42,20 @@ export function driveShares(
     } else add("f", column, row.bF[column] * weight);
   }
   return shares;
+}
+
+/** Throws a RangeError for a point outside the lattice. */
+export function checkOnLattice(
+  points: readonly { row: number; column: number }[],
+  { rows, columns }: Lattice,
+): void {
+  for (const { row, column } of points) {
+    if (!(row >= 0 && row <= rows + 1 && column >= 0 && column <= columns + 1)) {
+      throw new RangeError(
+        `Row ${row}, column ${column} lies outside the lattice of ${rows} rows, ${columns} columns.`,
+      );
+    }
+  }
 }
 
 const holds = (stretch: AxisStretch, index: number): boolean =>

@@ -21,7 +21,8 @@ import { branchDrives } from "../branch-memory.js";
 import { packArrays, unpackArrays } from "../packing.js";
 import { Arena } from "./arena.js";
 import { BranchRows } from "./branch-rows.js";
-import { checkOutsideLayers, driveShares } from "./drive-shares.js";
+import { checkOnLattice, checkOutsideLayers, driveShares } from "./drive-shares.js";
+import { writeControl, writeLayers } from "./control.js";
 import { Flushing } from "./flushing.js";
 import * as at from "./layout.js";
 import { MemoryRows } from "./memory-rows.js";
@@ -131,8 +132,15 @@ export class WasmEngine implements Engine {
     this.cutter = new RunCutter({ columns: lattice.columns, psiShifts: this.strips.psiShifts });
     this.memories = new MemoryRows(arena, rows);
     this.branches = new BranchRows(arena, this, this.table, this.fieldAddresses);
-    this.writeControl();
-    this.writeLayers();
+    writeControl(arena, lattice, {
+      fields: this.fieldAddresses,
+      table: this.table,
+      records: this.recordsAt,
+      recordBytes: setup.records * 8,
+      energySums: this.energySums,
+      spins: this.threads > 1 ? SPINS : 0,
+    });
+    writeLayers(arena, lattice, this.table, this.strips);
     this.setRows(0, rows + 1, setup.coefficients);
     this.writeTaps(setup.taps);
     this.setDrives(setup.drives, setup.signals);
@@ -160,36 +168,8 @@ export class WasmEngine implements Engine {
     return block + index * third + rowBytes;
   }
 
-  private writeControl(): void {
-    const { i32, f64 } = this.arena;
-    const { lattice } = this;
-    i32[at.FIELD_F / 4] = this.fieldAddresses.f;
-    i32[at.FIELD_GX / 4] = this.fieldAddresses.gx;
-    i32[at.FIELD_GY / 4] = this.fieldAddresses.gy;
-    i32[at.ROW_BYTES / 4] = lattice.stride * 4;
-    i32[at.LAST_ROW / 4] = lattice.rows;
-    i32[at.TABLE / 4] = this.table;
-    i32[at.RECORDS / 4] = this.recordsAt;
-    i32[at.RECORD_BYTES / 4] = this.records * 8;
-    i32[at.COLUMN_LAYERS / 4] = this.strips.columnParameters;
-    i32[at.ENERGY_SUMS / 4] = this.energySums;
-    f64[at.QUARTER_STEP / 8] = lattice.dt / 4;
-    i32[at.SPINS / 4] = this.threads > 1 ? SPINS : 0;
-  }
-
   private entryWord(row: number, field: number): number {
     return (this.table + row * at.ENTRY_BYTES + field) / 4;
-  }
-
-  private writeLayers(): void {
-    const { i32, f32 } = this.arena;
-    for (let j = 0; j <= this.lattice.rows + 1; j += 1) {
-      i32[this.entryWord(j, at.ENTRY_PSI_GY)] = this.strips.psiGyOf(j);
-      i32[this.entryWord(j, at.ENTRY_PSI_FX)] = this.strips.psiFxOf(j);
-      i32[this.entryWord(j, at.ENTRY_PSI_GX)] = this.strips.psiGxOf(j);
-      i32[this.entryWord(j, at.ENTRY_PSI_FY)] = this.strips.psiFyOf(j);
-      f32.set(this.strips.rowParameters(j), this.entryWord(j, at.ENTRY_LAYER));
-    }
   }
 
   setRows(first: number, last: number, source: CoefficientSource): void {
@@ -207,7 +187,7 @@ export class WasmEngine implements Engine {
   }
 
   setBranches(branches: readonly Branch[]): void {
-    for (const { points } of branches) this.checkRows(points);
+    for (const { points } of branches) checkOnLattice(points, this.lattice);
     checkOutsideLayers(branchDrives(branches), this.layers);
     this.branches.set(branches);
   }
@@ -237,7 +217,7 @@ export class WasmEngine implements Engine {
   }
 
   setDrives(drives: readonly DrivePoint[], signals: number): void {
-    this.checkRows(drives);
+    checkOnLattice(drives, this.lattice);
     checkOutsideLayers(drives, this.layers);
     this.drives = [...drives].sort((a, b) => a.row - b.row);
     this.signals = signals;
@@ -246,17 +226,6 @@ export class WasmEngine implements Engine {
     i32[at.SIGNALS / 4] = this.signalsBlock.address;
     i32[at.SIGNAL_BYTES / 4] = signals * 8;
     this.writeDrives();
-  }
-
-  private checkRows(items: readonly { row: number; column: number }[]): void {
-    const { rows, columns } = this.lattice;
-    for (const { row, column } of items) {
-      if (!(row >= 0 && row <= rows + 1 && column >= 0 && column <= columns + 1)) {
-        throw new RangeError(
-          `Row ${row}, column ${column} lies outside the lattice of ${rows} rows, ${columns} columns.`,
-        );
-      }
-    }
   }
 
   /** Drives as what they take off of single numbers, which the coefficients of their rows decide. */
@@ -276,7 +245,7 @@ export class WasmEngine implements Engine {
   }
 
   private writeTaps(taps: readonly Tap[]): void {
-    this.checkRows(taps);
+    checkOnLattice(taps, this.lattice);
     const sorted = [...taps].sort((a, b) => a.row - b.row);
     const address = this.arena.take(sorted.length * at.TAP_BYTES);
     const { i32, f64 } = this.arena;
