@@ -10,7 +10,7 @@
  * orthogonal with weight b_G, and ½Re ΣF·g* is the power (W/m). Where metal lies off the mesh lines, r and λ are the mode's
  * own means, whose error is that of the cells along the walls.
  */
-import type { Lattice, Side } from "../lattice/index.js";
+import type { Lattice } from "../lattice/index.js";
 import {
   cellOfColumn,
   cellOfRow,
@@ -63,14 +63,6 @@ export interface PortMode {
   inwardE: 1 | -1;
   outwardE: 1 | -1;
 }
-
-/** The edge that lies behind a port. */
-export const BEHIND_EDGE: Readonly<Record<PortSpec["inward"], Side>> = {
-  "+x": "left",
-  "-x": "right",
-  "+y": "bottom",
-  "-y": "top",
-};
 
 const ON_LINE = 1e-6;
 

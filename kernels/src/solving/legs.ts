@@ -49,8 +49,14 @@ export class LegsSession implements SolveSession {
   /** An edited or cancelled run ends with the leg that it is in. */
   private last: number;
 
-  /** @param legs two or more, all on the first one's grid */
-  constructor(private readonly legs: readonly Leg[]) {
+  /**
+   * @param legs two or more; the first one's grid stands for the run's
+   * @param merge makes one result of the records of the legs that ran, in their order
+   */
+  constructor(
+    private readonly legs: readonly Leg[],
+    private readonly merge: (records: readonly LegRecord[]) => SolveResult = buildResult,
+  ) {
     this.current = legs[0].open();
     this.last = legs.length - 1;
     this.quantities = this.current.quantities;
@@ -186,7 +192,7 @@ export class LegsSession implements SolveSession {
   }
 
   result(): SolveResult {
-    return buildResult([...this.finished.map(({ record }) => record), this.current.record()]);
+    return this.merge([...this.finished.map(({ record }) => record), this.current.record()]);
   }
 
   dispose(): void {

@@ -12,7 +12,7 @@ import {
   portMode,
 } from "../ports/index.js";
 import type { ResolvedScene, Waveform } from "../scene/index.js";
-import { canonicalJson, defaultWaveform } from "../scene/index.js";
+import { canonicalJson, defaultWaveform, SceneError } from "../scene/index.js";
 import type { CoefficientSource } from "../stepping/index.js";
 import type { DrivePlan } from "./plan.js";
 
@@ -22,12 +22,20 @@ export interface PortPlan {
   driven: number;
 }
 
-/** Throws a RangeError where a line has too few points for its mode. */
+/** Throws a SceneError where the mesh has too few points across a guide for its mode. */
 export const portModesOf = (
   scene: ResolvedScene,
   lattice: Lattice,
   coefficients: CoefficientSource,
-): PortMode[] => scene.ports.map((port) => portMode(lattice, coefficients, port));
+): PortMode[] =>
+  scene.ports.map((port, index) => {
+    try {
+      return portMode(lattice, coefficients, port);
+    } catch (error) {
+      if (!(error instanceof RangeError)) throw error;
+      throw new SceneError([{ path: `ports[${index}]`, sentence: error.message }]);
+    }
+  });
 
 /** The amplitude that makes 1 W/m at the band's middle, or the first frequency above it that the guide carries; 1 where it carries none. */
 function unitAmplitude(scene: ResolvedScene, lattice: Lattice, mode: PortMode): number {
