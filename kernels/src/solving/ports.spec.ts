@@ -143,6 +143,36 @@ describe("an empty guide", () => {
   });
 });
 
+describe("a filled guide", () => {
+  it("runs on unchanged through the layers, with its ports on the section's own edges", async () => {
+    const fill = {
+      kind: "rectangle",
+      id: "r",
+      medium: "fill",
+      x: 0,
+      y: 0,
+      width: 36,
+      height: 22.86,
+    } as const;
+    const result = await solve(
+      guide({
+        band: { fromGHz: 5, toGHz: 8 },
+        media: [{ id: "fill", name: "Fill", relativePermittivity: 2.5 }],
+        paint: [fill],
+        ports: [port("in", 0, "+x"), port("out", 36, "-x", { drive: false })],
+      }),
+      // 1.1 times its cut-off is 4.562 GHz.
+      { engine: "wasm", frequenciesGHz: [5, 6.5, 8] },
+    );
+    expect(worst(sOf(result, "in", "in").map(dB))).toBeLessThan(-50);
+    sOf(result, "out", "in").forEach((value, n) => {
+      const f = [5, 6.5, 8][n];
+      const root = Math.sqrt(2.5 * f ** 2 - (C_MM_GHZ / 2 / 22.86) ** 2);
+      expect(apart(value, turned((-360 * 36 * root) / C_MM_GHZ))).toBeLessThan(0.02);
+    });
+  });
+});
+
 describe("a short at the port's line", () => {
   it.each(CASES)(
     "gives -1, and is turned by shiftMm: $polarization, mode $mode",
