@@ -129,6 +129,18 @@ export interface CostEstimate {
 /** Three fields, three pairs of coefficients and the layers' memory, in float64. */
 const BYTES_PER_CELL = 8 * (3 + 6 + 4);
 
+/**
+ * Bytes a cell of the most dispersive medium takes besides, in float64: what waits to be added and bF, then for each pole a weight and two
+ * numbers of memory at a cell's one point of F or two of G.
+ */
+function poleBytes(scene: Omit<Meshed, "mesh" | "band">): number {
+  const poles = fillMediaInUse(scene).map(
+    ({ electricPoles, magneticPoles }) => electricPoles.length + magneticPoles.length,
+  );
+  const most = Math.max(0, ...poles);
+  return most > 0 ? 8 * (4 + 6 * most) : 0;
+}
+
 /** What a run of the scene costs at most, known before it starts. */
 export const estimateCost = (
   scene: Meshed & Pick<ResolvedScene, "section" | "stop" | "edges" | "probes" | "polarization" | "ports">,
@@ -146,7 +158,7 @@ export const estimateCost = (
     cells,
     steps: runs * grid.maxSteps,
     stepPs: grid.stepPs,
-    memoryBytes: cells * BYTES_PER_CELL + runs * traces * grid.maxSteps * 8,
+    memoryBytes: cells * (BYTES_PER_CELL + poleBytes(scene)) + runs * traces * grid.maxSteps * 8,
     cellsPerWavelength: cellsPerWavelength(scene, grid),
   };
 };
