@@ -17,6 +17,7 @@ import type { ConductorInput, LatticeBox } from "./conductors.js";
 import { ConductorMap } from "./conductors.js";
 import { fixConductors } from "./fix-conductors.js";
 import { conformalCuts } from "./conformal.js";
+import type { FieldCorner } from "./corner-links.js";
 import type { CutCells } from "./cut-cells.js";
 import type { PointMean, WeightedPole } from "./dispersion.js";
 import { DispersiveMeans } from "./dispersion.js";
@@ -38,6 +39,8 @@ export interface SectionMedia extends Omit<ConductorInput, "kinds"> {
   films?: readonly Film[];
   /** How electric conductors are cut; default "staircase". Magnetic ones are always staircases. */
   metal?: "conformal" | "staircase";
+  /** Corners of conformal metal, whose singular field the lattice is to follow; default none. */
+  corners?: readonly FieldCorner[];
 }
 
 interface MediumUpdates {

@@ -31,7 +31,7 @@ export function conformalCuts(
   const areas = [...section.areas, ...walls];
   const closed = (medium: number): boolean => medium === wall || media[medium].kind === "electric";
   if (!closed(background) && !areas.some(({ medium }) => closed(medium))) return null;
-  const input = { areas, background, closed, widthMm, heightMm };
+  const input = { areas, background, closed, widthMm, heightMm, corners: section.corners ?? [] };
   const { flags } = conductors;
   const cuts =
     lattice.polarization === "TMz"

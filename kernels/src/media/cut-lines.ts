@@ -16,6 +16,7 @@ import type { PaintedArea } from "../geometry/index.js";
 import { LineCutter, SLIVER } from "../geometry/index.js";
 import type { Lattice } from "../lattice/index.js";
 import { cellOfColumn, cellOfRow } from "../lattice/index.js";
+import { correctCorners } from "./corner-links.js";
 import { FIXED_F } from "./conductors.js";
 import type { CutCells } from "./cut-cells.js";
 import { noCutCells, stepShares } from "./cut-cells.js";
@@ -145,7 +146,7 @@ export function cutLines(lattice: Lattice, input: OpenFacesInput, flags: Uint8Ar
       }
     }
   }
-  /** Free nodes beside a cut length. */
+  /** Free nodes beside a cut length or a corner. */
   const beside = new Set<number>();
   for (const axis of ["x", "y"] as const) {
     const { step, across, count } = axes[axis];
@@ -167,6 +168,7 @@ export function cutLines(lattice: Lattice, input: OpenFacesInput, flags: Uint8Ar
       }
     }
   }
+  for (const k of correctCorners(lattice, input.corners, cut, flags)) beside.add(k);
   for (const k of beside) {
     const sum = (g: number, other: number, map: Map<number, number>, share: number): number =>
       share * (flags[other] & FIXED_F ? 0.5 : 1) * (map.get(g) ?? 1);

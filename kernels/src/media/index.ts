@@ -1,6 +1,7 @@
 /** Media: what they are, how they mix in a partial cell, and the update coefficients they make. */
 export { SectionCoefficients } from "./coefficients.js";
 export type { SectionBefore, SectionMedia } from "./coefficients.js";
+export type { FieldCorner } from "./corner-links.js";
 export type { LatticeBox } from "./conductors.js";
 export { wholeLattice } from "./conductors.js";
 export type { Pair, Properties, RelativeProperties, SolverMedium } from "./properties.js";

@@ -14,6 +14,8 @@ import type { OpenCell, PaintedArea } from "../geometry/index.js";
 import { areaOf, commonLength, continued, OpenCellSweep, SLIVER, spansOf } from "../geometry/index.js";
 import type { Lattice } from "../lattice/index.js";
 import { FIXED_F, FIXED_GX, FIXED_GY } from "./conductors.js";
+import type { FieldCorner } from "./corner-links.js";
+import { correctCorners } from "./corner-links.js";
 import type { CutCells } from "./cut-cells.js";
 import { noCutCells, stepShares } from "./cut-cells.js";
 
@@ -26,6 +28,8 @@ export interface OpenFacesInput {
   closed: (medium: number) => boolean;
   widthMm: number;
   heightMm: number;
+  /** Corners of the metal that reach into the field. */
+  corners: readonly FieldCorner[];
 }
 
 /** What stood before an edit that changed nothing outside rows first … last. */
@@ -123,7 +127,7 @@ export function openFaces(
     lengthGx: new Map(cut.lengthGx),
     lengthGy: new Map(cut.lengthGy),
   };
-  borrowAreas(lattice, cut, flags);
+  borrowAreas(lattice, cut, flags, correctCorners(lattice, input.corners, cut, flags));
   return cut;
 }
 
@@ -137,7 +141,8 @@ interface Opening {
   share: number;
 }
 
-function borrowAreas(lattice: Lattice, cut: CutCells, flags: Uint8Array): void {
+/** @param corners cells about corners, whose lengths stay as they are: what they lack of area is added */
+function borrowAreas(lattice: Lattice, cut: CutCells, flags: Uint8Array, corners: ReadonlySet<number>): void {
   const { stride, courant } = lattice;
   const shares = stepShares(lattice);
   const perLength = (courant * courant) / CIRCLES;
@@ -199,6 +204,7 @@ function borrowAreas(lattice: Lattice, cut: CutCells, flags: Uint8Array): void {
     granted.set(to, (granted.get(to) ?? 0) - given);
   }
   for (const [k, change] of granted) cut.storage.set(k, area(k) + change);
+  for (const k of corners) if (area(k) < need(k)) cut.storage.set(k, need(k));
   for (const k of own) {
     const factor = area(k) / need(k);
     if (factor >= 1 - 1e-9) continue;

@@ -17,9 +17,10 @@ export {
   shortestWavelengthMm,
 } from "./grid.js";
 export { hasConformalMetal } from "./metal-cuts.js";
+export { type MetalCorner, metalCorners } from "./metal-corners.js";
 export { canonicalJson, documentSha256, resultSha256, sceneSha256 } from "./hash.js";
 export * from "./media-figures.js";
-export { type MeshPromise, meshPromise } from "./mesh-order.js";
+export { CORNER_CELLS, type MeshPromise, meshPromise } from "./mesh-order.js";
 export { mediumAt, patchContains } from "./contains.js";
 export { evaluateExpression, type Evaluation } from "./expressions.js";
 export * from "./features.js";

@@ -76,8 +76,11 @@ function boxOf(patch: ResolvedPatch): MmBox {
   return box;
 }
 
-/** Field points this far (in cells) outside a changed patch may change with it: cut cells borrow area from the next but one. */
-const REACH_CELLS = 5;
+/**
+ * Field points this far (in cells) outside a changed patch may change with it: it takes a corner's room from half the distance, and
+ * the field about a corner is followed over five cells.
+ */
+const REACH_CELLS = 17;
 
 /**
  * The part of the lattice whose coefficients an edit can change; null where it changes none. Paint of the two scenes is compared

@@ -13,15 +13,17 @@ import {
 import type { PaintedArea } from "../geometry/index.js";
 import type { Lattice, Side } from "../lattice/index.js";
 import { buildLattice, C0, ETA0 } from "../lattice/index.js";
-import type { Film, LatticeBox, SectionMedia, SolverMedium } from "../media/index.js";
+import type { FieldCorner, Film, LatticeBox, SectionMedia, SolverMedium } from "../media/index.js";
 import { propertiesOf, SectionCoefficients } from "../media/index.js";
 import type { Grid, Medium, ResolvedScene } from "../scene/index.js";
 import {
+  CORNER_CELLS,
   canonicalJson,
   gridOf,
   hasConformalMetal,
   hasPoles,
   isPerfect,
+  metalCorners,
   propagation,
 } from "../scene/index.js";
 import type { DrivePoint } from "../stepping/index.js";
@@ -71,6 +73,17 @@ export function latticeOf(scene: ResolvedScene): { grid: Grid; lattice: Lattice 
   return { grid, lattice };
 }
 
+function cornersOf(scene: ResolvedScene, lattice: Lattice): FieldCorner[] {
+  if (!hasConformalMetal(scene)) return [];
+  const reachMm = CORNER_CELLS * Math.max(lattice.dx, lattice.dy) * 1000;
+  return metalCorners(scene, reachMm).map(({ x, y, reachMm: reach, ...angles }) => ({
+    x: x / 1000,
+    y: y / 1000,
+    reach: reach / 1000,
+    ...angles,
+  }));
+}
+
 /** The update coefficients of a resolved scene's paint and media. */
 export function coefficientsOf(
   scene: ResolvedScene,
@@ -104,6 +117,7 @@ export function coefficientsOf(
     widthMm: scene.section.widthMm,
     heightMm: scene.section.heightMm,
     metal: hasConformalMetal(scene) ? "conformal" : "staircase",
+    corners: cornersOf(scene, lattice),
     omega: Math.PI * (scene.band.fromGHz + scene.band.toGHz) * 1e9,
   };
   return new SectionCoefficients(lattice, section, previous);
