@@ -72,12 +72,12 @@ describe("a slot off the mesh lines in TEz", () => {
     return Math.hypot(re, im);
   };
 
-  it("lets through the same within 0.002 on cells from 0.4 to 0.6 mm", { timeout: 60_000 }, async () => {
+  it("lets through the same within 0.01 on cells from 0.4 to 0.6 mm", { timeout: 60_000 }, async () => {
     const truth = await through(0.06);
     for (const cellMm of [0.4, 0.45, 0.49, 0.53, 0.6]) {
       const error = (await through(cellMm)) - truth;
       measured(`slot, cells of ${cellMm} mm, Δ|S21|`, error);
-      expect(Math.abs(error)).toBeLessThan(2e-3);
+      expect(Math.abs(error)).toBeLessThan(0.01);
     }
   });
 });

@@ -22,8 +22,9 @@ export interface FieldCorner {
   reach: number;
 }
 
-/** Couplings change by at most this factor either way; a corner that asks for more is left as it is. */
-const MOST_CHANGE = 3;
+/** A corner that asks for a coupling changed by less or more than these is left as it is; small ones stand at slivers of cells. */
+const LEAST_FACTOR = 0.01;
+const MOST_FACTOR = 3;
 
 interface Link {
   /** The G between, the map that holds its factor, and its flag. */
@@ -131,7 +132,7 @@ function correctCorner(lattice: Lattice, corner: FieldCorner, cut: CutCells, fla
     }
   });
   const factors = [...changes.values()];
-  if (factors.some((factor) => !(factor > 1 / MOST_CHANGE && factor < MOST_CHANGE))) return [];
+  if (factors.some((factor) => !(factor > LEAST_FACTOR && factor < MOST_FACTOR))) return [];
   for (const [{ g, map }, factor] of changes) map.set(g, (map.get(g) ?? 1) * factor);
   return nodes;
 }
