@@ -50,7 +50,7 @@ interface Piece {
   sag: number;
 }
 
-export interface FilmLoss {
+interface FilmLoss {
   field: EngineField;
   column: number;
   /** In units of (1 − a)/b. */

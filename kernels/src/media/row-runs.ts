@@ -37,7 +37,7 @@ export function walkRuns(
 }
 
 /** Columns from … to, and whether they lie in an absorbing layer. */
-export type Zone = readonly [from: number, to: number, inLayer: boolean];
+type Zone = readonly [from: number, to: number, inLayer: boolean];
 
 const beyond = (index: number, low: number, high: number, count: number): boolean =>
   (low > 0 && index <= low) || (high > 0 && index > count - high);

@@ -4,7 +4,10 @@ import { halfStorage } from "../media/index.js";
 import type { Engine } from "../stepping/index.js";
 import { rowCoefficients } from "../stepping/index.js";
 
-/** Joules per metre of height: ½ΣM·v² over the section, F at step·Δt and G half a step earlier. */
+/**
+ * Joules per metre of height: ½ΣM·v² over the section, F at step·Δt and G half a step earlier. Of dispersive media it counts ε (μ) and what
+ * answers at once, not what their poles hold; that decays with the field, so the sum tells when a run has died out.
+ */
 export function storedEnergy(engine: Engine): number {
   const { lattice } = engine;
   const left = firstColumn(lattice);

@@ -5,7 +5,7 @@ import type { Arena } from "./arena.js";
 import * as at from "./layout.js";
 import type { LayerStrips } from "./strips.js";
 
-export interface Places {
+interface Places {
   fields: Readonly<Record<EngineField, number>>;
   table: number;
   records: number;
