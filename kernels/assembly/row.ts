@@ -4,6 +4,8 @@ import {
   DRIVE_BYTES,
   ENTRY_BRANCHES,
   ENTRY_BYTES,
+  ENTRY_COUPLINGS,
+  ENTRY_COUPLINGS_END,
   ENTRY_DRIVES,
   ENTRY_DRIVES_END,
   ENTRY_LAYER,
@@ -35,6 +37,7 @@ import {
   TABLE,
   TAP_BYTES,
 } from "../src/stepping/wasm/layout";
+import { coupleRow } from "./couplings";
 import { advanceBranches, drawBranches } from "./branches";
 import {
   columnLayerUniform,
@@ -94,6 +97,7 @@ export function stepRow(row: usize, signals: usize, records: usize): void {
   const gx0 = load<usize>(FIELD_GX) + base;
   const gy0 = load<usize>(FIELD_GY) + base;
   const entry: usize = load<usize>(TABLE) + row * ENTRY_BYTES;
+  coupleRow(load<usize>(entry, ENTRY_COUPLINGS), load<usize>(entry, ENTRY_COUPLINGS_END), stride);
   let run: usize = load<usize>(entry, ENTRY_RUNS);
   const runsEnd: usize = load<usize>(entry, ENTRY_RUNS_END);
   while (run < runsEnd) {

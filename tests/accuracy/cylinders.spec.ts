@@ -157,8 +157,13 @@ function orderOf(cells: readonly number[], errors: readonly number[]): number {
 }
 
 describe("order of the near field over four meshes that double", () => {
-  // Cells that the radius is no multiple of, 8.25 to 66 in it. Bar: 1.9, raw; second order is what the lattice itself has.
-  it.each(["cyl-tmz-5", "cyl-tmz-1", "cyl-tez-2"])("%s: at least 1.9", async (id) => {
+  // Cells that the radius is no multiple of, 8.25 to 66 in it. Bars, raw; second order is what the lattice itself has.
+  it.each([
+    ["cyl-tmz-5", 1.9],
+    ["cyl-tez-6", 1.5],
+    ["cyl-tmz-1", 1.9],
+    ["cyl-tez-2", 1.9],
+  ])("%s: at least %d", async (id, bar) => {
     const entry = referenceEntry("cylinders", id);
     const cells = [8.25, 16.5, 33, 66].map((count) => (numberAt(entry.geometry, "radius_m") * 1000) / count);
     const errors: number[] = [];
@@ -168,6 +173,6 @@ describe("order of the near field over four meshes that double", () => {
       `${id}, errors in % ${errors.map((error) => (100 * error).toPrecision(3)).join(", ")}; order`,
       order,
     );
-    expect(order).toBeGreaterThan(1.9);
+    expect(order).toBeGreaterThan(bar);
   });
 });

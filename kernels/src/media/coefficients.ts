@@ -18,6 +18,7 @@ import { ConductorMap } from "./conductors.js";
 import { fixConductors } from "./fix-conductors.js";
 import { conformalCuts } from "./conformal.js";
 import type { FieldCorner } from "./corner-links.js";
+import { InterfaceCouplings } from "./couplings.js";
 import type { CutCells } from "./cut-cells.js";
 import type { PointMean, WeightedPole } from "./dispersion.js";
 import { DispersiveMeans } from "./dispersion.js";
@@ -65,6 +66,8 @@ export class SectionCoefficients {
   private readonly quarters: QuarterRaster;
   private readonly conductors: ConductorMap;
   private readonly cuts: CutCells | null;
+  /** Null where all media agree in what G stores. */
+  private readonly couplings: InterfaceCouplings | null;
   private readonly means: DispersiveMeans;
   private readonly updates: readonly MediumUpdates[];
   /** Those of the absorbing layers. */
@@ -105,6 +108,9 @@ export class SectionCoefficients {
     );
     this.cuts = conformal
       ? conformalCuts(lattice, section, this.conductors, previous?.coefficients.cutsBefore(previous.box))
+      : null;
+    this.couplings = InterfaceCouplings.between(media, this.kindG)
+      ? new InterfaceCouplings(lattice, this.quarters, this.kindG, this.conductors, this.cuts)
       : null;
     this.columnShares = Float64Array.from({ length: lattice.columns + 2 }, (_, i) => columnShare(lattice, i));
     this.hasShares = this.columnShares.some((share) => share !== 1);
@@ -177,6 +183,7 @@ export class SectionCoefficients {
   /** The row without films; its terms wait in `terms`. */
   private writeRow(j: number, out: RowCoefficients): void {
     for (const values of [out.aF, out.bF, out.aGx, out.bGx, out.aGy, out.bGy]) values.fill(0);
+    out.couplings = [];
     const { rows } = this.lattice;
     this.terms = new RowTerms(this.lattice.stride);
     if (j > rows) return;
@@ -191,6 +198,8 @@ export class SectionCoefficients {
       this.writeField("gy", j, below, here, onNodes ? 1 : 0, onNodes ? columns - 1 : columns, out);
     }
     if (this.hasGx(j)) this.writeField("gx", j, here, above, 1, columns, out);
+    const { dt } = this.lattice;
+    this.couplings?.write(j, dt, this.geometryGx, this.geometryGy, out);
     this.applyWalls(j, out);
     this.applyCuts(j, out);
     fixConductors(this.lattice, this.conductors, j, out);

@@ -16,7 +16,7 @@ export interface QuarterRow {
   mixed: Map<number, Quarter>;
 }
 
-const KEPT_ROWS = 4;
+const KEPT_ROWS = 8;
 
 function runEndsOf(medium: Int32Array): Int32Array {
   const ends = new Int32Array(medium.length);

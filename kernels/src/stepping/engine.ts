@@ -32,6 +32,18 @@ export interface PoleTerm {
   weights: Float64Array;
 }
 
+/**
+ * What an oblique interface adds where four G's meet, gx of columns k, k + 1 and gy of this row and the next: before the row is stepped,
+ *
+ *   gx[k], gx[k+1] += factor·(F[k+1] − F[k] + F[k+S+1] − F[k+S]),   gy[k], gy[k+S] −= factor·(F[k+S] − F[k] + F[k+S+1] − F[k+1]).
+ *
+ * The four have a = 1 and lie outside the absorbing layers.
+ */
+export interface Coupling {
+  column: number;
+  factor: number;
+}
+
 /** Update coefficients of one row, each of the lattice's stride (index 0 is the ring). */
 export interface RowCoefficients {
   aF: Float64Array;
@@ -42,6 +54,8 @@ export interface RowCoefficients {
   bGy: Float64Array;
   /** Memories of the row's points. None lie in the absorbing layers, nor on a G beside an F that does. */
   terms: PoleTerm[];
+  /** Couplings of this row of G with the next. */
+  couplings: Coupling[];
 }
 
 /** Writes the coefficients of row j (0 … rows + 1) into `out`; `terms` are empty before. */
@@ -123,7 +137,7 @@ export interface Engine {
   readonly step: number;
   /** The fields as they are between two calls; written to by tests and edits, read by everyone. */
   readonly fields: EngineFields;
-  /** a and b of one row as the engine uses them, in its precision; `terms` are left alone. */
+  /** a and b of one row as the engine uses them, in its precision; `terms` and `couplings` are left alone. */
   readCoefficients(row: number, out: RowCoefficients): void;
 
   /**
@@ -161,4 +175,5 @@ export const rowCoefficients = (stride: number): RowCoefficients => ({
   aGy: new Float64Array(stride),
   bGy: new Float64Array(stride),
   terms: [],
+  couplings: [],
 });

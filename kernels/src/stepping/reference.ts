@@ -10,6 +10,7 @@ import { BranchMemory } from "./branch-memory.js";
 import type {
   Branch,
   CoefficientSource,
+  Coupling,
   DrivePoint,
   Engine,
   EngineFields,
@@ -62,6 +63,27 @@ function stepG(
   }
 }
 
+/** What the couplings of one row add to its gx, its gy and the next row's gy (see `Coupling`). */
+function couple(
+  f: FieldArray,
+  gx: FieldArray,
+  gy: FieldArray,
+  couplings: readonly Coupling[],
+  base: number,
+  stride: number,
+): void {
+  for (const { column, factor } of couplings) {
+    const k = base + column;
+    const above = k + stride;
+    const alongX = f[k + 1] - f[k] + (f[above + 1] - f[above]);
+    const alongY = f[above] - f[k] + (f[above + 1] - f[k + 1]);
+    gx[k] = gx[k] + factor * alongX;
+    gx[k + 1] = gx[k + 1] + factor * alongX;
+    gy[k] = gy[k] - factor * alongY;
+    gy[above] = gy[above] - factor * alongY;
+  }
+}
+
 /** F of columns 1 … last of one row. */
 function stepF(
   f: FieldArray,
@@ -102,6 +124,7 @@ export class ReferenceEngine implements Engine {
   private readonly records: number;
   private drivesByRow: readonly (readonly DrivePoint[])[];
   private signals: number;
+  private readonly couplings: (readonly Coupling[])[] = [];
   private stepsTaken = 0;
 
   constructor(setup: EngineSetup, precision: Precision = "f64") {
@@ -135,7 +158,9 @@ export class ReferenceEngine implements Engine {
     const row = rowCoefficients(this.lattice.stride);
     for (let j = first; j <= last; j += 1) {
       row.terms = [];
+      row.couplings = [];
       source(j, row);
+      this.couplings[j] = row.couplings;
       this.poles.setRow(j, row.terms);
       const base = j * this.lattice.stride;
       this.aF.set(row.aF, base);
@@ -194,6 +219,7 @@ export class ReferenceEngine implements Engine {
     const own = signals.subarray(signalBase, signalBase + this.signals);
     for (let j = 0; j <= rows; j += 1) {
       const base = j * stride;
+      couple(f, gx, gy, this.couplings[j], base, stride);
       stepG(f, gx, gy, aGx, bGx, aGy, bGy, base, columns, stride);
       memory.correctG(j, this.fields, bGx, bGy);
       poles.correct(j, "gx", this.fields);

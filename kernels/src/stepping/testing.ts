@@ -24,12 +24,18 @@ const ferrite: SolverMedium = {
   kind: "fill",
   properties: { ...VACUUM, mu: 1.7 * VACUUM.mu, sigmaStar: 400 },
 };
+/** Lossless, so that its oblique edges couple. */
+const ceramic: SolverMedium = {
+  kind: "fill",
+  properties: { ...VACUUM, epsilon: 2.6 * VACUUM.epsilon, mu: 1.5 * VACUUM.mu },
+};
 const MEDIA: readonly SolverMedium[] = [
   { kind: "fill", properties: VACUUM },
   glass,
   ferrite,
   { kind: "electric" },
   { kind: "magnetic" },
+  ceramic,
 ];
 
 /** Paint of every kind of medium over a good part of the section, one patch into the absorbing edge. */
@@ -49,6 +55,7 @@ const painted = (lattice: Lattice): SectionMedia => {
       },
       ellipse(3, 0.7, 0.7, 0.06, 0.09),
       ellipse(4, 0.2, 0.8, 0.05, 0.04),
+      ellipse(5, 0.42, 0.77, 0.13, 0.15, 30),
     ],
     background: 0,
     walls: [
@@ -111,6 +118,12 @@ export const filmed = (lattice: Lattice): SectionMedia => {
       film(1e4, [0, 0.31], [1, 0.31]),
     ],
   };
+};
+
+/** The same without what couples obliquely. */
+export const uncoupled = (lattice: Lattice): SectionMedia => {
+  const section = painted(lattice);
+  return { ...section, areas: section.areas.filter(({ medium }) => MEDIA[medium] !== ceramic) };
 };
 
 export interface Case {

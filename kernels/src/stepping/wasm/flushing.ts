@@ -12,7 +12,8 @@ import * as at from "./layout.js";
 const SMALL = 2 ** -56;
 /**
  * Steps from flush to flush. Ahead of a front numbers fall by a bit a step in air and by two in εμ = 4; G, in SI units, may lie 19 bits
- * below F. So between two flushes they stay above the least normal number, 2⁻¹²⁶, for drives of ordinary strength.
+ * below F. So between two flushes they stay above the least normal number, 2⁻¹²⁶, for drives of ordinary strength;
+ * but for a few where a front crosses oblique interfaces, whose weak couplings run ahead of it.
  */
 const FLUSH_STEPS = 32;
 

@@ -98,6 +98,16 @@ export const ENTRY_MEMORIES = 64;
 /** The row's branches; 0 where there are none. */
 export const ENTRY_BRANCHES = 68;
 
+/** Where the row's couplings begin and end. */
+export const ENTRY_COUPLINGS = 72;
+export const ENTRY_COUPLINGS_END = 76;
+
+/** A coupling: addresses of F, gx and gy at its column, and its factor as float32. */
+export const COUPLING_BYTES = 16;
+export const COUPLING_GX = 4;
+export const COUPLING_GY = 8;
+export const COUPLING_FACTOR = 12;
+
 /** Branches of a row: where its draws begin and end, which are drives with the address of their signal, then its branches. */
 export const BRANCHES_HEADER_BYTES = 16;
 export const BRANCHES_DRAWS = 0;

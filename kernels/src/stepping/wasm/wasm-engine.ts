@@ -8,6 +8,7 @@ import type { FieldArray, Lattice } from "../../lattice/index.js";
 import type {
   Branch,
   CoefficientSource,
+  Coupling,
   DrivePoint,
   Engine,
   EngineField,
@@ -77,6 +78,7 @@ export class WasmEngine implements Engine {
   private readonly table: number;
   private readonly energySums: number;
   private readonly rowBlocks: (RowBlock | null)[];
+  private readonly couplingBlocks: (RowBlock | null)[];
   private readonly layerRows: readonly boolean[];
   private readonly fieldAddresses: Readonly<Record<EngineField, number>>;
   private readonly blockSteps: number;
@@ -129,6 +131,7 @@ export class WasmEngine implements Engine {
 
     this.layerRows = Array.from({ length: rows + 2 }, (_, j) => isLayerRow(layers, j));
     this.rowBlocks = Array.from({ length: rows + 2 }, () => null);
+    this.couplingBlocks = Array.from({ length: rows + 2 }, () => null);
     this.cutter = new RunCutter({ columns: lattice.columns, psiShifts: this.strips.psiShifts });
     this.memories = new MemoryRows(arena, rows);
     this.branches = new BranchRows(arena, this, this.table, this.fieldAddresses);
@@ -176,7 +179,9 @@ export class WasmEngine implements Engine {
     const row = rowCoefficients(this.lattice.stride);
     for (let j = first; j <= last; j += 1) {
       row.terms = [];
+      row.couplings = [];
       source(j, row);
+      this.placeCouplings(j, row.couplings);
       this.cutter.cut(row, j, this.layerRows[j]);
       this.placeRuns(j);
       const memories = this.memories.place(j, row);
@@ -200,6 +205,23 @@ export class WasmEngine implements Engine {
     i32.set(this.cutter.i32.subarray(0, this.cutter.words), block.address / 4);
     i32[this.entryWord(row, at.ENTRY_RUNS)] = block.address;
     i32[this.entryWord(row, at.ENTRY_RUNS_END)] = block.address + bytes;
+  }
+
+  private placeCouplings(row: number, couplings: readonly Coupling[]): void {
+    const bytes = couplings.length * at.COUPLING_BYTES;
+    const block = bytes > 0 ? this.fitting(this.couplingBlocks[row], bytes) : this.couplingBlocks[row];
+    this.couplingBlocks[row] = block;
+    const address = block?.address ?? 0;
+    const { i32, f32 } = this.arena;
+    couplings.forEach(({ column, factor }, index) => {
+      const word = (address + index * at.COUPLING_BYTES) / 4;
+      i32[word] = this.addressOf("f", row, column);
+      i32[word + 1] = this.addressOf("gx", row, column);
+      i32[word + 2] = this.addressOf("gy", row, column);
+      f32[word + 3] = factor;
+    });
+    i32[this.entryWord(row, at.ENTRY_COUPLINGS)] = address;
+    i32[this.entryWord(row, at.ENTRY_COUPLINGS_END)] = address + bytes;
   }
 
   /** The block itself where `bytes` fit into it, else another, the old one given back. */
