@@ -177,6 +177,8 @@ export class SectionCoefficients {
       a[column] = update.a;
       b[column] = update.b;
     }
+    // A film's loss at one of four coupled G's would not be symmetric any more.
+    if (this.films.losses.has(j) || this.films.losses.has(j + 1)) out.couplings = [];
     out.terms = this.terms.finish(out);
   };
 
