@@ -33,7 +33,7 @@ export interface ReflectionQuery extends EdgeQuery {
   degrees: number;
 }
 
-export interface EvanescentQuery extends EdgeQuery {
+interface EvanescentQuery extends EdgeQuery {
   /** Wave number along the layer over that of a free wave, above 1: the wave decays toward the layer. */
   tangential: number;
 }

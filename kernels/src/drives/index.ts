@@ -8,4 +8,3 @@ export { compileWaveform } from "./waveforms.js";
 export type { CompiledWaveform } from "./waveforms.js";
 export { PlaneWaveSignals } from "./plane-wave.js";
 export { planeWavePoints, totalFieldBox } from "./total-field-box.js";
-export type { TotalFieldBox } from "./total-field-box.js";

@@ -22,7 +22,7 @@ export interface AreaSpec {
 }
 
 /** At each frequency, per |∫…dt|² of what drives: powers in W/m or energies in J/m, fields in V/m. */
-export interface AreaFigures {
+interface AreaFigures {
   electric: Float64Array;
   magnetic: Float64Array;
   /** Mean and largest |E|, to be divided by the drive's own transform. */

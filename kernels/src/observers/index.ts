@@ -1,6 +1,5 @@
 /** What reads the fields. */
 export { AreaProbe, sumsOf } from "./area-probe.js";
-export type { AreaFigures, AreaQuantity } from "./area-probe.js";
 export { storedEnergy } from "./energy.js";
 export { LinePower } from "./line-power.js";
 export { balanceSums, PowerBalance } from "./power-balance.js";

@@ -16,7 +16,7 @@ import type { DrivePoint, Engine, EngineField } from "../stepping/index.js";
 import { rowCoefficients } from "../stepping/index.js";
 import { concat, FrameTransform } from "./frame-transform.js";
 
-export interface BalanceSpec {
+interface BalanceSpec {
   drives: readonly DrivePoint[];
   /** Signals of a step. */
   signals: number;
@@ -26,7 +26,7 @@ export interface BalanceSpec {
 }
 
 /** At each frequency, in W/m per |∫…dt|² of what drives. */
-export interface BalanceFigures {
+interface BalanceFigures {
   input: Float64Array;
   absorbed: Float64Array;
   leaving: Float64Array;
