@@ -1,8 +1,8 @@
 /**
  * H-plane parts of rectangular guide by ports: irises, posts, slabs, absorbing terminations, steps and filters against mode matching,
  * fundamental solutions and closed forms; sources stand in each entry. Two meshes of the default engine and stop, the finer one twice as
- * fine, extrapolated with the order that the geometry gives: 4/3 at re-entrant corners, 1 at thin edges, else 2. The coarser one
- * has the entries' own 60 cells across the guide, or what puts the metal's edges on its lines.
+ * fine, extrapolated with the order that the geometry promises: 4/3 at re-entrant corners and thin edges (their fields are followed, and
+ * more is seen), else 2. The coarser one has the entries' own 60 cells across the guide, or what puts the metal's edges on its lines.
  */
 import type { SolveResult } from "@heddle/kernels/scene";
 import { describe, expect, it } from "vitest";
@@ -44,7 +44,7 @@ interface Part {
   width2?: number;
 }
 
-const ORDERS = { corner: 4 / 3, edge: 1, smooth: 2 } as const;
+const ORDERS = { corner: 4 / 3, smooth: 2 } as const;
 const mm = (values: Record<string, unknown>, key: string): number => 1000 * numberAt(values, key);
 
 /** Two pieces of metal that leave a centred opening. */
@@ -111,7 +111,7 @@ function partOf({ geometry }: ReferenceEntry, at: number): Part {
     return {
       paint: iris("iris", a, mm(geometry, "opening_m"), at, thickness),
       length: thickness,
-      order: thickness === 0 ? ORDERS.edge : ORDERS.corner,
+      order: ORDERS.corner,
     };
   }
   if ("radius_m" in geometry || "posts" in geometry) {

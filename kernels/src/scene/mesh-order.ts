@@ -5,9 +5,12 @@ import type { ResolvedScene } from "./schema.js";
 import type { Medium } from "./schema-media.js";
 import { isPerfect } from "./schema-media.js";
 
-/** The end of a thin wall or film, E ∝ r^−1/2; staircase metal off the mesh lines. */
+/** The end of a film, the bend of a thin wall, E ∝ r^−1/2; staircase metal off the mesh lines. */
 const EDGE_ORDER = 1;
-/** A corner of metal of 90° (J. Meixner, IEEE Trans. Antennas Propag. 20 (1972) 442; from memory); blunter ones are better. */
+/**
+ * A corner of metal of 90° where the lattice does not follow its field (J. Meixner, IEEE Trans. Antennas Propag. 20 (1972) 442; from memory). It
+ * does (media/corner-links.ts), and more than this is seen; but it is what can be promised, for ends of thin walls too.
+ */
 const CORNER_ORDER = 4 / 3;
 /** A dielectric interface off the mesh lines that E crosses (TEz), a magnetic one that H crosses (TMz). */
 const INTERFACE_ORDER = 3 / 2;
@@ -44,8 +47,11 @@ function hasCrossedInterface(scene: ResolvedScene): boolean {
 
 /** The promise of the scene's geometry on a mesh of nx × ny cells. */
 export function meshPromise(scene: ResolvedScene, nx: number, ny: number): MeshPromise {
-  const thin = scene.paint.some(({ kind }) => kind === "wall" || kind === "film");
-  const metal = mediaOf(scene).some((id) => isMetal(scene.mediaById.get(id)));
+  const thin = scene.paint.some(
+    (patch) => patch.kind === "film" || (patch.kind === "wall" && patch.points.length > 2),
+  );
+  const walls = scene.paint.some(({ kind }) => kind === "wall");
+  const metal = walls || mediaOf(scene).some((id) => isMetal(scene.mediaById.get(id)));
   if (thin || (metal && scene.mesh.metal === "staircase")) return { order: EDGE_ORDER, steady: false };
   const cellMm = Math.max(scene.section.widthMm / nx, scene.section.heightMm / ny);
   const corners = metal ? metalCorners(scene, CORNER_CELLS * cellMm) : [];

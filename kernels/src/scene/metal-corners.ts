@@ -2,7 +2,7 @@
  * Corners of drawn metal that reach into the field: where E is singular, whatever the mesh. Found on the drawing itself, so that
  * overlapping patches make one outline.
  */
-import { mediumAt } from "./contains.js";
+import { distanceToLineMm, mediumAt } from "./contains.js";
 import type { ResolvedScene } from "./schema.js";
 import { isPerfect } from "./schema-media.js";
 
@@ -131,8 +131,44 @@ function cornerAt(around: Around, x: number, y: number, reachMm: number, freeMm:
   return { x, y, from: bare.from, opening: bare.opening, reachMm: 0 };
 }
 
+/** Whether nothing but one filling medium lies on circles about a point out to `radius`. */
+function isUniform(around: Around, x: number, y: number, radius: number): boolean {
+  const own = around(x, y);
+  return (
+    own >= 2 &&
+    [1, 0.6, 0.3].every((share) =>
+      Array.from({ length: SAMPLES }, (_, n) => (2 * Math.PI * n) / SAMPLES).every(
+        (phi) => around(x + share * radius * Math.cos(phi), y + share * radius * Math.sin(phi)) === own,
+      ),
+    )
+  );
+}
+
+/** Free ends of thin walls: corners with the whole turn about them. */
+function wallEnds(scene: ResolvedScene, around: Around, reachMm: number): MetalCorner[] {
+  const { widthMm, heightMm } = scene.section;
+  const walls = scene.paint.flatMap((patch) => (patch.kind === "wall" ? [patch.points] : []));
+  return walls.flatMap((points, index) =>
+    [points, [...points].reverse()].flatMap(([end, next, ...rest]): MetalCorner[] => {
+      const [x, y] = end;
+      const freeMm = Math.min(x, widthMm - x, y, heightMm - y);
+      const others = walls.filter((_, other) => other !== index);
+      const nearest = Math.min(...others.map((other) => distanceToLineMm(x, y, other)));
+      // An end on another wall, or on the section's edge, is none.
+      if (!(freeMm > ON_EDGE * widthMm) || nearest < ON_EDGE * widthMm) return [];
+      const own = rest.length > 0 ? distanceToLineMm(x, y, [next, ...rest]) : Number.POSITIVE_INFINITY;
+      const straight = Math.hypot(next[0] - x, next[1] - y);
+      let reach = Math.min(reachMm, 0.999 * freeMm, 0.999 * nearest, straight, own);
+      while (reach > LEAST_REACH * reachMm && !isUniform(around, x, y, reach)) reach *= SHORTER;
+      if (!isUniform(around, x, y, Math.min(reach, AT_CORNER * reachMm))) return [];
+      const from = Math.atan2(next[1] - y, next[0] - x);
+      return [{ x, y, from, opening: 2 * Math.PI, reachMm: reach > LEAST_REACH * reachMm ? reach : 0 }];
+    }),
+  );
+}
+
 /**
- * All corners of metal inside the section about which the field has more than a half-plane.
+ * All corners of metal inside the section about which the field has more than a half-plane, free ends of thin walls among them.
  *
  * @param reachMm how far sides are followed; each corner has at most half the way to the next one
  */
@@ -140,7 +176,7 @@ export function metalCorners(scene: ResolvedScene, reachMm: number): MetalCorner
   const around = aroundOf(scene);
   const { widthMm, heightMm } = scene.section;
   const seen = new Set<string>();
-  const corners: MetalCorner[] = [];
+  const corners: MetalCorner[] = wallEnds(scene, around, reachMm);
   for (const [x, y] of verticesOf(scene)) {
     const key = `${x.toFixed(9)} ${y.toFixed(9)}`;
     const freeMm = Math.min(x, widthMm - x, y, heightMm - y);

@@ -64,20 +64,10 @@ describe("two meshes", () => {
     expect(order({ paint: [{ ...block, x: 50, y: 0, height: 40 }] })).toBe(2);
     expect(order({ paint: [{ ...block, medium: "air" }], background: "pec" })).toBe(2);
     expect(order({ paint: [post], mesh: { cellMm: 2, metal: "staircase" } })).toBe(1);
-    expect(
-      order({
-        paint: [
-          {
-            kind: "wall",
-            id: "w",
-            points: [
-              [30, 0],
-              [30, 20],
-            ],
-          },
-        ],
-      }),
-    ).toBe(1);
+    const wall = (...points: [number, number][]) => ({ kind: "wall", id: "w", points }) as const;
+    expect(order({ paint: [wall([30, 0], [30, 20])] })).toBeCloseTo(4 / 3, 12);
+    expect(order({ paint: [wall([30, 0], [30, 40])] })).toBe(2);
+    expect(order({ paint: [wall([30, 0], [30, 20], [40, 20])] })).toBe(1);
     const glass = [{ id: "glass", name: "Glass", relativePermittivity: 4 }];
     expect(order({ paint: [{ ...block, medium: "glass" }], media: glass })).toBe(2);
     const across = { polarization: "TEz", probes: [], media: glass } satisfies Partial<SceneInput>;
