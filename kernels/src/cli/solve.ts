@@ -88,7 +88,7 @@ function* comparisons(
             'No patch of the scene is marked "shield": true, so there is nothing to take away; mark the enclosure.',
         },
       ]);
-    yield { scene: bare, merge: withShielding };
+    yield { scene: bare, merge: (result, other) => withShielding(scene, result, other) };
   }
   if (options.twoMesh)
     yield {

@@ -1,5 +1,6 @@
 /** The document that `modes` writes. */
 import { z } from "zod";
+import { limitResultSchema } from "../scene/index.js";
 
 const q = z.number().nullable();
 
@@ -30,6 +31,8 @@ export const modesDocumentSchema = z.strictObject({
       mediaQ: q,
     }),
   ),
+  /** Of the scene's limits, those on cut-off frequencies; margins in GHz. */
+  limits: z.array(limitResultSchema).optional(),
 });
 
 export type ModesDocument = z.output<typeof modesDocumentSchema>;

@@ -51,6 +51,28 @@ const refusalOf = (changes: Partial<SceneInput>) => {
 };
 
 describe("modes of a closed section", () => {
+  // c/2a of the standard guide of 22.86 × 10.16 mm: D. M. Pozar, Microwave Engineering, 4th ed., sec. 3.3.
+  it("are held to the scene's limits on cut-offs", () => {
+    const name = "Cut-off";
+    const scene = sceneOf({
+      section: { widthMm: 22.86, heightMm: 10.16 },
+      limits: [
+        { id: "first", name, sense: "below", value: 6.5, of: { cutoff: 1 } },
+        { id: "second", name, sense: "above", value: 13, of: { cutoff: 2 } },
+        { id: "tenth", name, sense: "above", value: 1, of: { cutoff: 10 } },
+        { id: "ring", name, sense: "below", value: 1, of: { q: "highest" } },
+      ],
+    });
+    const { limits = [] } = findModes(scene, 2);
+    expect(limits.map(({ id, holds }) => [id, holds])).toEqual([
+      ["first", false],
+      ["second", true],
+      ["tenth", null],
+    ]);
+    expect(limits[0].margin).toBeCloseTo(6.5 - HALF_C / 22.86, 4);
+    expect(limits[1].margin).toBeCloseTo((2 * HALF_C) / 22.86 - 13, 3);
+  });
+
   it("is the document of the contract, the same in every run", () => {
     const scene = sceneOf({ mesh: { cellMm: 2 } });
     const document = findModes(scene, 4);

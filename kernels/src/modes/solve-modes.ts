@@ -1,6 +1,6 @@
 /** Cut-off frequencies of a closed section from two meshes. */
 import { C0 } from "../lattice/index.js";
-import type { Problem, ResolvedScene, Scene } from "../scene/index.js";
+import type { LimitResult, Problem, ResolvedScene, Scene } from "../scene/index.js";
 import { gridOf, isPerfect, resolveScene, SceneError } from "../scene/index.js";
 import type { Eigenpair } from "./algebra/lanczos.js";
 import type { ModesDocument } from "./document.js";
@@ -113,6 +113,18 @@ function dampingOf({ space }: Level, pair: Eigenpair, { mediaQ }: ModeLosses): n
   return damped === null || perturbed === null ? 1 : damped / perturbed;
 }
 
+/** Limits on the nth cut-off; not judged where fewer modes were found. */
+function judgeCutoffs({ limits }: ResolvedScene, modes: ModesDocument["modes"]): LimitResult[] {
+  return limits.flatMap((limit): LimitResult[] => {
+    if (!("value" in limit) || !("cutoff" in limit.of)) return [];
+    const mode = modes.at(limit.of.cutoff - 1);
+    if (!mode) return [{ id: limit.id, holds: null, margin: null, atGHz: null, uncertainty: null }];
+    const { cutoffGHz: atGHz, uncertaintyGHz: uncertainty } = mode;
+    const margin = limit.sense === "below" ? limit.value - atGHz : atGHz - limit.value;
+    return [{ id: limit.id, holds: margin >= 0, margin, atGHz, uncertainty }];
+  });
+}
+
 /**
  * The lowest cut-off frequencies of a closed section, TM or TE by the scene's polarization, without static solutions. Each is
  * extrapolated from two meshes as second order, and its uncertainty is their full difference; Q is the finer mesh's.
@@ -150,6 +162,8 @@ export function* solveModes(
       mediaQ: losses.mediaQ === null ? null : losses.mediaQ * correction,
     });
   }
+  modes.sort((p, q) => p.cutoffGHz - q.cutoffGHz);
+  const limits = judgeCutoffs(resolved, modes);
   return {
     format: "heddle-modes",
     version: 1,
@@ -162,7 +176,8 @@ export function* solveModes(
       legsMm: legs,
       unknowns: [coarse.space.unknowns, fine.space.unknowns],
     },
-    modes: modes.sort((p, q) => p.cutoffGHz - q.cutoffGHz),
+    modes,
+    ...(limits.length > 0 && { limits }),
   };
 }
 

@@ -383,7 +383,7 @@ describe("what no engine computes yet", () => {
       return run.warnings.map(({ sentence }) => sentence);
     };
     expect(sentences(none).join("\n")).toMatch(
-      /cut on the mesh lines.*plates 10 mm apart.*plates above and below is not yet.*metal walls is not yet.*"Emission" \(level\) is not judged.*"Ringing" \(ring\) is not judged/s,
+      /cut on the mesh lines.*plates 10 mm apart.*plates above and below is not yet.*own metal walls is in no S.*"Emission" \(level\) is not judged.*"Ringing" \(ring\) is not judged/s,
     );
     // What remains when everything is computed is the caution about the third dimension.
     expect(sentences(all)).toHaveLength(1);

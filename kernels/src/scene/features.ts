@@ -49,7 +49,10 @@ export const COMPUTED: FeatureSet = new Set<Feature | Refinement>([
   "limit-level",
   "limit-s",
   "limit-q",
+  "limit-shielding",
+  "limit-cutoff",
   "plate-loss",
+  "guide-width-frequencies",
 ]);
 
 const FEATURE_NAMES: Readonly<Record<Feature, string>> = {
@@ -132,6 +135,10 @@ const limitRefinement = ({ of }: Limit): { refinement: Refinement; what: string 
   return { refinement: "limit-absorbed-share", what: "limits on the absorbed share" };
 };
 
+/** Of a run that was not compared with the one without the shield patches. */
+export const shieldingUnjudged = ({ name, id }: Pick<Limit, "name" | "id">): string =>
+  `The limit "${name}" (${id}) is on shielding: it is judged only where the run is compared with one without the shield (--shielding).`;
+
 const outOfPlaneCautions = ({ outOfPlane, wallConductivity }: Scene, computed: FeatureSet): Problem[] => {
   const path = "outOfPlane";
   const cautions: Problem[] = [];
@@ -157,13 +164,12 @@ const outOfPlaneCautions = ({ outOfPlane, wallConductivity }: Scene, computed: F
     case "guide-width":
       cautions.push({
         path,
-        sentence: `An E-plane part of a guide ${String(outOfPlane.mm)} mm wide: the figures hold only where metal and fill are uniform across the width.`,
+        sentence: `An E-plane part of a guide ${String(outOfPlane.mm)} mm wide: the figures hold only where metal and fill are uniform across the width; band and limits are in the section's own frequencies f, the guide's are √(f² + f_c²).`,
       });
       if (!computed.has("guide-width-frequencies"))
         cautions.push({
           path,
-          sentence:
-            "Frequencies are the section's own and are not yet mapped to those of the guide, √(f² + f_c²).",
+          sentence: "The guide's frequencies, √(f² + f_c²), are not computed yet.",
         });
       return cautions;
     case "along-guide":
@@ -191,18 +197,33 @@ export const refinementWarnings = (scene: Scene, computed: FeatureSet = COMPUTED
       : [];
   const wall: Problem[] =
     scene.wallConductivity !== undefined && !computed.has("wall-loss")
-      ? [{ path: "wallConductivity", sentence: "The loss of the metal walls is not yet added to any Q." }]
+      ? [
+          {
+            path: "wallConductivity",
+            sentence:
+              "The loss of the section's own metal walls is in no S, spectrum or Q of a run; `modes` gives the Q of walls.",
+          },
+        ]
       : [];
   const limits = scene.limits.flatMap((limit, index): Problem[] => {
     const { refinement, what } = limitRefinement(limit);
-    return computed.has(refinement)
-      ? []
-      : [
-          {
-            path: `limits[${String(index)}]`,
-            sentence: `The limit "${limit.name}" (${limit.id}) is not judged: ${what} are not computed yet.`,
-          },
-        ];
+    const path = `limits[${String(index)}]`;
+    if (!computed.has(refinement))
+      return [
+        {
+          path,
+          sentence: `The limit "${limit.name}" (${limit.id}) is not judged: ${what} are not computed yet.`,
+        },
+      ];
+    if ("shielding" in limit.of) return [{ path, sentence: shieldingUnjudged(limit) }];
+    if ("cutoff" in limit.of)
+      return [
+        {
+          path,
+          sentence: `The limit "${limit.name}" (${limit.id}) is on a cut-off frequency: \`modes\` judges it, a run does not.`,
+        },
+      ];
+    return [];
   });
   return [...metal, ...outOfPlaneCautions(scene, computed), ...wall, ...limits];
 };

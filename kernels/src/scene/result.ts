@@ -16,6 +16,8 @@ export const complexSpectrumSchema = z.strictObject({
   im: curve,
   /** The trace had not fallen by 40 dB at the stop and was completed by its fitted poles. */
   completed: z.boolean().optional(),
+  /** The run stopped too early for it, with a warning: no limit is judged on it. */
+  unfinished: z.boolean().optional(),
 });
 /** Time averages per unit source of power, absorption or energy. */
 export const powerSpectrumSchema = z.strictObject({
@@ -26,6 +28,8 @@ export const powerSpectrumSchema = z.strictObject({
   /** Of an area, in V/m per unit source: |E| by area, and its largest. */
   meanField: curve.optional(),
   worstField: curve.optional(),
+  /** The run stopped too early for it, with a warning: no limit is judged on it. */
+  unfinished: z.boolean().optional(),
 });
 
 export const probeResultSchema = z.strictObject({
@@ -42,8 +46,23 @@ export const probeResultSchema = z.strictObject({
 
 const portResultSchema = z.strictObject({
   GHz: z.array(real),
+  /** Of an E-plane part of one fill: where in its guide, √(f² + f_c²), the figures at `GHz` hold. */
   guideGHz: z.array(real).optional(),
   s: z.array(z.strictObject({ to: z.string(), from: z.string(), re: curve, im: curve, groupDelayNs: curve })),
+  /**
+   * Pairs of ports, both driven, as impedance inverters: `k` is K/√(Z₁Z₂), at most 1; `phaseDeg` the φ at each of the two ports: with
+   * lines of half that length added at the reference planes (negative: taken off) the part is the inverter. Null where more than 1 % of
+   * the power goes elsewhere.
+   */
+  inverters: z
+    .array(
+      z.strictObject({
+        between: z.tuple([z.string(), z.string()]),
+        k: curve,
+        phaseDeg: z.tuple([curve, curve]),
+      }),
+    )
+    .optional(),
   passivity: z.strictObject({ worst: nullable, atGHz: nullable }),
 });
 

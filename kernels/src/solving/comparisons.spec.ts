@@ -134,15 +134,36 @@ describe("shielding", () => {
       medium: "pec",
       shield: true,
     } as const;
+    const kept = { name: "Shielding", of: { shielding: "p" } } as const;
     const scene = sceneOf({
       paint: [lid],
       edges: { left: "absorbing", right: "absorbing", bottom: "electric", top: "electric" },
+      limits: [
+        {
+          ...kept,
+          id: "much",
+          sense: "above",
+          points: [
+            [5, 200],
+            [7, 200],
+          ],
+        },
+        { ...kept, id: "some", sense: "above", points: [[6, 3]] },
+      ],
     });
     const bare = sceneWithoutShield(scene);
     expect(bare?.paint).toEqual([]);
     if (!bare) return;
     const [within, without] = [await solve(scene), await solve(bare)];
-    const result = withShielding(within, without);
+    const unjudged = { holds: null, margin: null, atGHz: null, uncertainty: null };
+    expect(within.limits).toEqual([
+      { id: "much", ...unjudged },
+      { id: "some", ...unjudged },
+    ]);
+    const warned = ({ quality }: SolveResult): boolean => quality.warnings.join().includes("--shielding");
+    expect(warned(within)).toBe(true);
+    const result = withShielding(scene, within, without);
+    expect(warned(result)).toBe(false);
     expect(resultSchema.safeParse(result).error?.message).toBeUndefined();
     const [{ probe, GHz, dB }] = result.shielding ?? [];
     expect([probe, GHz.length, dB.length]).toEqual(["p", 401, 401]);
@@ -153,6 +174,20 @@ describe("shielding", () => {
     };
     expect(dB[200]).toBeCloseTo(level(without, 200) - level(within, 200), 9);
     expect(dB[200]).toBeGreaterThan(3);
+    const least = Math.min(...dB.slice(100, 301).map((value) => value ?? Number.NaN));
+    expect(result.limits).toEqual([
+      { id: "much", holds: false, margin: least - 200, atGHz: GHz[dB.indexOf(least)], uncertainty: null },
+      { id: "some", holds: true, margin: (dB[200] ?? 0) - 3, atGHz: 6, uncertainty: null },
+    ]);
+    // Nothing is judged on a spectrum that its run was too short for.
+    const cut = {
+      ...without,
+      probes: without.probes.map((one) => ({
+        ...one,
+        spectrum: one.spectrum && { ...one.spectrum, unfinished: true },
+      })),
+    };
+    expect(withShielding(scene, within, cut).limits).toEqual(within.limits);
     expect(sceneWithoutShield(bare)).toBeNull();
   });
 });

@@ -38,12 +38,14 @@ const worstOf = (judgements: readonly Judgement[]): Judgement => {
 
 /**
  * Limits on the levels of probes, 20·lg of V/m, A/m or V, 10·lg of W/m per unit source, whichever port drives; and on |S| in dB. None is
- * judged on a trace that had not rung down.
+ * judged on a trace that had not rung down, and those on shielding by `withShielding` only.
  */
 export function judgeLines(scene: ResolvedScene, judged: Judged): LimitResult[] {
   return scene.limits.flatMap((limit): LimitResult[] => {
     if (!("points" in limit)) return [];
     const { of } = limit;
+    // What compares the run with the bare scene judges it.
+    if ("shielding" in of) return [{ id: limit.id, ...UNJUDGED, uncertainty: null }];
     const result = (judgement: Judgement): LimitResult[] => [
       { id: limit.id, ...judgement, uncertainty: null },
     ];
@@ -58,7 +60,6 @@ export function judgeLines(scene: ResolvedScene, judged: Judged): LimitResult[] 
         ),
       );
     }
-    if (!("s" in of)) return [];
     const [to, from] = of.s;
     const entry = judged.ports?.s.find((one) => one.to === to && one.from === from);
     if (!judged.ports || !entry || judged.portsUnfinished) return result(UNJUDGED);

@@ -12,6 +12,8 @@ import {
   scatteringColumns,
 } from "../ports/index.js";
 import type { SolveResult } from "../scene/index.js";
+import { guideFrequencies, SEVERAL_FILLS } from "./guide-width.js";
+import { invertersOf } from "./inverters.js";
 import type { LegRecord } from "./leg-record.js";
 import { NEAR_CUTOFF, portDrives } from "./port-plan.js";
 import type { PortPlan } from "./port-plan.js";
@@ -94,6 +96,7 @@ export function legWaves(record: LegRecord): LegWaves | null {
     warnings.push(
       `Below ${NEAR_CUTOFF} times the cut-off of the port "${mode.id}" (${(latticeCutoff(lattice, mode) / 1e9).toPrecision(4)} GHz) S is rough: waves there leave too slowly.`,
     );
+  if (guideFrequencies(resolved, []) === null) warnings.push(SEVERAL_FILLS);
   const signals = portSignals(record);
   const powerOf = (port: number): number => Math.sqrt(ports.modes[port].norm);
   const sent = largestOf(signals[ports.driven][0].values) * powerOf(ports.driven);
@@ -209,5 +212,13 @@ export function portsInDocument(
       });
     });
   }
-  return { GHz, s, passivity: { worst, atGHz } };
+  const guideGHz = guideFrequencies(first.resolved, GHz);
+  const inverters = invertersOf(s);
+  return {
+    GHz,
+    ...(guideGHz && { guideGHz }),
+    s,
+    ...(inverters && { inverters }),
+    passivity: { worst, atGHz },
+  };
 }

@@ -37,6 +37,12 @@ function partOf(record: LegRecord, edited: boolean): LegPart {
     sent: waves && sentWave(waves, record.frequenciesGHz.length),
   };
   const spectra = edited ? null : spectraOf(driven);
+  const spectrumOf = (index: number): ProbeResult["spectrum"] => {
+    const spectrum = spectra?.spectra[index] ?? null;
+    return spectrum && spectra?.unfinished.has(record.probes[index].id)
+      ? { ...spectrum, unfinished: true }
+      : spectrum;
+  };
   const results = record.probes.map(
     (probe, index): ProbeResult => ({
       id: probe.id,
@@ -49,7 +55,7 @@ function partOf(record: LegRecord, edited: boolean): LegPart {
         stepNs: probe.every * dt * 1e9,
         values: Array.from(record.traces(index)),
       },
-      spectrum: spectra?.spectra[index] ?? null,
+      spectrum: spectrumOf(index),
     }),
   );
   return {

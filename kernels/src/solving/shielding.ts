@@ -1,5 +1,7 @@
 /** What the patches marked `shield` keep away: the same scene with and without them. */
-import type { PowerSpectrum, ProbeResult, Scene, SolveResult } from "../scene/index.js";
+import { judgeLevels } from "../analysis/index.js";
+import type { LimitResult, PowerSpectrum, ProbeResult, Scene, SolveResult } from "../scene/index.js";
+import { shieldingUnjudged } from "../scene/index.js";
 
 /** The scene without its enclosure; null where no patch is marked. */
 export function sceneWithoutShield(scene: Scene): Scene | null {
@@ -29,13 +31,36 @@ function shieldingDb(bare: ProbeResult, shielded: ProbeResult): (number | null)[
   });
 }
 
+type Shielding = NonNullable<SolveResult["shielding"]>;
+
+/** Limits on shielding; not judged where either run stopped too early for the probe's spectrum. */
+function judgeShielding(
+  scene: Scene,
+  shielding: Shielding,
+  runs: readonly SolveResult[],
+): Map<string, LimitResult> {
+  const judged = new Map<string, LimitResult>();
+  for (const limit of scene.limits) {
+    if (!("points" in limit) || !("shielding" in limit.of)) continue;
+    const { shielding: id } = limit.of;
+    const curve = shielding.find(({ probe }) => probe === id);
+    const unfinished = runs.some(({ probes }) =>
+      probes.some((probe) => probe.id === id && probe.spectrum?.unfinished === true),
+    );
+    if (!curve || unfinished) continue;
+    judged.set(limit.id, { id: limit.id, ...judgeLevels(limit, curve.GHz, curve.dB), uncertainty: null });
+  }
+  return judged;
+}
+
 /**
  * The result with its shielding: 20·lg of the field without the marked patches over that with them, 10·lg of powers and energies, at each
- * probe of the first drive.
+ * probe of the first drive, and with the limits on it judged.
  *
+ * @param scene the scene of `result`
  * @param bare the result without the patches, at the same frequencies
  */
-export function withShielding(result: SolveResult, bare: SolveResult): SolveResult {
+export function withShielding(scene: Scene, result: SolveResult, bare: SolveResult): SolveResult {
   const first = result.probes.at(0)?.drive ?? null;
   const shielding = result.probes
     .filter(({ drive }) => drive === first)
@@ -44,5 +69,21 @@ export function withShielding(result: SolveResult, bare: SolveResult): SolveResu
       const dB = other ? shieldingDb(other, probe) : null;
       return dB === null ? [] : [{ probe: probe.id, GHz: probe.spectrum?.GHz ?? [], dB }];
     });
-  return { ...result, shielding };
+  const judged = judgeShielding(scene, shielding, [result, bare]);
+  const answered = new Set(
+    scene.limits.filter((limit) => "shielding" in limit.of).map((limit) => shieldingUnjudged(limit)),
+  );
+  const own = result.quality.warnings.filter((sentence) => !answered.has(sentence));
+  const more = bare.quality.warnings.filter(
+    (sentence) => !answered.has(sentence) && !result.quality.warnings.includes(sentence),
+  );
+  return {
+    ...result,
+    shielding,
+    ...(result.limits && { limits: result.limits.map((limit) => judged.get(limit.id) ?? limit) }),
+    quality: {
+      ...result.quality,
+      warnings: [...own, ...more.map((sentence) => `Without the shield: ${sentence}`)],
+    },
+  };
 }

@@ -532,10 +532,38 @@ export interface components {
                 step: number;
             }[];
             extrapolation?: {
-                probes: unknown[];
+                order: number;
+                probes: ({
+                    GHz: number[];
+                    drive: string | null;
+                    id: string;
+                    im: (number | null)[];
+                    re: (number | null)[];
+                    uncertainty: (number | null)[];
+                } | {
+                    GHz: number[];
+                    drive: string | null;
+                    id: string;
+                    uncertainty: (number | null)[];
+                    value: (number | null)[];
+                })[];
                 ratio: number;
-                resonances: unknown[];
-                s: unknown[];
+                resonances: {
+                    GHz: number;
+                    ghzUncertainty: number;
+                    probe: string;
+                    q: number | null;
+                    qUncertainty: number | null;
+                }[];
+                s: {
+                    GHz: number[];
+                    from: string;
+                    im: (number | null)[];
+                    re: (number | null)[];
+                    to: string;
+                    uncertainty: (number | null)[];
+                }[];
+                steady: boolean;
             };
             /** @enum {string} */
             format: "heddle-result";
@@ -558,6 +586,11 @@ export interface components {
             ports?: {
                 GHz: number[];
                 guideGHz?: number[];
+                inverters?: {
+                    between: (string)[];
+                    k: (number | null)[];
+                    phaseDeg: ((number | null)[] | (number | null)[])[];
+                }[];
                 passivity: {
                     atGHz: number | null;
                     worst: number | null;
@@ -581,11 +614,15 @@ export interface components {
                     completed?: boolean;
                     im: (number | null)[];
                     re: (number | null)[];
+                    unfinished?: boolean;
                 } | {
                     GHz: number[];
                     electric?: (number | null)[];
                     magnetic?: (number | null)[];
+                    meanField?: (number | null)[];
+                    unfinished?: boolean;
                     value: (number | null)[];
+                    worstField?: (number | null)[];
                 }) | null;
                 trace: {
                     startNs: number;
