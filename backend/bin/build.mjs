@@ -10,7 +10,7 @@ export const root = fileURLToPath(new URL("../..", import.meta.url));
 const WORKSPACES = {
   kernels: {
     output: "kernels/dist/scene/index.js",
-    sources: ["kernels/src", "kernels/package.json", "kernels/tsconfig.build.json"],
+    sources: ["kernels/src", "kernels/assembly", "kernels/package.json", "kernels/tsconfig.build.json"],
   },
   backend: {
     output: "backend/dist/main.js",

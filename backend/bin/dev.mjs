@@ -1,5 +1,6 @@
 // Development: kernels and server rebuilt on every change, pages by vite with hot reload, on http://localhost:5173.
 import { spawn } from "node:child_process";
+import { existsSync } from "node:fs";
 import { join } from "node:path";
 import { buildWhatIsMissing, root } from "./build.mjs";
 
@@ -8,18 +9,22 @@ const port = process.env.PORT ?? "4680";
 
 buildWhatIsMissing(["kernels"]);
 
-const bin = (name) => join(root, "node_modules/.bin", name);
+/** A package's program: beside the workspace where npm put it there, else at the root. */
+const bin = (folder, name) => {
+  const own = join(root, folder, "node_modules/.bin", name);
+  return existsSync(own) ? own : join(root, "node_modules/.bin", name);
+};
 const children = [
-  ["kernels", bin("tsc"), ["-p", "tsconfig.build.json", "--watch", "--preserveWatchOutput"], {}],
+  ["kernels", "tsc", ["-p", "tsconfig.build.json", "--watch", "--preserveWatchOutput"], {}],
   [
     "backend",
-    bin("nest"),
+    "nest",
     ["start", "--watch", "--preserveWatchOutput"],
     { PORT: port, APP_URL: process.env.APP_URL ?? PAGES },
   ],
-  ["frontend", bin("vite"), [], { BACKEND_URL: `http://127.0.0.1:${port}` }],
+  ["frontend", "vite", [], { BACKEND_URL: `http://127.0.0.1:${port}` }],
 ].map(([folder, command, args, env]) =>
-  spawn(command, args, {
+  spawn(bin(folder, command), args, {
     cwd: join(root, folder),
     stdio: "inherit",
     env: { ...process.env, ...env },
