@@ -47,6 +47,10 @@ export const RunDto = z
     /** Why it failed or was interrupted, as a sentence. */
     message: z.string().nullable(),
     stopReason: z.enum(["decay", "time", "cancelled"]).nullable(),
+    /** Is solved on a finer mesh, too. */
+    twoMesh: z.boolean(),
+    /** Is solved without its patches marked `shield`, too. */
+    shielding: z.boolean(),
   })
   .meta({ id: "Run" });
 export type RunDto = z.infer<typeof RunDto>;
@@ -57,6 +61,10 @@ export const StartRunBody = z
     revision: z.int().min(1),
     paused: z.boolean().default(false),
     pacePsPerSecond: z.number().positive().max(1e9).nullable().default(null),
+    /** Solves the scene on a finer mesh, too, and gives figures at zero cell size with their uncertainty. */
+    twoMesh: z.boolean().default(false),
+    /** Solves the scene without its patches marked `shield`, too, and gives their shielding. */
+    shielding: z.boolean().default(false),
   })
   .meta({ id: "StartRunBody" });
 

@@ -23,4 +23,6 @@ export const toRunDto = (run: RunRecord, queuePlace: number | null): RunDto => (
   edits: run.edits.map(({ step, at, by }) => ({ step, at, by })),
   message: run.message,
   stopReason: run.stopReason,
+  twoMesh: run.twoMesh,
+  shielding: run.shielding,
 });

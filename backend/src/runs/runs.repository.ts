@@ -24,6 +24,8 @@ const COLUMNS = {
   by: { id: people.id, name: people.name },
   state: runs.state,
   startPaused: runs.startPaused,
+  twoMesh: runs.twoMesh,
+  shielding: runs.shielding,
   memoryBytes: runs.memoryBytes,
   queuedAt: runs.queuedAt,
   startedAt: runs.startedAt,
@@ -48,6 +50,8 @@ export interface RunRecord {
   by: { id: string; name: string };
   state: RunState;
   startPaused: boolean;
+  twoMesh: boolean;
+  shielding: boolean;
   memoryBytes: number;
   queuedAt: Date;
   startedAt: Date | null;
@@ -89,6 +93,9 @@ export interface Entrance {
   startPaused: boolean;
   /** Picoseconds of field time a second; left out or null: as fast as the server goes. */
   pacePsPerSecond?: number | null;
+  /** Further runs for comparison; left out: none. */
+  twoMesh?: boolean;
+  shielding?: boolean;
   memoryBytes: number;
 }
 

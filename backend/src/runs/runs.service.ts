@@ -1,5 +1,13 @@
 import { Inject, Injectable } from "@nestjs/common";
-import { estimateCost, readScene, resolveScene } from "@heddle/kernels/scene";
+import {
+  estimateCost,
+  readScene,
+  resolveScene,
+  SceneError,
+  type Problem,
+  type Scene,
+} from "@heddle/kernels/scene";
+import { comparedScenes, type ComparisonOptions } from "@heddle/kernels/solving";
 import type { z } from "zod";
 import type { Actor } from "../common/actor.js";
 import { notFound, Refusal } from "../common/refusal.js";
@@ -36,7 +44,7 @@ export class RunsService {
 
   /** @throws Refusal "not-found", "scene-refused", "too-large" or "queue-full" */
   async start(actor: Actor, sceneId: string, wanted: z.output<typeof StartRunBody>): Promise<RunDto> {
-    const { revision, paused: startPaused, pacePsPerSecond } = wanted;
+    const { revision, paused: startPaused, pacePsPerSecond, twoMesh, shielding } = wanted;
     if (!(await this.repository.sceneExists(sceneId, actor.workspace.id))) throw notFound("scene");
     const document = await this.repository.document(sceneId, revision);
     if (document === null)
@@ -49,7 +57,9 @@ export class RunsService {
         personId: actor.person.id,
         startPaused,
         pacePsPerSecond,
-        memoryBytes: this.memoryFor(document),
+        twoMesh,
+        shielding,
+        memoryBytes: this.memoryFor(document, { twoMesh, shielding }),
       },
       this.limits,
     );
@@ -141,14 +151,13 @@ export class RunsService {
     return new Map(order.map((id, index) => [id, index + 1]));
   }
 
-  private memoryFor(document: Record<string, unknown>): number {
-    const read = readScene(document, { purpose: "run" });
-    if (!read.ok) {
-      throw new Refusal("scene-refused", read.problems[0]?.sentence ?? "The scene is refused.", {
-        problems: read.problems.map(({ path, sentence }) => ({ path, sentence })),
-      });
-    }
-    const { memoryBytes } = estimateCost(resolveScene(read.scene));
+  /** Of the largest of the scenes that the run solves one after the other. */
+  private memoryFor(document: Record<string, unknown>, compared: ComparisonOptions): number {
+    const own = runnable(document);
+    const others = scenesBeside(own, compared).map(runnable);
+    const memoryBytes = Math.max(
+      ...[own, ...others].map((scene) => estimateCost(resolveScene(scene)).memoryBytes),
+    );
     if (memoryBytes > this.limits.memoryBytes) {
       throw new Refusal(
         "too-large",
@@ -227,6 +236,29 @@ export class RunsService {
     await live.inOrder(() => this.repository.change(record.id, { pacePsPerSecond: pace }));
     this.dispatcher.tell(live);
   }
+}
+
+/** @throws Refusal "scene-refused" with every problem */
+function runnable(document: unknown): Scene {
+  const read = readScene(document, { purpose: "run" });
+  if (!read.ok) throw sceneRefused(read.problems);
+  return read.scene;
+}
+
+/** @throws Refusal "scene-refused" where there is nothing to compare with */
+function scenesBeside(scene: Scene, compared: ComparisonOptions): Scene[] {
+  try {
+    return comparedScenes(scene, compared);
+  } catch (error) {
+    if (error instanceof SceneError) throw sceneRefused(error.problems);
+    throw error;
+  }
+}
+
+function sceneRefused(problems: readonly Problem[]): Refusal {
+  return new Refusal("scene-refused", problems[0]?.sentence ?? "The scene is refused.", {
+    problems: problems.map(({ path, sentence }) => ({ path, sentence })),
+  });
 }
 
 function queueFull(who: "everyone" | "person", queued: number): Refusal {

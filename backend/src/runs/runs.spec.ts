@@ -128,6 +128,24 @@ describe("runs", () => {
     expect(answer.body.message).toMatch(/needs about \d+\.\d GB.*gives its runs 0\.0 GB/);
   });
 
+  it("asks for the runs that it is to be compared with, and says so", async () => {
+    const started = await bench.start({ paused: true, twoMesh: true });
+    expect(await bench.reaches(started.id, "paused")).toMatchObject({ twoMesh: true, shielding: false });
+    expect(bench.threads.started.at(-1)?.task).toMatchObject({ twoMesh: true, shielding: false });
+  });
+
+  it("refuses to compare with a scene that is there no more without its marked patches, or too large", async () => {
+    const ask = (body: object) =>
+      bench.engineer.post(`/api/scenes/${bench.sceneId}/runs`).send({ revision: 1, ...body });
+    const unmarked = await ask({ shielding: true }).expect(422);
+    expect(unmarked.body).toMatchObject({ code: "scene-refused", problems: [{ path: "paint" }] });
+    const alone = await bench.start();
+    const run = await bench.server.app.get(RunsRepository).findAnywhere(alone.id);
+    bench.limits.memoryBytes = run?.memoryBytes ?? 0;
+    await ask({}).expect(201);
+    expect((await ask({ twoMesh: true }).expect(413)).body).toMatchObject({ code: "too-large" });
+  });
+
   it("holds what is over the slots in the queue, tells places, and refuses what is over its bounds", async () => {
     Object.assign(bench.limits, { queued: 3, queuedPerPerson: 2 });
     const going = await bench.start();

@@ -151,7 +151,7 @@ describe("solve refuses with status 2", () => {
   });
 
   it.each([
-    [["--shielding"], "--shielding: No patch of the scene is marked"],
+    [["--shielding"], "paint: No patch of the scene is marked"],
     [["--engine", "wasm", "--precision", "f64"], "--precision: The wasm engine computes in f32"],
     [["--engine", "steam"], '--engine: There is no engine "steam"'],
     [["--precision", "f16"], '--precision: "f16" is no precision'],

@@ -2,7 +2,6 @@
 import type { Writable } from "node:stream";
 import { setImmediate as nextTurn } from "node:timers/promises";
 import { readScene, type Scene, SceneError, type SolveResult } from "../scene/index.js";
-import { refinedScene, sceneWithoutShield, withFinerMesh, withShielding } from "../solving/index.js";
 import type { SessionOptions, SolveSession } from "../solving/session.js";
 import { allThreads, spawnHelper } from "../threads/index.js";
 import { readSceneFile, say, sayProblems } from "./messages.js";
@@ -57,6 +56,8 @@ const runScene = async (
   const session = await io.openSession(scene, {
     ...(options.engine && { engine: options.engine }),
     ...(options.precision && { precision: options.precision }),
+    twoMesh: options.twoMesh,
+    shielding: options.shielding,
     threads: options.threads ?? allThreads(),
     spawnHelper,
     log: (sentence) => say(io, sentence),
@@ -73,44 +74,13 @@ const runScene = async (
   }
 };
 
-/** Further runs that the options ask for, each with what becomes of the result. */
-function* comparisons(
-  scene: Scene,
-  options: SolveOptions,
-): Generator<{ scene: Scene; merge: (result: SolveResult, other: SolveResult) => SolveResult }> {
-  if (options.shielding) {
-    const bare = sceneWithoutShield(scene);
-    if (bare === null)
-      throw new SceneError([
-        {
-          path: "--shielding",
-          sentence:
-            'No patch of the scene is marked "shield": true, so there is nothing to take away; mark the enclosure.',
-        },
-      ]);
-    yield { scene: bare, merge: (result, other) => withShielding(scene, result, other) };
-  }
-  if (options.twoMesh)
-    yield {
-      scene: refinedScene(scene),
-      merge: (result, other) => withFinerMesh(scene, result, other),
-    };
-}
-
 const solveScene = async (
   io: SolveIo,
   scene: Scene,
   options: SolveOptions,
   file: OutputFile | null,
 ): Promise<ExitStatus> => {
-  const more = [...comparisons(scene, options)];
-  let result = await runScene(io, scene, options);
-  for (const { scene: other, merge } of more) {
-    if (typeof result === "number") return result;
-    const compared = await runScene(io, other, options);
-    if (typeof compared === "number") return compared;
-    result = merge(result, compared);
-  }
+  const result = await runScene(io, scene, options);
   if (typeof result === "number") return result;
   const text = `${JSON.stringify(result)}\n`;
   if (file === null) await writeStream(io.stdout, text);

@@ -1,8 +1,10 @@
 /** What is made of two runs: figures at zero cell size, and shielding. */
 import { describe, expect, it } from "vitest";
 import type { Scene, SceneInput, SolveResult } from "../scene/index.js";
-import { meshPromise, readScene, resolveScene, resultSchema } from "../scene/index.js";
-import { openSession, refinedScene, sceneWithoutShield, withFinerMesh, withShielding } from "./index.js";
+import { meshPromise, readScene, resolveScene, resultSchema, SceneError } from "../scene/index.js";
+import type { SessionOptions } from "./index.js";
+import { comparedScenes, openSession } from "./index.js";
+import { withShielding } from "./shielding.js";
 
 const sceneOf = (changes: Partial<SceneInput>): Scene => {
   const read = readScene({
@@ -23,8 +25,8 @@ const sceneOf = (changes: Partial<SceneInput>): Scene => {
   return read.scene;
 };
 
-const solve = async (scene: Scene): Promise<SolveResult> => {
-  const session = await openSession(scene);
+const solve = async (scene: Scene, options: SessionOptions = {}): Promise<SolveResult> => {
+  const session = await openSession(scene, options);
   try {
     expect(session.advance(1e7)).toMatchObject({ kind: "ended" });
     return session.result();
@@ -39,7 +41,7 @@ describe("two meshes", () => {
     const scene = sceneOf({});
     const exact = 0.299_792_458 * 500 * Math.hypot(1 / 60, 1 / 40);
     const coarse = await solve(scene);
-    const result = withFinerMesh(scene, coarse, await solve(refinedScene(scene)));
+    const result = await solve(scene, { twoMesh: true });
     expect(resultSchema.safeParse(result).error?.message).toBeUndefined();
     expect(result.extrapolation).toMatchObject({ ratio: 2, order: 2, steady: true });
     const nearest = (list: readonly { GHz: number }[]): number =>
@@ -104,8 +106,7 @@ describe("an error bar of two meshes", () => {
         stop: { maxTimeNs: 6, decayDb: 80 },
       });
     const scene = iris(0.6);
-    const coarse = await solve(scene);
-    const result = withFinerMesh(scene, coarse, await solve(refinedScene(scene)));
+    const result = await solve(scene, { twoMesh: true });
     const truth = await solve(iris(0.2));
     expect(result.extrapolation?.steady).toBe(false);
     let widestBar = 0;
@@ -151,9 +152,8 @@ describe("shielding", () => {
         { ...kept, id: "some", sense: "above", points: [[6, 3]] },
       ],
     });
-    const bare = sceneWithoutShield(scene);
-    expect(bare?.paint).toEqual([]);
-    if (!bare) return;
+    const [bare] = comparedScenes(scene, { shielding: true });
+    expect(bare.paint).toEqual([]);
     const [within, without] = [await solve(scene), await solve(bare)];
     const unjudged = { holds: null, margin: null, atGHz: null, uncertainty: null };
     expect(within.limits).toEqual([
@@ -162,7 +162,7 @@ describe("shielding", () => {
     ]);
     const warned = ({ quality }: SolveResult): boolean => quality.warnings.join().includes("--shielding");
     expect(warned(within)).toBe(true);
-    const result = withShielding(scene, within, without);
+    const result = await solve(scene, { shielding: true });
     expect(warned(result)).toBe(false);
     expect(resultSchema.safeParse(result).error?.message).toBeUndefined();
     const [{ probe, GHz, dB }] = result.shielding ?? [];
@@ -188,6 +188,56 @@ describe("shielding", () => {
       })),
     };
     expect(withShielding(scene, within, cut).limits).toEqual(within.limits);
-    expect(sceneWithoutShield(bare)).toBeNull();
+    await expect(openSession(bare, { shielding: true })).rejects.toThrow(SceneError);
+  });
+});
+
+describe("a run that is compared with others", () => {
+  const shield = {
+    kind: "rectangle",
+    id: "lid",
+    x: 30,
+    y: 0,
+    width: 4,
+    height: 30,
+    medium: "pec",
+    shield: true,
+  } as const;
+  const scene = sceneOf({ paint: [shield], stop: { maxTimeNs: 3, decayDb: 60 } });
+  /** All but what says how the figures came about. */
+  const figuresOf = (result: SolveResult) => ({ ...result, timing: null, quality: null });
+
+  it("keeps its own figures and traces, whatever it is compared with", async () => {
+    const alone = await solve(scene);
+    const session = await openSession(scene, { twoMesh: true, shielding: true });
+    expect(session.advance(alone.grid.steps + 100)).toEqual({ kind: "running" });
+    const [trace] = session.tracesSince(0);
+    expect(Array.from(trace.values)).toEqual(alone.probes[0].trace.values);
+    const [later] = session.tracesSince(alone.grid.steps);
+    expect([later.from, later.values.length]).toEqual([alone.grid.steps, 0]);
+    expect(session.edit(scene)).toMatchObject({ kind: "refused" });
+    const saved = session.snapshot();
+    expect(session.advance(1e7)).toMatchObject({ kind: "ended", reason: "time" });
+    const result = session.result();
+    const { extrapolation, shielding, ...rest } = figuresOf(result);
+    expect(rest).toEqual(figuresOf(alone));
+    expect(extrapolation?.probes).toHaveLength(1);
+    expect(shielding).toHaveLength(1);
+    session.restore(saved);
+    session.advance(1e7);
+    expect(figuresOf(session.result())).toEqual(figuresOf(result));
+    session.dispose();
+  });
+
+  it("says so where it was stopped before it was compared", async () => {
+    const session = await openSession(scene, { twoMesh: true });
+    session.advance(session.grid.maxSteps / 2);
+    session.cancel();
+    expect(session.advance(1)).toEqual({ kind: "ended", reason: "cancelled" });
+    const result = session.result();
+    expect(result.extrapolation).toBeUndefined();
+    expect(result.stopped.reason).toBe("time");
+    expect(result.quality.warnings.join(" ")).toMatch(/stopped before its finer mesh was done/);
+    session.dispose();
   });
 });

@@ -1,14 +1,13 @@
 /**
- * A run of several legs, one after the other behind the door of one session: the driven ports of a scene in turn. Every leg has an
- * engine of its own, made when its turn comes; of a leg that is over only its record is kept. Steps and samples count on from leg
- * to leg, and `maxSteps` is the sum of theirs.
+ * A run of several legs, one after the other behind the door of one session: the driven ports of a scene in turn, then those of the
+ * scenes that it is compared with. Every leg has an engine of its own, made when its turn comes; of a leg that is over only its record
+ * is kept. Steps and samples count on from leg to leg, and `maxSteps` is the sum of theirs.
  */
 import type { FieldQuantity, FieldSample, ViewRequest } from "../frames/index.js";
 import type { Scene, SolveResult } from "../scene/index.js";
 import { packBlocks, unpackBlocks } from "./blocks.js";
 import type { EngineSession } from "./engine-session.js";
 import type { LegRecord } from "./leg-record.js";
-import { buildResult } from "./result.js";
 import type {
   AdvanceOutcome,
   EditLogEntry,
@@ -33,6 +32,9 @@ interface FinishedLeg {
   samples: number;
 }
 
+const COMPARED =
+  "The run is already solving the scene that its own is compared with, where nothing can be edited: stop it, or run the edited scene when it has ended.";
+
 /** What a snapshot says in words; those of the legs follow in blocks. */
 interface LegsHeader {
   legs: number;
@@ -49,19 +51,30 @@ export class LegsSession implements SolveSession {
   /** An edited or cancelled run ends with the leg that it is in. */
   private last: number;
 
+  private readonly legs: readonly Leg[];
+
   /**
-   * @param legs two or more; the first one's grid stands for the run's
+   * @param own one or more; the first one's grid stands for the run's
+   * @param compared come after them, of other scenes: they give no traces, which would not join on to the run's own, and take no edits
    * @param merge makes one result of the records of the legs that ran, in their order
    */
   constructor(
-    private readonly legs: readonly Leg[],
-    private readonly merge: (records: readonly LegRecord[]) => SolveResult = buildResult,
+    private readonly own: readonly Leg[],
+    compared: readonly Leg[],
+    private readonly merge: (records: readonly LegRecord[]) => SolveResult,
   ) {
+    const legs = [...own, ...compared];
+    this.legs = legs;
     this.current = legs[0].open();
     this.last = legs.length - 1;
     this.quantities = this.current.quantities;
     const maxSteps = legs.reduce((sum, leg) => sum + leg.maxSteps, 0);
     this.grid = { ...this.current.grid, maxSteps };
+  }
+
+  /** The leg under way is one of the scene's own. */
+  private get ownUnderWay(): boolean {
+    return this.finished.length < this.own.length;
   }
 
   private get stepsBefore(): number {
@@ -100,13 +113,12 @@ export class LegsSession implements SolveSession {
 
   /** Puts the leg that is over aside and opens the next one. */
   private goOn(): void {
-    const { current } = this;
-    const traces = current.tracesSince(0);
+    const { current, ownUnderWay } = this;
     this.finished.push({
       record: current.record(),
       saved: current.snapshot("record"),
-      traces,
-      samples: current.step,
+      traces: ownUnderWay ? current.tracesSince(0) : [],
+      samples: ownUnderWay ? current.step : 0,
     });
     current.dispose();
     this.current = this.legs[this.finished.length].open();
@@ -117,14 +129,17 @@ export class LegsSession implements SolveSession {
     this.current.cancel();
   }
 
-  /** The legs' samples one after the other. */
+  /** The samples of the scene's own legs one after the other. */
   tracesSince(from: number): TraceIncrement[] {
-    const before = this.finished.reduce((sum, { samples }) => sum + samples, 0);
-    const now = this.current.tracesSince(Math.max(0, from - before));
+    const finished = this.finished.slice(0, this.own.length);
+    const before = finished.reduce((sum, { samples }) => sum + samples, 0);
+    const now = this.ownUnderWay
+      ? this.current.tracesSince(Math.max(0, from - before))
+      : finished[0].traces.map((trace) => ({ ...trace, from: 0, values: new Float64Array(0) }));
     return now.map((trace, probe): TraceIncrement => {
       const parts: Float64Array[] = [];
       let start = 0;
-      for (const { traces, samples } of this.finished) {
+      for (const { traces, samples } of finished) {
         const { every = 1, values } = traces[probe];
         if (from < start + samples)
           parts.push(values.subarray(Math.floor(Math.max(0, from - start) / every)));
@@ -137,7 +152,7 @@ export class LegsSession implements SolveSession {
         values.set(part, at);
         at += part.length;
       }
-      const all = this.finished.reduce((sum, leg) => sum + leg.traces[probe].values.length, 0);
+      const all = finished.reduce((sum, leg) => sum + leg.traces[probe].values.length, 0);
       return { ...trace, from: all + trace.from + trace.values.length - values.length, values };
     });
   }
@@ -148,6 +163,7 @@ export class LegsSession implements SolveSession {
 
   /** Edits the leg that is running; it is then the last. */
   edit(scene: Scene): EditOutcome {
+    if (!this.ownUnderWay) return { kind: "refused", problems: [{ path: "", sentence: COMPARED }] };
     const outcome = this.current.edit(scene);
     if (outcome.kind === "refused") return outcome;
     this.last = this.finished.length;

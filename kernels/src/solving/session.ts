@@ -10,7 +10,15 @@ import type { EngineOptions } from "./engines.js";
 
 export type { EngineName, Precision } from "./engines.js";
 
-export interface SessionOptions extends EngineOptions {
+/** Further runs, which the session takes after its own, and whose figures its result carries. */
+export interface ComparisonOptions {
+  /** On cells half as large: `extrapolation`. */
+  twoMesh?: boolean;
+  /** Without the patches marked `shield`: `shielding`. */
+  shielding?: boolean;
+}
+
+export interface SessionOptions extends EngineOptions, ComparisonOptions {
   /** Spectrum frequencies in GHz, in the order wanted; default 401 evenly over the scene's band. */
   frequenciesGHz?: readonly number[];
 }

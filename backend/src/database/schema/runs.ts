@@ -38,6 +38,8 @@ export const runs = pgTable(
       .references(() => people.id),
     state: text().$type<RunState>().notNull().default("queued"),
     startPaused: boolean().notNull().default(false),
+    twoMesh: boolean().notNull().default(false),
+    shielding: boolean().notNull().default(false),
     /** Bytes that the solver needs at most, by the kernels' estimate. */
     memoryBytes: bigint({ mode: "number" }).notNull(),
     queuedAt: moment().notNull().defaultNow(),

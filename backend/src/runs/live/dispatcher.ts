@@ -139,10 +139,10 @@ export class Dispatcher implements OnApplicationBootstrap, BeforeApplicationShut
     this.lives.set(runId, live);
     await this.evictLingering();
     try {
-      const { startPaused, pacePsPerSecond } = record;
+      const { startPaused, pacePsPerSecond, twoMesh, shielding } = record;
       live.holds(
         this.threads.start(
-          { runId, document, startPaused, pacePsPerSecond },
+          { runId, document, startPaused, pacePsPerSecond, twoMesh, shielding },
           {
             message: (message) => this.hear(live, message),
             gone: (error) => this.lost(live, error),

@@ -21,7 +21,7 @@ export interface RunBench {
   engineer: Agent;
   sceneId: string;
   /** Starts the scene's first revision and gives the run. */
-  start: (body?: { paused?: boolean }, agent?: Agent) => Promise<RunDto>;
+  start: (body?: { paused?: boolean; twoMesh?: boolean }, agent?: Agent) => Promise<RunDto>;
   get: (runId: string) => Promise<RunDto>;
   command: (runId: string, body: object) => Promise<{ status: number; body: RunDto & { message: string } }>;
   reaches: (runId: string, state: RunDto["state"]) => Promise<RunDto>;

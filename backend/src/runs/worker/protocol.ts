@@ -12,6 +12,9 @@ export interface SolverTask {
   document: unknown;
   startPaused: boolean;
   pacePsPerSecond: number | null;
+  /** Further runs for comparison, after the scene's own. */
+  twoMesh: boolean;
+  shielding: boolean;
 }
 
 /** A view as the thread keeps it: what to sample and how to scale it. */

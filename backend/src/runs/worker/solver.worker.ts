@@ -2,7 +2,7 @@
 import { getPriority, setPriority } from "node:os";
 import { parentPort, workerData } from "node:worker_threads";
 import { encodeFrame, frameByteLength, type FieldSample } from "@heddle/kernels/frames";
-import { readScene, sceneSha256, type Scene } from "@heddle/kernels/scene";
+import { readScene, SceneError, sceneSha256, type Scene } from "@heddle/kernels/scene";
 import { openSession } from "@heddle/kernels/solving";
 import { spawnHelper, threadsForOneRun } from "@heddle/kernels/threads";
 import type { FromThread, Problem, SolverTask, ToThread } from "./protocol.js";
@@ -55,9 +55,12 @@ function turning(loop: SolverLoop, post: Post): () => void {
   };
 }
 
+const told = (problems: readonly Problem[]): Problem[] =>
+  problems.map(({ path, sentence }) => ({ path, sentence }));
+
 function read(document: unknown): { scene: Scene; sha256: string } | { problems: Problem[] } {
   const outcome = readScene(document, { purpose: "run" });
-  if (!outcome.ok) return { problems: outcome.problems.map(({ path, sentence }) => ({ path, sentence })) };
+  if (!outcome.ok) return { problems: told(outcome.problems) };
   return { scene: outcome.scene, sha256: sceneSha256(outcome.scene) };
 }
 
@@ -71,11 +74,14 @@ async function open(task: SolverTask, post: Post): Promise<SolverLoop | null> {
     }
     const { scene } = found;
     const log = (sentence: string): void => console.error(sentence);
-    const session = await openSession(scene, { threads: threadsForOneRun(), spawnHelper, log });
+    const { twoMesh, shielding } = task;
+    const threads = threadsForOneRun();
+    const session = await openSession(scene, { threads, spawnHelper, log, twoMesh, shielding });
     const now = (): number => performance.now();
     return new SolverLoop({ session, scene, post, read, encode, now }, task);
   } catch (error) {
-    post({ kind: "failed", sentence: sentenceFor(error), progress: null });
+    if (error instanceof SceneError) post({ kind: "refused", problems: told(error.problems) });
+    else post({ kind: "failed", sentence: sentenceFor(error), progress: null });
     return null;
   }
 }

@@ -23,6 +23,8 @@ const run = (over: Partial<RunDto>): RunDto => ({
   edits: [],
   message: null,
   stopReason: null,
+  twoMesh: false,
+  shielding: false,
   ...over,
 });
 

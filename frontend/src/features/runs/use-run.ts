@@ -40,6 +40,15 @@ export interface UseRunOptions {
   save: () => Promise<number | null>;
 }
 
+export interface StartOptions {
+  /** Waits before its first step. */
+  paused?: boolean;
+  /** Solves the scene on a finer mesh, too. */
+  twoMesh?: boolean;
+  /** Solves the scene without its patches marked as a shield, too. */
+  shielding?: boolean;
+}
+
 export interface RunHandle {
   /** The scene's latest run, null before there is one. */
   run: RunDto | null;
@@ -55,7 +64,7 @@ export interface RunHandle {
   dismissNotice: () => void;
   /** The pace to start with and to go on with; null: as fast as the server goes. */
   pace: number | null;
-  start: (options?: { paused?: boolean }) => void;
+  start: (options?: StartOptions) => void;
   /** Stops the run under way, if any, and runs the scene as it is drawn from its first step. */
   runCleanly: () => void;
   command: (command: RunCommand) => void;
@@ -141,17 +150,18 @@ export function useRun({ sceneId, sinks, view, save }: UseRunOptions): RunHandle
   );
 
   const begin = useCallback(
-    async (paused: boolean) => {
+    async ({ paused = false, twoMesh = false, shielding = false }: StartOptions) => {
       const revision = await save();
       if (revision === null) return;
-      tellRun(client, await startRun(sceneId, { revision, paused, pacePsPerSecond: chosenPace }));
+      const body = { revision, paused, pacePsPerSecond: chosenPace, twoMesh, shielding };
+      tellRun(client, await startRun(sceneId, body));
     },
     [save, sceneId, chosenPace, client],
   );
 
   const start = useCallback(
-    (options: { paused?: boolean } = {}) => {
-      void act(() => begin(options.paused ?? false));
+    (options: StartOptions = {}) => {
+      void act(() => begin(options));
     },
     [act, begin],
   );
@@ -160,7 +170,7 @@ export function useRun({ sceneId, sinks, view, save }: UseRunOptions): RunHandle
   const runCleanly = useCallback(() => {
     void act(async () => {
       if (live && runId !== null) tellRun(client, await commandRun(runId, { kind: "stop" }));
-      await begin(false);
+      await begin({});
     });
   }, [act, begin, live, runId, client]);
 

@@ -716,6 +716,7 @@ export interface components {
             revision: number;
             sceneId: string;
             sha256: string;
+            shielding: boolean;
             /** Format: date-time */
             startedAt: string | null;
             state: components["schemas"]["RunState"];
@@ -723,6 +724,7 @@ export interface components {
             /** @enum {string|null} */
             stopReason: "decay" | "time" | "cancelled" | null;
             timeNs: number;
+            twoMesh: boolean;
         };
         RunCommandBody: {
             /** @enum {string} */
@@ -824,6 +826,10 @@ export interface components {
             /** @default false */
             paused: boolean;
             revision: number;
+            /** @default false */
+            shielding: boolean;
+            /** @default false */
+            twoMesh: boolean;
         };
         UpdateProjectBody: {
             name?: string;

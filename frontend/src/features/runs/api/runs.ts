@@ -33,7 +33,13 @@ export const useResult = (run: RunDto | null) => {
 /** @throws {ApiError} */
 export async function startRun(
   sceneId: string,
-  body: { revision: number; paused: boolean; pacePsPerSecond: number | null },
+  body: {
+    revision: number;
+    paused: boolean;
+    pacePsPerSecond: number | null;
+    twoMesh: boolean;
+    shielding: boolean;
+  },
 ): Promise<RunDto> {
   const { data } = await api.POST("/api/scenes/{sceneId}/runs", { params: { path: { sceneId } }, body });
   return present(data);
