@@ -2,7 +2,12 @@
  * Lossy layers and absorbing edges. A line source between two electric edges closer than half a wavelength excites the TEM wave
  * alone a few cells away, which is a plane wave at normal incidence.
  */
-import { absorbingLayers, evanescentReflectionDb, layerReflectionDb } from "@heddle/kernels/boundaries";
+import {
+  absorbingLayers,
+  GUIDE_GRADING,
+  evanescentReflectionDb,
+  layerReflectionDb,
+} from "@heddle/kernels/boundaries";
 import { buildLattice } from "@heddle/kernels/lattice";
 import { describe, expect, it } from "vitest";
 import { measured } from "./support/measured.js";
@@ -14,6 +19,8 @@ const EPS0 = 8.8541878128e-12;
 
 const EDGES = { left: "absorbing", right: "absorbing", bottom: "electric", top: "electric" } as const;
 const FREQUENCIES = [2, 5, 8];
+/** Of layers across guides. */
+const layerCells = 28;
 
 /** A TEM guide of 4 mm height along x; the source at x = 20, probes at the places named. */
 const temGuide = (
@@ -149,8 +156,16 @@ describe("the absorbing edge", () => {
     const far = await solve(temGuide(700, { p: 50.25 }, { stop: { maxTimeNs: 3, decayDb: 300 } }), {
       frequenciesGHz: FREQUENCIES,
     });
-    const lattice = buildLattice({ polarization: "TEz", nx: 120, ny: 8, dx: 5e-4, dy: 5e-4, edges: EDGES });
-    const layers = absorbingLayers(lattice, 1e9);
+    const lattice = buildLattice({
+      polarization: "TEz",
+      nx: 120,
+      ny: 8,
+      dx: 5e-4,
+      dy: 5e-4,
+      edges: EDGES,
+      layerCells,
+    });
+    const layers = absorbingLayers(lattice, 1e9, undefined, GUIDE_GRADING);
     FREQUENCIES.forEach((frequency, index) => {
       const a = phasorOf(near, "p", index);
       const b = phasorOf(far, "p", index);
@@ -194,8 +209,16 @@ describe("the absorbing edge", () => {
     const a = phasorOf(near, "p");
     const b = phasorOf(far, "p");
     const inRun = 20 * Math.log10(Math.hypot(a.re - b.re, a.im - b.im) / Math.hypot(b.re, b.im));
-    const lattice = buildLattice({ polarization: "TMz", nx: 120, ny: w, dx: 1e-3, dy: 1e-3, edges: EDGES });
-    const layers = absorbingLayers(lattice, 0.8 * f * 1e9);
+    const lattice = buildLattice({
+      polarization: "TMz",
+      nx: 120,
+      ny: w,
+      dx: 1e-3,
+      dy: 1e-3,
+      edges: EDGES,
+      layerCells,
+    });
+    const layers = absorbingLayers(lattice, 0.8 * f * 1e9, undefined, GUIDE_GRADING);
     const computed = layerReflectionDb(lattice, layers, { side: "right", hz: f * 1e9, degrees: 45 });
     measured(`edge in a run, dB`, inRun);
     measured(`edge computed, dB`, computed);
@@ -227,25 +250,30 @@ describe("the absorbing edge", () => {
   );
 
   it("sends back an evanescent wave as computed, 1.5 times the free wave number along the edge", async () => {
-    // A guide w wide at two thirds of its cut-off; at `gap` cells from the edge the answer has come twice as far.
-    const [w, gap] = [20, 4];
-    const f = 299.792458 / (2 * w) / 1.5;
+    // A guide w wide at two thirds of its cut-off; at `gap` cells from the edge the answer has come twice as far. Painted walls, not
+    // the section's edges, so that the layers are those of open sections.
+    const [w, gap, tangential] = [20, 4, 1.5];
+    const f = 299.792458 / (2 * w) / tangential;
     const guide = (widthMm: number): Document => ({
       polarization: "TMz",
-      section: { widthMm, heightMm: w },
+      section: { widthMm, heightMm: w + 4 },
       band: { fromGHz: 0.8 * f, toGHz: 1.2 * f },
       mesh: { cellMm: 1 },
-      edges: EDGES,
+      edges: OPEN_SPACE,
+      paint: [0, w + 2].map((y) => ({
+        ...{ kind: "rectangle", id: `wall${y}`, medium: "pec" },
+        ...{ x: 0, y, width: widthMm, height: 2 },
+      })),
       sources: [
         {
           kind: "line",
           id: "wire",
           x: 20,
-          y: w / 2,
+          y: w / 2 + 2,
           waveform: { kind: "pulse", centerGHz: f, widthGHz: 0.4 * f },
         },
       ],
-      probes: [{ kind: "point", id: "p", x: 40 - gap, y: w / 2, field: "Ez" }],
+      probes: [{ kind: "point", id: "p", x: 40 - gap, y: w / 2 + 2, field: "Ez" }],
       stop: { maxTimeNs: 20, decayDb: 120 },
     });
     const at = { frequenciesGHz: [f] };
@@ -253,11 +281,18 @@ describe("the absorbing edge", () => {
     const far = await solve(guide(100), at);
     const a = phasorOf(near, "p");
     const b = phasorOf(far, "p");
-    const lattice = buildLattice({ polarization: "TMz", nx: 40, ny: w, dx: 1e-3, dy: 1e-3, edges: EDGES });
+    const lattice = buildLattice({
+      polarization: "TMz",
+      nx: 40,
+      ny: w,
+      dx: 1e-3,
+      dy: 1e-3,
+      edges: EDGES,
+    });
     const layers = absorbingLayers(lattice, 0.8 * f * 1e9);
-    const query = { side: "right", hz: f * 1e9, tangential: 1.5 } as const;
+    const query = { side: "right", hz: f * 1e9, tangential } as const;
     const computed = evanescentReflectionDb(lattice, layers, query);
-    const alpha = (Math.PI / w) * Math.sqrt(1 - 1 / 1.5 ** 2);
+    const alpha = (Math.PI / w) * Math.sqrt(1 - 1 / tangential ** 2);
     const inRun =
       20 * Math.log10(Math.hypot(a.re - b.re, a.im - b.im) / Math.hypot(b.re, b.im)) +
       20 * Math.log10(Math.exp(2 * alpha * gap));

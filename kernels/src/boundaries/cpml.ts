@@ -23,23 +23,32 @@ export interface LayerGrading {
 }
 
 /**
- * Chosen by `layerReflectionDb`: −104 dB or better up to 60° from 20 cells per wavelength to twice the wavelength of the band's lower
- * edge, −100 dB at 75°. κ > 1 made 75° worse by 25 dB; α of the whole lower edge cost 16 dB there.
+ * Chosen by `layerReflectionDb` and `evanescentReflection`: −89 dB or better up to 60° from 20 cells per wavelength to the wavelength of the
+ * band's lower edge, −83 dB at 75°, at a band from 200 cells per wavelength.
+ *
+ * Nothing a layer of absorption does is passive: under an evanescent wave of k_n = −jg·ω/c it answers with exp(−2Ag + 2jBg), B being the absorption
+ * of travelling waves in nepers and A the layer's real depth in radians, and where 2Bg lies between π and 2π it gives power back. A mode that a
+ * lossless guide holds just below a cut-off lives there, and grows. So α falls late (as √(1 − depth)), which adds to A without B,
+ * and layers across guides are deeper.
  */
 export const DEFAULT_GRADING: LayerGrading = {
-  order: 4,
-  sigmaFactor: 1,
+  order: 3,
+  sigmaFactor: 1.3,
   kappaMax: 1,
-  alphaFactor: 0.3,
-  alphaOrder: 1,
+  alphaFactor: 0.6,
+  alphaOrder: 0.5,
 };
 
 /**
- * Across guides with a cut-off. What rings there below the cut-off (a dielectric post holds such a mode) reaches the layer as an
- * evanescent wave, on which the layer with less α has gain: a post in a guide grew by 0.5 dB per 1,000 steps, and decays so.
- * Reflection of travelling waves is −82 dB at 1.25 times the band's lower edge in place of −102 dB.
+ * For layers of GUIDE_CELLS across guides, which have the room for twice the α: −108 dB or better up to 75°, and no growth that was found of
+ * posts' modes.
  */
-export const GUIDE_GRADING: LayerGrading = { ...DEFAULT_GRADING, alphaFactor: 1 };
+export const GUIDE_GRADING: LayerGrading = {
+  ...DEFAULT_GRADING,
+  order: 3.5,
+  sigmaFactor: 1.7,
+  alphaFactor: 1,
+};
 
 /** What a layer does to the points of one axis, at F's points or at the half points between them. */
 export interface AxisStretch {

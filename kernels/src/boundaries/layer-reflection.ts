@@ -57,18 +57,28 @@ export function layerReflectionDb(lattice: Lattice, layers: AbsorbingLayers, que
   const angle = isAlongX(side) ? radians : Math.PI / 2 - radians;
   const k = latticeWaveNumber(lattice, C0 / index, 2 * Math.PI * hz, angle);
   const turn = k * Math.cos(radians) * (isAlongX(side) ? lattice.dx : lattice.dy);
-  return reflectionDb(lattice, layers, query, k * Math.sin(radians), [Math.cos(turn), Math.sin(turn)]);
+  const turned: Complex = [Math.cos(turn), Math.sin(turn)];
+  return 20 * Math.log10(Math.hypot(...reflection(lattice, layers, query, k * Math.sin(radians), turned)));
 }
 
-/**
- * The same of a wave that decays toward the layer, both taken at the section's edge; NaN where the lattice has no such wave. It grows
- * inward by exp(αΔ) a cell with sinh²(αΔ/2)/Δ² = sin²(k_tΔ_t/2)/Δ_t² − sin²(ωΔt/2)/(cΔt)².
- */
-export function evanescentReflectionDb(
+/** Of a wave that decays toward the layer: |reflected/incident| of F in dB, both at the section's edge; NaN where there is no such wave. */
+export const evanescentReflectionDb = (
   lattice: Lattice,
   layers: AbsorbingLayers,
   query: EvanescentQuery,
-): number {
+): number => 20 * Math.log10(Math.hypot(...evanescentReflection(lattice, layers, query)));
+
+/**
+ * R of a wave that decays toward the layer, both taken at the section's edge; NaN where the lattice has no such wave. It grows
+ * inward by exp(αΔ) a cell with sinh²(αΔ/2)/Δ² = sin²(k_tΔ_t/2)/Δ_t² − sin²(ωΔt/2)/(cΔt)².
+ *
+ * The flux into the layer is ∝ −Im(F*·F one cell outward) = −2·sinh(αΔ)·Im R: where Im R > 0 the layer feeds the section.
+ */
+export function evanescentReflection(
+  lattice: Lattice,
+  layers: AbsorbingLayers,
+  query: EvanescentQuery,
+): Complex {
   const { side, hz, tangential, index = 1 } = query;
   const [normal, along] = isAlongX(side) ? [lattice.dx, lattice.dy] : [lattice.dy, lattice.dx];
   const speed = C0 / index;
@@ -80,20 +90,23 @@ export function evanescentReflectionDb(
   const growth = Math.exp(2 * Math.asinh(Math.sqrt(squared) * normal));
   // On its way from the edge to where the waves are split and back, the wave has changed by growth² a cell.
   const cells = SPLIT_POINTS - 1 + lattice.offset;
-  return reflectionDb(lattice, layers, query, k, [growth, 0]) + 2 * cells * 20 * Math.log10(growth);
+  const [re, im] = reflection(lattice, layers, query, k, [growth, 0]);
+  return [re * growth ** (2 * cells), im * growth ** (2 * cells)];
 }
 
 /**
+ * R where the waves are split.
+ *
  * @param kTangential wave number along the layer
  * @param inward by what the incident wave turns or grows from one of F's points to the next one inward
  */
-function reflectionDb(
+function reflection(
   lattice: Lattice,
   layers: AbsorbingLayers,
   { side, hz, index = 1 }: EdgeQuery,
   kTangential: number,
   inward: Complex,
-): number {
+): Complex {
   const alongX = isAlongX(side);
   const count = alongX ? lattice.columns : lattice.rows;
   const normal = alongX ? lattice.dx : lattice.dy;
@@ -134,5 +147,5 @@ function reflectionDb(
   const outward = divide([1, 0], inward);
   const incident = subtract(inner, multiply(outward, outer));
   const reflected = subtract(inner, multiply(inward, outer));
-  return 20 * Math.log10(Math.hypot(...reflected) / Math.hypot(...incident));
+  return divide(reflected, incident);
 }

@@ -10,7 +10,9 @@ export const COURANT = 0.99;
 /** The same where metal cuts cells of TEz off the mesh lines: cut cells borrow area from whole ones, which need room for it. */
 export const CUT_COURANT = 0.82;
 /** Cells of an absorbing layer, outside the section, at each absorbing edge. */
-export const ABSORBING_CELLS = 12;
+const ABSORBING_CELLS = 12;
+/** The same across guides: see GUIDE_GRADING in `boundaries`. */
+const GUIDE_CELLS = 28;
 /** A medium lossier than this does not set the mesh. */
 const COUNTED_LOSS_TANGENT = 1;
 /** Where a dispersive medium's shortest wavelength is looked for: this many points over the band. */
@@ -113,6 +115,19 @@ export const cellsPerSkinDepth = (
       .map((medium) => [medium.id, skinDepthMm(medium, scene.band.toGHz) / Math.max(grid.dxMm, grid.dyMm)]),
   );
 
+/** Whether an absorbing edge closes a guide: between two walls, or behind a port whose mode has a cut-off. */
+export const opensGuide = ({ edges, ports }: Pick<ResolvedScene, "edges" | "ports">): boolean => {
+  const absorbs = (edge: string): boolean => edge === "absorbing";
+  const { left, right, bottom, top } = edges;
+  const alongX = (absorbs(left) || absorbs(right)) && !absorbs(bottom) && !absorbs(top);
+  const alongY = (absorbs(bottom) || absorbs(top)) && !absorbs(left) && !absorbs(right);
+  return alongX || alongY || ports.some(({ mode }) => mode > 0);
+};
+
+/** Cells of each absorbing layer. */
+export const layerCells = (scene: Pick<ResolvedScene, "edges" | "ports">): number =>
+  opensGuide(scene) ? GUIDE_CELLS : ABSORBING_CELLS;
+
 export interface CostEstimate {
   nx: number;
   ny: number;
@@ -149,7 +164,7 @@ export const estimateCost = (
   const runs = Math.max(1, scene.ports.filter(({ drive }) => drive).length);
   const traces = scene.probes.length + 2 * scene.ports.length;
   const layers = (first: string, second: string): number =>
-    (Number(first === "absorbing") + Number(second === "absorbing")) * ABSORBING_CELLS;
+    (Number(first === "absorbing") + Number(second === "absorbing")) * layerCells(scene);
   const { left, right, bottom, top } = scene.edges;
   const cells = (grid.nx + layers(left, right)) * (grid.ny + layers(bottom, top));
   return {

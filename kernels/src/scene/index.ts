@@ -14,6 +14,8 @@ export {
   estimateCost,
   type Grid,
   gridOf,
+  layerCells,
+  opensGuide,
   shortestWavelengthMm,
 } from "./grid.js";
 export { hasConformalMetal } from "./metal-cuts.js";

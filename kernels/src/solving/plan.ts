@@ -23,7 +23,9 @@ import {
   hasConformalMetal,
   hasPoles,
   isPerfect,
+  layerCells,
   metalCorners,
+  opensGuide,
   propagation,
 } from "../scene/index.js";
 import type { DrivePoint } from "../stepping/index.js";
@@ -68,6 +70,7 @@ export function latticeOf(scene: ResolvedScene): { grid: Grid; lattice: Lattice 
     dx: grid.dxMm / 1000,
     dy: grid.dyMm / 1000,
     edges: scene.edges,
+    layerCells: layerCells(scene),
     courant: grid.courant,
   });
   return { grid, lattice };
@@ -136,8 +139,8 @@ function layerIndex(scene: ResolvedScene): number {
 export function layersOf(scene: ResolvedScene, lattice: Lattice): AbsorbingLayers {
   const index = layerIndex(scene);
   const sides: Record<Side, number> = { left: index, right: index, bottom: index, top: index };
-  const cutOff = scene.ports.some(({ mode }) => mode > 0);
-  return absorbingLayers(lattice, scene.band.fromGHz * 1e9, sides, cutOff ? GUIDE_GRADING : DEFAULT_GRADING);
+  const grading = opensGuide(scene) ? GUIDE_GRADING : DEFAULT_GRADING;
+  return absorbingLayers(lattice, scene.band.fromGHz * 1e9, sides, grading);
 }
 
 interface Driving {

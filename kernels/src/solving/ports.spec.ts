@@ -300,9 +300,11 @@ describe("two driven ports", () => {
   const frequenciesGHz = [8.8, 9.5, 10.5, 11.5];
 
   it("are reciprocal and lossless, alike on both engines, and judged", async () => {
+    // The post rings long near the narrow guide's cut-off.
+    const document = step({ stop: { maxTimeNs: 120, decayDb: 100 } });
     const [wasm, reference] = await Promise.all([
-      solve(step(), { engine: "wasm", frequenciesGHz }),
-      solve(step(), { engine: "reference", frequenciesGHz }),
+      solve(document, { engine: "wasm", frequenciesGHz }),
+      solve(document, { engine: "reference", frequenciesGHz }),
     ]);
     for (const result of [wasm, reference]) {
       const [through, back] = [sOf(result, "b", "a"), sOf(result, "a", "b")];
