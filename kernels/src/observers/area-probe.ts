@@ -2,19 +2,22 @@
  * Absorbed power or stored energy in a rectangle: at the instants of frames, and as averages over frequency.
  *
  * A loss acts on the mean of a field's two neighbouring samples (see `media`), which is cos(ωΔt/2) of it: so the average power is
- * ½·loss·cos²(ωΔt/2)·|V|² and the average energy ½·(½M)·|V|², exactly in the lattice. What media with poles absorb beyond their σ
- * and σ* is not in it.
+ * ½·loss·cos²(ωΔt/2)·|V|² and the average energy ½·(½M)·|V|², exactly in the lattice. What poles and films absorb is in the averages (see
+ * `Dissipation`); the instants count σ and σ* (and a film's share of its points) alone.
  */
 import type { Lattice } from "../lattice/index.js";
 import type { Engine, EngineFields } from "../stepping/index.js";
 import type { AreaBox, AreaPoints } from "./area-points.js";
 import { areaPoints, isElectric, pointsWhere } from "./area-points.js";
+import type { LossyMedia, PointPowers } from "./dissipation.js";
+import { Dissipation } from "./dissipation.js";
 import { concat, FrameTransform } from "./frame-transform.js";
 
 export type AreaQuantity = "absorbed" | "energy";
 
 export interface AreaSpec {
   box: AreaBox;
+  media: LossyMedia;
   quantity: AreaQuantity;
   frequenciesHz: readonly number[];
   /** Steps between two frames. */
@@ -31,15 +34,27 @@ interface AreaFigures {
 }
 
 /** Numbers that a probe of such a rectangle keeps for each frequency. */
-export const sumsOf = (engine: Engine, box: AreaBox, quantity: AreaQuantity): number =>
-  2 * wantedPoints(engine, box, quantity).reduce((sum, { indices }) => sum + indices.length, 0);
+export const sumsOf = (
+  engine: Engine,
+  { box, quantity, media }: Pick<AreaSpec, "box" | "quantity" | "media">,
+): number =>
+  2 *
+  wantedPoints(engine, box, quantity, new Dissipation(engine, media)).reduce(
+    (sum, { indices }) => sum + indices.length,
+    0,
+  );
 
 /** E everywhere for the fields; beyond it what absorbs, or everything that stores. */
-const wantedPoints = (engine: Engine, box: AreaBox, quantity: AreaQuantity): AreaPoints[] =>
+const wantedPoints = (
+  engine: Engine,
+  box: AreaBox,
+  quantity: AreaQuantity,
+  beyond: Dissipation,
+): AreaPoints[] =>
   areaPoints(engine, box).map((points) =>
     quantity === "energy" || isElectric(engine.lattice, points.field)
       ? points
-      : pointsWhere(points, (n) => points.loss[n] > 0),
+      : pointsWhere(points, (n) => points.loss[n] > 0 || beyond.acts(points.field, points.indices[n])),
   );
 
 /** Middles of TEz's cells with the numbers of the up to four edges about each whose E is known; −1 where it is not. */
@@ -68,6 +83,7 @@ export class AreaProbe {
   private readonly lattice: Lattice;
   private readonly transform: FrameTransform;
   private readonly points: readonly AreaPoints[];
+  private readonly beyond: PointPowers;
   /** All points at which something can be absorbed or stored now: live edits change them. */
   private instant: readonly AreaPoints[];
   private readonly cells: Cells;
@@ -79,7 +95,9 @@ export class AreaProbe {
     private readonly spec: AreaSpec,
   ) {
     this.lattice = engine.lattice;
-    this.points = wantedPoints(engine, spec.box, spec.quantity);
+    const beyond = new Dissipation(engine, spec.media);
+    this.points = wantedPoints(engine, spec.box, spec.quantity, beyond);
+    this.beyond = beyond.of(this.points);
     this.instant = areaPoints(engine, spec.box);
     this.cells = cellsOf(engine, spec.box, this.points);
     this.transform = new FrameTransform(this.points, spec.frequenciesHz, engine.lattice.dt, spec.every);
@@ -132,11 +150,21 @@ export class AreaProbe {
           sum += weights[n] * (this.transform.re[at] ** 2 + this.transform.im[at] ** 2);
         figures[isElectric(this.lattice, field) ? "electric" : "magnetic"][index] += (onMean * sum) / 2;
       }
+      if (quantity === "absorbed") this.addBeyond(figures, index);
       const [mean, worst] = this.fieldAt(index);
       figures.meanField[index] = mean;
       figures.worstField[index] = worst;
     });
     return figures;
+  }
+
+  private addBeyond({ electric, magnetic }: AreaFigures, index: number): void {
+    const { re, im, points } = this.transform;
+    const omegaDt = 2 * Math.PI * this.spec.frequenciesHz[index] * this.lattice.dt;
+    const { f, g } = this.beyond.at(re, im, index * points, omegaDt);
+    const onF = isElectric(this.lattice, "f");
+    electric[index] += onF ? f : g;
+    magnetic[index] += onF ? g : f;
   }
 
   /** Mean by area and largest magnitude of E at one frequency. */

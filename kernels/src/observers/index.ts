@@ -1,5 +1,6 @@
 /** What reads the fields. */
 export { AreaProbe, sumsOf } from "./area-probe.js";
+export type { LossyMedia } from "./dissipation.js";
 export { storedEnergy } from "./energy.js";
 export { LinePower } from "./line-power.js";
 export { balanceSums, PowerBalance } from "./power-balance.js";

@@ -7,16 +7,20 @@
  *   ½·loss·C²·|V|² = ½·C·Re V*·(differences of the other fields) − ½·C·Re V*·(weight·S of its drives),
  *
  * and what a difference takes from F at one end of a link it gives to G on it and F at the other end. So of all differences in the
- * section only the links to the absorbing layers are left: ½·C·Re F*·G there is what leaves.
+ * section only the links to the absorbing layers are left: ½·C·Re F*·G there is what leaves. What poles and films absorb is told by
+ * `Dissipation`.
  */
 import type { Lattice } from "../lattice/index.js";
 import { firstColumn, firstRow, sectionColumns, sectionRows } from "../lattice/index.js";
 import { lossOf } from "../media/index.js";
 import type { DrivePoint, Engine, EngineField } from "../stepping/index.js";
 import { rowCoefficients } from "../stepping/index.js";
+import type { LossyMedia, PointPowers } from "./dissipation.js";
+import { Dissipation } from "./dissipation.js";
 import { concat, FrameTransform } from "./frame-transform.js";
 
 interface BalanceSpec {
+  media: LossyMedia;
   drives: readonly DrivePoint[];
   /** Signals of a step. */
   signals: number;
@@ -53,7 +57,7 @@ interface LossyPoints {
 }
 
 /** Every point of the section that absorbs, by field. */
-function lossyPoints(engine: Engine): Record<EngineField, LossyPoints> {
+function lossyPoints(engine: Engine, beyond: Dissipation): Record<EngineField, LossyPoints> {
   const { lattice } = engine;
   const found = {
     f: { indices: [], loss: [] },
@@ -70,8 +74,9 @@ function lossyPoints(engine: Engine): Record<EngineField, LossyPoints> {
       const b = { f: row.bF, gx: row.bGx, gy: row.bGy }[field];
       for (let i = first; i <= last; i += 1) {
         const loss = lossOf(a[i], b[i]);
-        if (loss === 0) continue;
-        found[field].indices.push(j * lattice.stride + i);
+        const k = j * lattice.stride + i;
+        if (loss === 0 && !beyond.acts(field, k)) continue;
+        found[field].indices.push(k);
         found[field].loss.push(loss);
       }
     }
@@ -105,8 +110,13 @@ function linksOf(lattice: Lattice): Link[] {
 }
 
 /** Numbers that the balance of this section keeps for each frequency. */
-export function balanceSums(engine: Engine, drives: readonly DrivePoint[], signals: number): number {
-  const lossy = lossyPoints(engine);
+export function balanceSums(
+  engine: Engine,
+  media: LossyMedia,
+  drives: readonly DrivePoint[],
+  signals: number,
+): number {
+  const lossy = lossyPoints(engine, new Dissipation(engine, media));
   const points = FIELDS.reduce((sum, field) => sum + lossy[field].indices.length, 0);
   return 2 * (points + 2 * linksOf(engine.lattice).length + drives.length + signals);
 }
@@ -114,6 +124,7 @@ export function balanceSums(engine: Engine, drives: readonly DrivePoint[], signa
 export class PowerBalance {
   private readonly lattice: Lattice;
   private readonly lossy: Record<EngineField, LossyPoints>;
+  private readonly beyond: PointPowers;
   private readonly links: readonly Link[];
   /** Fields of lossy points; F and G of links; fields of drives. */
   private readonly absorbing: FrameTransform;
@@ -137,7 +148,11 @@ export class PowerBalance {
         dt,
         every,
       );
-    this.lossy = lossyPoints(engine);
+    const beyond = new Dissipation(engine, spec.media);
+    this.lossy = lossyPoints(engine, beyond);
+    this.beyond = beyond.of(
+      FIELDS.map((field) => ({ field, indices: Int32Array.from(this.lossy[field].indices) })),
+    );
     this.absorbing = transform(FIELDS.map((field) => [field, this.lossy[field].indices]));
     const links = linksOf(this.lattice);
     this.links = [
@@ -193,7 +208,7 @@ export class PowerBalance {
       );
     return {
       input: of((index, c) => this.inputAt(index, c)),
-      absorbed: of((index, c) => this.absorbedAt(index, c)),
+      absorbed: of((index, c) => this.absorbedAt(index, c) + this.beyondAt(index)),
       leaving: of((index, c) => this.leavingAt(index, c)),
     };
   }
@@ -209,6 +224,13 @@ export class PowerBalance {
       }
     }
     return (c * c * sum) / 2;
+  }
+
+  private beyondAt(index: number): number {
+    const { re, im, points } = this.absorbing;
+    const omegaDt = 2 * Math.PI * this.spec.frequenciesHz[index] * this.lattice.dt;
+    const { f, g } = this.beyond.at(re, im, index * points, omegaDt);
+    return f + g;
   }
 
   private leavingAt(index: number, c: number): number {

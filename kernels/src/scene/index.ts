@@ -12,6 +12,7 @@ export {
   countedWavelengthsMm,
   COURANT,
   estimateCost,
+  fillMediaInUse,
   type Grid,
   gridOf,
   layerCells,

@@ -90,6 +90,87 @@ describe.each(["TMz", "TEz"] as const)("the power balance of %s", (polarization)
   });
 });
 
+const resonances: SceneInput["media"] = [
+  {
+    id: "water",
+    name: "Water",
+    relativePermittivity: 4,
+    conductivity: 0.01,
+    electricPoles: [{ kind: "debye", delta: 6, tauNs: 0.03 }],
+  },
+  {
+    id: "ferrite",
+    name: "Ferrite",
+    relativePermeability: 1.5,
+    relativePermittivity: 2,
+    magneticPoles: [{ kind: "lorentz", delta: 0.8, resonanceGHz: 4.2, dampingGHz: 1.5 }],
+    electricPoles: [{ kind: "lorentz", delta: 0.5, resonanceGHz: 3.1, dampingGHz: 2 }],
+  },
+];
+const shell: NonNullable<SceneInput["paint"]> = [
+  {
+    kind: "film",
+    id: "shell",
+    points: [
+      [8, 31],
+      [25, 38.4],
+      [52.3, 21],
+      [40, 7.7],
+    ],
+    ohmsPerSquare: 150,
+  },
+];
+
+describe.each(["TMz", "TEz"] as const)("the power balance with poles and films of %s", (polarization) => {
+  const document = (changes: Partial<SceneInput> = {}): Scene =>
+    scene(polarization, {
+      media: resonances,
+      paint: [
+        { kind: "ellipse", id: "rod", medium: "water", x: 36, y: 24, rx: 12, ry: 9 },
+        { kind: "rectangle", id: "tile", medium: "ferrite", x: 12.3, y: 7.2, width: 9, height: 11 },
+      ],
+      ...changes,
+    });
+  it.each<[string, Partial<SceneInput>]>([
+    ["poles, electric and magnetic", {}],
+    ["poles in a closed box", { edges: edges("electric", "electric") }],
+    ["a film at every slant", { media: [], paint: shell }],
+    [
+      "films and poles",
+      {
+        paint: [{ kind: "ellipse", id: "rod", medium: "water", x: 36, y: 24, rx: 12, ry: 9 }, ...shell],
+        edges: edges("electric", "magnetic"),
+      },
+    ],
+  ])("holds within 1e-3: %s", async (_, changes) => {
+    const result = await solve(document(changes));
+    expect(result.balance?.GHz).toEqual(FREQUENCIES);
+    expect(worst(result.balance?.mismatch)).toBeLessThan(1e-3);
+    // Without them the books would be open: they take much.
+    const shares = numbers(result.balance?.absorbed).map(
+      (value, n) => value / numbers(result.balance?.input)[n],
+    );
+    expect(Math.min(...shares)).toBeGreaterThan(0.02);
+    // The area that holds everything absorbs what the balance says.
+    const { value } = spectrumOf(result, "all");
+    numbers(value).forEach((absorbed, n) =>
+      expect(absorbed / numbers(result.balance?.absorbed)[n]).toBeCloseTo(1, 6),
+    );
+    expect(result.quality.warnings.join(" ")).not.toContain("balance");
+  });
+
+  it("tells electric from magnetic losses, in single precision too", async () => {
+    const result = await solve(
+      document({ probes: [area("tile", "absorbed", 10, 5, 13, 15), area("all", "absorbed")] }),
+      "wasm",
+    );
+    const { electric, magnetic } = spectrumOf(result, "tile");
+    expect(Math.min(...numbers(electric))).toBeGreaterThan(0);
+    expect(Math.min(...numbers(magnetic))).toBeGreaterThan(0);
+    expect(worst(result.balance?.mismatch)).toBeLessThan(1e-3);
+  });
+});
+
 describe("an absorbed power", () => {
   it("is what flows in through a closed line around it", async () => {
     const line = (id: string, from: [number, number], to: [number, number]) =>

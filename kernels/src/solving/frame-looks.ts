@@ -1,9 +1,9 @@
 /** What looks at whole frames between two sweeps: area probes and the power balance. */
 import { fourierSum } from "../analysis/index.js";
 import type { Lattice } from "../lattice/index.js";
+import type { LossyMedia } from "../observers/index.js";
 import { AreaProbe, balanceSums, PowerBalance, sumsOf } from "../observers/index.js";
 import type { ResolvedScene } from "../scene/index.js";
-import { hasPoles, isPerfect } from "../scene/index.js";
 import type { Engine } from "../stepping/index.js";
 import type { DrivePlan } from "./plan.js";
 
@@ -53,11 +53,6 @@ const evenly = (length: number, count: number): number[] =>
         ),
       ];
 
-/** Films and media with poles absorb beyond what σ and σ* of the field points do. */
-const absorbsElse = (scene: ResolvedScene): boolean =>
-  scene.paint.some(({ kind }) => kind === "film") ||
-  [...scene.mediaById.values()].some((medium) => !isPerfect(medium) && hasPoles(medium));
-
 export interface AreaLook {
   probe: AreaProbe;
   frequenciesGHz: readonly number[];
@@ -66,6 +61,7 @@ export interface AreaLook {
 export interface FrameInput {
   scene: ResolvedScene;
   engine: Engine;
+  media: LossyMedia;
   drives: DrivePlan;
   frequenciesGHz: readonly number[];
   every: number;
@@ -80,26 +76,21 @@ export class FrameLooks {
   readonly balanceGHz: readonly number[];
 
   constructor(private readonly input: FrameInput) {
-    const { scene, frequenciesGHz, every } = input;
+    const { frequenciesGHz, every } = input;
     this.every = every;
     const picks = evenly(frequenciesGHz.length, BALANCE_FREQUENCIES);
     this.balanceGHz = picks.map((index) => frequenciesGHz[index]);
     this.areas = this.areaLooks(picks);
     this.balance = this.makeBalance();
-    const asked = scene.probes.some((probe) => probe.kind === "area" && probe.quantity === "absorbed");
-    if (asked && absorbsElse(scene))
-      this.warnings.push(
-        "Absorbed powers count σ and σ* alone: what films and dispersive media absorb beyond that is not in them, and there is no balance.",
-      );
   }
 
   private areaLooks(picks: readonly number[]): Map<number, AreaLook> {
-    const { scene, engine, frequenciesGHz, every } = this.input;
+    const { scene, engine, media, frequenciesGHz, every } = this.input;
     const looks = new Map<number, AreaLook>();
     const count = scene.probes.filter(({ kind }) => kind === "area").length;
     scene.probes.forEach((probe, index) => {
       if (probe.kind !== "area") return;
-      const sums = sumsOf(engine, probe, probe.quantity);
+      const sums = sumsOf(engine, { box: probe, quantity: probe.quantity, media });
       const room = Math.max(1, Math.floor(MOST_SUMS / count / Math.max(1, sums)));
       const kept = evenly(frequenciesGHz.length, room);
       const indices =
@@ -110,18 +101,18 @@ export class FrameLooks {
           `The area of "${probe.id}" is told at ${own.length} of the ${frequenciesGHz.length} frequencies: it has too many field points for more.`,
         );
       const frequenciesHz = own.map((frequency) => frequency * 1e9);
-      const spec = { box: probe, quantity: probe.quantity, frequenciesHz, every };
+      const spec = { box: probe, media, quantity: probe.quantity, frequenciesHz, every };
       looks.set(index, { probe: new AreaProbe(engine, spec), frequenciesGHz: own });
     });
     return looks;
   }
 
   private makeBalance(): PowerBalance | null {
-    const { scene, engine, drives, every } = this.input;
+    const { engine, media, drives, every } = this.input;
     const tone = drives.sources.some(({ waveform }) => waveform.toneHz !== null);
-    if (absorbsElse(scene) || tone) return null;
+    if (tone) return null;
     const asked = this.areas.size > 0;
-    const sums = balanceSums(engine, drives.points, drives.signals) * this.balanceGHz.length;
+    const sums = balanceSums(engine, media, drives.points, drives.signals) * this.balanceGHz.length;
     const small = engine.lattice.columns * engine.lattice.rows <= SMALL_FRAME;
     if (sums > (asked ? MOST_SUMS : CHEAP_BALANCE) || !(asked || small)) {
       if (asked)
@@ -130,6 +121,7 @@ export class FrameLooks {
     }
     const frequenciesHz = this.balanceGHz.map((frequency) => frequency * 1e9);
     return new PowerBalance(engine, {
+      media,
       drives: drives.points,
       signals: drives.signals,
       frequenciesHz,

@@ -1,6 +1,6 @@
 /** From a scene to the legs that solve it: one, or one for each of its driven ports. */
 import type { Scene } from "../scene/index.js";
-import { readScene, resolveScene, SceneError } from "../scene/index.js";
+import { fillMediaInUse, hasPoles, readScene, resolveScene, SceneError } from "../scene/index.js";
 import { EngineSession } from "./engine-session.js";
 import type { chooseEngine } from "./engines.js";
 import { frameLooks, framesEvery, highestOf } from "./frame-looks.js";
@@ -42,6 +42,10 @@ export function legsOf(
   const { fromGHz, toGHz } = resolved.band;
   const frequenciesGHz = wantedGHz ?? evenly(fromGHz, toGHz, DEFAULT_FREQUENCIES);
   const coefficients = coefficientsOf(resolved, lattice);
+  const media = {
+    terms: fillMediaInUse(resolved).some(hasPoles) ? coefficients.row : null,
+    branches: coefficients.branches,
+  };
   const modes = portModesOf(resolved, lattice, coefficients.row);
   const open = (ports: PortPlan | null): EngineSession => {
     const drives = ports ? portDrives(resolved, lattice, ports) : drivesOf(resolved, lattice);
@@ -79,7 +83,7 @@ export function legsOf(
       ports,
       probes,
       frequenciesGHz,
-      frames: frameLooks({ scene: resolved, engine, drives, frequenciesGHz, every }),
+      frames: frameLooks({ scene: resolved, engine, media, drives, frequenciesGHz, every }),
     });
   };
   const driven = resolved.ports.flatMap(({ drive }, index) => (drive ? [index] : []));
