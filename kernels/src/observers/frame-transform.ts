@@ -4,7 +4,7 @@
  */
 import type { EngineField, EngineFields } from "../stepping/index.js";
 
-interface FramePoints {
+export interface FramePoints {
   field: EngineField;
   /** Indices into the engine's array of that field. */
   indices: Int32Array;

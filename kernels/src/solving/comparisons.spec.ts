@@ -138,6 +138,8 @@ describe("shielding", () => {
     const kept = { name: "Shielding", of: { shielding: "p" } } as const;
     const scene = sceneOf({
       paint: [lid],
+      // Between the cut-offs at 3.75 and 7.5 GHz, where an open guide would ring without end.
+      band: { fromGHz: 5, toGHz: 7 },
       edges: { left: "absorbing", right: "absorbing", bottom: "electric", top: "electric" },
       limits: [
         {
@@ -174,7 +176,7 @@ describe("shielding", () => {
     };
     expect(dB[200]).toBeCloseTo(level(without, 200) - level(within, 200), 9);
     expect(dB[200]).toBeGreaterThan(3);
-    const least = Math.min(...dB.slice(100, 301).map((value) => value ?? Number.NaN));
+    const least = Math.min(...dB.map((value) => value ?? Number.NaN));
     expect(result.limits).toEqual([
       { id: "much", holds: false, margin: least - 200, atGHz: GHz[dB.indexOf(least)], uncertainty: null },
       { id: "some", holds: true, margin: (dB[200] ?? 0) - 3, atGHz: 6, uncertainty: null },
