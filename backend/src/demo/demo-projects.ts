@@ -14,8 +14,9 @@ export const DEMO_PROJECTS: readonly DemoProject[] = [
   {
     name: "Waveguide run",
     notes:
-      "Sections of the guides between the mast's head and the pod, as closed cavities for their cut-offs.",
-    takes: (name) => /guide|ridge|round|circular|coax|iris|filter|mitre|bend|section|cavity/.test(name),
+      "Parts of the guides between the mast's head and the pod: what they reflect and let through, and cross-sections for their cut-offs.",
+    takes: (name) =>
+      /guide|ridge|round|circular|coax|iris|filter|mitre|bend|tee|load|via|channel|section|cavity/.test(name),
   },
   {
     name: "Bench checks",

@@ -8,7 +8,19 @@ import { drawThumbnail } from "./thumbnail.js";
 const WIDTH = 480;
 /** The moment of each picture in ns: waves well on their way, before a long ring-down blurs what happened. */
 const MOMENT_NS: Readonly<Record<string, number>> = {
-  "door-choke": 3,
+  "channel-isolation": 0.5,
+  "door-choke": 1.1,
+  "e-plane-mitre": 0.6,
+  filter: 4.5,
+  "filter-off": 4.5,
+  "flange-overlap-2": 0.62,
+  "flange-overlap-10": 0.62,
+  "h-plane-bend": 1.6,
+  "h-plane-tee": 1.9,
+  iris: 1.1,
+  "load-middle": 1.4,
+  "load-wall": 1.4,
+  "load-walls": 1.4,
   "matched-layer": 1.1,
   "pod-lining-foam": 9,
   "pod-lining-sheet": 9,
@@ -18,6 +30,7 @@ const MOMENT_NS: Readonly<Record<string, number>> = {
   "slotted-box-tone": 12,
   "vent-along": 1.05,
   "vent-across": 1.2,
+  "via-fence": 1.7,
 };
 const DEFAULT_NS = 2.5;
 

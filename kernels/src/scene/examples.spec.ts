@@ -14,6 +14,12 @@ const MOST_CELL_STEPS = 60 * 40e6;
 const PNG_SIGNATURE = [0x89, 0x50, 0x4e, 0x47, 0x0d, 0x0a, 0x1a, 0x0a];
 
 describe("the examples", () => {
+  it("all stand in their list, which names no others", () => {
+    const list = readFileSync(join(folder, "README.md"), "utf8");
+    const linked = [...list.matchAll(/\]\(([a-z0-9-]+)\/README\.md\)/g)].map(([, name]) => name);
+    expect(linked.sort()).toEqual([...names].sort());
+  });
+
   it("are ten or more, each under a name of its own", () => {
     expect(names.length).toBeGreaterThanOrEqual(10);
     const titles = names.map((name) => {
@@ -29,7 +35,7 @@ describe("the examples", () => {
       throw new Error(read.problems.map(({ path, sentence }) => `${path}: ${sentence}`).join("\n"));
     const cost = estimateCost(resolveScene(read.scene));
     expect(cost.cells * cost.steps).toBeLessThan(MOST_CELL_STEPS);
-    expect(read.scene.probes.length).toBeGreaterThan(0);
+    expect(read.scene.probes.length + read.scene.ports.length).toBeGreaterThan(0);
 
     const blocks = readFileSync(join(folder, name, "README.md"), "utf8")
       .trim()

@@ -5,6 +5,7 @@ import { meshPromise, readScene, resolveScene, resultSchema, SceneError } from "
 import type { SessionOptions } from "./index.js";
 import { comparedScenes, openSession } from "./index.js";
 import { withShielding } from "./shielding.js";
+import { refinedScene, withFinerMesh } from "./two-mesh.js";
 
 const sceneOf = (changes: Partial<SceneInput>): Scene => {
   const read = readScene({
@@ -52,6 +53,11 @@ describe("two meshes", () => {
     expect(raw / exact).toBeGreaterThan(1e-4);
     expect(Math.abs((best?.GHz ?? 0) - exact)).toBeLessThan(raw / 20);
     expect(best?.ghzUncertainty).toBeGreaterThan(Math.abs((best?.GHz ?? 0) - exact));
+    // A resonance stays the same one where another probe shows it better on the finer mesh.
+    const fine = await solve(refinedScene(scene));
+    const elsewhere = (fine.resonances ?? []).map((one) => ({ ...one, probe: "other" }));
+    const other = withFinerMesh(scene, coarse, { ...fine, resonances: elsewhere });
+    expect(other.extrapolation?.resonances).toEqual(found.map((one) => ({ ...one, probe: "other" })));
   });
 
   it("take the order from the geometry", () => {

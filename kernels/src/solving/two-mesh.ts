@@ -79,13 +79,10 @@ function sOf(coarse: SolveResult, fine: SolveResult, rule: Rule): Extrapolation[
   }));
 }
 
-/** Pairs of the same resonance: nearest to each other among those of one probe. */
+/** Pairs of the same resonance: nearest to each other, whichever probe shows it best on either mesh. */
 function pairsOf(coarse: readonly Resonance[], fine: readonly Resonance[]): [Resonance, Resonance][] {
   const nearest = (list: readonly Resonance[], to: Resonance): Resonance | undefined =>
-    list
-      .filter(({ probe }) => probe === to.probe)
-      .sort((p, q) => Math.abs(p.GHz - to.GHz) - Math.abs(q.GHz - to.GHz))
-      .at(0);
+    [...list].sort((p, q) => Math.abs(p.GHz - to.GHz) - Math.abs(q.GHz - to.GHz)).at(0);
   return fine.flatMap((one): [Resonance, Resonance][] => {
     const other = nearest(coarse, one);
     return other && nearest(fine, other) === one ? [[other, one]] : [];
