@@ -1,5 +1,5 @@
 /** Band, mesh, number of steps: what is refused, and what draws a warning. */
-import { cellsPerSkinDepth, cellsPerWavelength, gridOf } from "./grid.js";
+import { cellsPerSkinDepth, cellsPerWavelength, estimateCost, gridOf } from "./grid.js";
 import { CELLS_PER_SKIN_DEPTH, CELLS_PER_WAVELENGTH, MAXIMA } from "./limits.js";
 import type { Problem, ResolvedScene } from "./schema.js";
 
@@ -60,7 +60,22 @@ const sizes = (scene: ResolvedScene): Findings => {
       path: "stop.maxTimeNs",
       sentence: `${String(scene.stop.maxTimeNs)} ns are ${String(grid.maxSteps)} steps of ${round(grid.stepPs)} ps; the maximum is ${String(MAXIMA.steps)}: stop earlier or ${remedy(scene, false)}.`,
     });
+  if (found.problems.length === 0) found.problems.push(...memory(scene));
   return found;
+};
+
+/** What a run keeps: fields, coefficients and traces, in float64. */
+const memory = (scene: ResolvedScene): Problem[] => {
+  const { memoryBytes, traceBytes, cells, steps } = estimateCost(scene);
+  if (memoryBytes <= MAXIMA.memoryBytes) return [];
+  const gib = (bytes: number): string => round(bytes / 1024 ** 3);
+  const byTraces = traceBytes > memoryBytes / 2;
+  return [
+    {
+      path: byTraces ? "stop.maxTimeNs" : meshPath(scene),
+      sentence: `The run could need ${gib(memoryBytes)} GiB of memory, ${gib(traceBytes)} of them for the traces, with ${String(cells)} cells and ${String(steps)} steps; the maximum is ${gib(MAXIMA.memoryBytes)} GiB: ${byTraces ? "stop earlier, take fewer probes" : "take fewer poles"} or ${remedy(scene, false)}.`,
+    },
+  ];
 };
 
 /** A source that reaches above the band meets a mesh that was not made for it. */

@@ -138,6 +138,8 @@ export interface CostEstimate {
   stepPs: number;
   /** Memory of fields and coefficients in float64, an upper estimate. */
   memoryBytes: number;
+  /** The traces' share of it, where the run goes on to its last step. */
+  traceBytes: number;
   cellsPerWavelength: Record<string, number>;
 }
 
@@ -163,6 +165,7 @@ export const estimateCost = (
   const grid = gridOf(scene);
   const runs = Math.max(1, scene.ports.filter(({ drive }) => drive).length);
   const traces = scene.probes.length + 2 * scene.ports.length;
+  const traceBytes = runs * traces * grid.maxSteps * 8;
   const layers = (first: string, second: string): number =>
     (Number(first === "absorbing") + Number(second === "absorbing")) * layerCells(scene);
   const { left, right, bottom, top } = scene.edges;
@@ -173,7 +176,8 @@ export const estimateCost = (
     cells,
     steps: runs * grid.maxSteps,
     stepPs: grid.stepPs,
-    memoryBytes: cells * (BYTES_PER_CELL + poleBytes(scene)) + runs * traces * grid.maxSteps * 8,
+    memoryBytes: cells * (BYTES_PER_CELL + poleBytes(scene)) + traceBytes,
+    traceBytes,
     cellsPerWavelength: cellsPerWavelength(scene, grid),
   };
 };

@@ -3,6 +3,8 @@ export const MAXIMA = {
   /** Cells of the section along one axis. */
   cellsPerAxis: 4096,
   steps: 2e7,
+  /** Bytes that a run may take by the estimate of its cost: what 32-bit addresses reach. */
+  memoryBytes: 4 * 1024 ** 3,
   patches: 5_000,
   /** Points of all polygons, holes, strokes, walls and films together. */
   points: 200_000,

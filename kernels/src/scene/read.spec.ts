@@ -427,6 +427,33 @@ describe("what only the whole document tells", () => {
   });
 });
 
+describe("a run that would not fit into memory", () => {
+  const probes = Array.from({ length: 200 }, (_, n) => ({
+    ...{ kind: "point", id: `p${String(n)}`, field: "Ez", x: 20, y: 30 },
+  }));
+
+  it("is refused with the number, by its traces and by its poles", () => {
+    // 0.167 ps a step: 12 million steps of 200 traces are 17.9 GiB.
+    const [traces, ...others] = refusals({ probes, stop: { maxTimeNs: 20_000 } });
+    expect(others).toEqual([]);
+    expect(traces).toMatch(
+      /^stop\.maxTimeNs: The run could need (\d+(\.\d+)?) GiB of memory, \1 of them for the traces, with \d+ cells and \d+ steps; the maximum is 4 GiB: stop earlier/,
+    );
+    const poles = Array.from({ length: 20 }, () => ({ kind: "debye", delta: 0.01, tauNs: 1 }));
+    const media = [{ id: "foam", name: "Foam", electricPoles: poles }];
+    const [cells] = refusals({ media, mesh: { cellMm: 0.03 } });
+    // (3333 + 56) × 2000 cells of 104 + 8·(4 + 120) bytes.
+    expect(cells).toMatch(
+      /^mesh\.cellMm: The run could need 6\.\d+ GiB of memory, 0\.\d+ of them for the traces/,
+    );
+  });
+
+  it("is let pass where it fits", () => {
+    expect(refusals({ probes, stop: { maxTimeNs: 1000 } })).toEqual([]);
+    expect(refusals({ mesh: { cellMm: 0.03 } })).toEqual([]);
+  });
+});
+
 describe("every problem at once", () => {
   it("names those of the schema and those of the meaning, with the indices of the document as given", () => {
     const lines = refusals({
