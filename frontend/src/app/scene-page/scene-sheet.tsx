@@ -30,7 +30,9 @@ import { createHoverStore } from "./hover-store";
 import { Readout } from "./readout";
 import { SaveNote } from "./save-note";
 import "./scene-page.css";
+import { LimitsPanel } from "./limits-panel";
 import { RingPanel } from "./ring-panel";
+import { ShieldingPanel } from "./shielding-panel";
 import { TrustPanel } from "./trust-panel";
 import { useAutosave } from "./use-autosave";
 import { useEstimate } from "./use-estimate";
@@ -126,6 +128,17 @@ export function SceneSheet({ scene, document }: { scene: SceneDto; document: Sce
   );
   const momentNs = useCallback(() => slot.latest()?.timeNs ?? null, [slot]);
   const section = { widthMm: drawing.widthMm, heightMm: drawing.heightMm };
+  /** Starts the scene's run together with those that it is to be compared with; null while that cannot be. */
+  const compare = (options: { twoMesh: boolean; shielding: boolean }) =>
+    runRefusal !== null || live || handle.busy
+      ? null
+      : () => {
+          handle.start(options);
+        };
+  const limitAtGHz = (to: string, from: string): number | null => {
+    const limit = drawn.limits.find(({ of }) => "s" in of && of.s[0] === to && of.s[1] === from);
+    return result.data?.limits?.find(({ id }) => id === limit?.id)?.atGHz ?? null;
+  };
   const dirty = saveState.kind !== "saved";
   const outdated = run !== null && (dirty || run.revision !== autosave.revision);
 
@@ -209,12 +222,29 @@ export function SceneSheet({ scene, document }: { scene: SceneDto; document: Sce
       </div>
       <aside className="scene-side" aria-label="Media, dimensions and trust">
         <MediaShelf editor={editor} library={library.data ?? []} />
+        <LimitsPanel limits={drawn.limits} result={result.data ?? null} outdated={outdated} />
         <RingPanel result={result.data ?? null} outdated={outdated} nameOf={nameOf} />
+        <ShieldingPanel
+          marked={drawn.paint.some(({ shield }) => shield === true)}
+          result={result.data ?? null}
+          outdated={outdated}
+          underWay={live && run.shielding}
+          onRun={compare({ shielding: true, twoMesh: result.data?.extrapolation !== undefined })}
+          refusal={runRefusal}
+          nameOf={nameOf}
+        />
         <TrustPanel
           result={result.data ?? null}
           mediaById={drawing.mediaById}
           outdated={outdated}
           caution={`${cautionOf(drawn.outOfPlane)} ${DESIGN_CAUTION}`}
+          check={{
+            underWay: live && run.twoMesh,
+            onCheck: compare({ twoMesh: true, shielding: result.data?.shielding !== undefined }),
+            refusal: runRefusal,
+            limitAtGHz,
+            nameOf,
+          }}
         />
         <Inspector editor={editor} />
       </aside>
@@ -235,6 +265,7 @@ export function SceneSheet({ scene, document }: { scene: SceneDto; document: Sce
               : { result: beforeResult.data, revision: before.revision }
           }
           band={drawn.band}
+          limits={drawn.limits}
           nameOf={nameOf}
           selected={selectedProbe}
           empty={spectrumEmpty(run, result.isFetching)}

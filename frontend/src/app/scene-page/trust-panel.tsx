@@ -1,5 +1,7 @@
 import type { Medium, SolveResult } from "@heddle/kernels/scene";
-import { decibels, figure, THIN_SPACE } from "../../lib/figures";
+import { decibels, figure, frequency, THIN_SPACE } from "../../lib/figures";
+import type { MeshCheckProps } from "./mesh-check";
+import { MeshCheck } from "./mesh-check";
 
 export interface TrustPanelProps {
   result: SolveResult | null;
@@ -8,6 +10,7 @@ export interface TrustPanelProps {
   outdated: boolean;
   /** What was left out by drawing a section. */
   caution: string;
+  check: Omit<MeshCheckProps, "result">;
 }
 
 const SHOWN_WARNINGS = 4;
@@ -15,16 +18,21 @@ const SHOWN_WARNINGS = 4;
 const SHOWN_MEDIA = 3;
 
 /** How good the answer is, in a few figures, and what the section leaves out. */
-export function TrustPanel({ result, mediaById, outdated, caution }: TrustPanelProps) {
+export function TrustPanel({ result, mediaById, outdated, caution, check }: TrustPanelProps) {
   return (
     <section className="side-part" aria-label="Trust">
       <h2 className="label">Trust</h2>
       {result === null ? (
-        <p className="quiet">Run the scene to see how good its answer is.</p>
+        <p className="quiet">
+          {check.underWay
+            ? "Being solved on its own and on a finer mesh."
+            : "Run the scene to see how good its answer is."}
+        </p>
       ) : (
         <>
           {outdated && <p className="quiet">Of the last run; the drawing has changed since.</p>}
           <Figures result={result} mediaById={mediaById} />
+          <MeshCheck result={result} {...check} />
           {result.quality.warnings.length > 0 && (
             <ul className="warnings">
               {result.quality.warnings.slice(0, SHOWN_WARNINGS).map((warning) => (
@@ -42,10 +50,22 @@ export function TrustPanel({ result, mediaById, outdated, caution }: TrustPanelP
   );
 }
 
+/** Where the power balance closes worst; null where the run kept none. */
+export function worstMismatch({ balance }: SolveResult): { share: number; GHz: number } | null {
+  if (balance === undefined) return null;
+  return balance.GHz.reduce<{ share: number; GHz: number } | null>((worst, GHz, n) => {
+    const mismatch = balance.mismatch[n] ?? null;
+    if (mismatch === null) return worst;
+    const share = Math.abs(mismatch);
+    return worst !== null && worst.share >= share ? worst : { share, GHz };
+  }, null);
+}
+
 function Figures({ result, mediaById }: { result: SolveResult; mediaById: ReadonlyMap<string, Medium> }) {
   const { quality } = result;
   const media = Object.entries(quality.cellsPerWavelength).sort(([, a], [, b]) => a - b);
   const { energyLeft, boundaryReflectionDb } = quality;
+  const mismatch = worstMismatch(result);
   return (
     <>
       <dl className="figures">
@@ -66,6 +86,17 @@ function Figures({ result, mediaById }: { result: SolveResult; mediaById: Readon
           <div>
             <dt>Edge reflection</dt>
             <dd>{decibels(boundaryReflectionDb, 0)}</dd>
+          </div>
+        )}
+        {mismatch !== null && (
+          <div>
+            <dt title="Power in that is neither absorbed nor leaves, where it is most">
+              Power not accounted for
+            </dt>
+            <dd>
+              {figure(mismatch.share * 100, 2)}
+              {THIN_SPACE}% at {frequency(mismatch.GHz)}
+            </dd>
           </div>
         )}
       </dl>

@@ -1,253 +1,168 @@
-import type { SolveResult } from "@heddle/kernels/scene";
-import { useLayoutEffect, useMemo, useRef, useState } from "react";
-import { figure, formatFixed, frequency, MINUS, THIN_SPACE } from "../../lib/figures";
-import { ticks } from "./decimate";
-import { ResonanceMarks } from "./resonance-marks";
-import type { LevelCurve } from "./spectrum";
-import { curvesOf, nearestIndex, rangeOf, whyNoSpectrum } from "./spectrum";
+import type { Limit, SolveResult } from "@heddle/kernels/scene";
+import { useMemo, useState } from "react";
+import { formatFixed, frequency, THIN_SPACE } from "../../lib/figures";
+import { CurveValues } from "./curve-values";
+import type { PlotCurve } from "./curves";
+import { FrequencyPlot } from "./frequency-plot";
+import { guideTicks } from "./s-curves";
+import { whyNoSpectrum } from "./spectrum";
 import styles from "./traces.module.css";
+import { useSize } from "./use-size";
+import type { PlotView, ViewKind } from "./views";
+import { VIEW_NAMES, viewKinds, viewOf } from "./views";
 
 export interface SpectrumPanelProps {
   result: SolveResult | null;
   /** The clean result before this one, to compare with. */
   previous: { result: SolveResult; revision: number } | null;
   band: { fromGHz: number; toGHz: number };
+  limits: readonly Limit[];
   nameOf: (probe: string) => string;
   selected: string | null;
   /** What to say while there is no result. */
   empty: string;
 }
 
-const PAD = { left: 34, right: 10, top: 8, bottom: 20 };
-/** Curves are told apart by dash as well as by place, never by colour alone. */
-const DASHES = ["", "6 3", "2 2", "8 3 2 3", "1 3"];
-
-function useSize(): [React.RefObject<HTMLDivElement | null>, { width: number; height: number }] {
-  const ref = useRef<HTMLDivElement>(null);
-  const [size, setSize] = useState({ width: 360, height: 160 });
-  useLayoutEffect(() => {
-    const element = ref.current;
-    if (element === null) return;
-    const observer = new ResizeObserver(() => {
-      setSize({ width: element.clientWidth, height: element.clientHeight });
-    });
-    observer.observe(element);
-    return () => {
-      observer.disconnect();
-    };
-  }, []);
-  return [ref, size];
-}
-
-/** Each probe's level over the band once the run is done, with the run before it for comparison. */
-export function SpectrumPanel({ result, previous, band, nameOf, selected, empty }: SpectrumPanelProps) {
-  const [box, { width, height }] = useSize();
-  const [hoverGHz, setHoverGHz] = useState<number | null>(null);
-  const curves = useMemo(() => (result === null ? [] : curvesOf(result)), [result]);
-  const before = useMemo(() => (previous === null ? [] : curvesOf(previous.result)), [previous]);
+/** S-parameters of the ports, shielding and the probes' levels over the band once the run is done, with the run before it. */
+export function SpectrumPanel({ result, empty, ...others }: SpectrumPanelProps) {
   const why = result === null ? empty : whyNoSpectrum(result);
-  const range = rangeOf(curves.length > 0 ? [...curves, ...before] : []);
-  const x = (GHz: number): number =>
-    PAD.left + ((GHz - band.fromGHz) / (band.toGHz - band.fromGHz)) * (width - PAD.left - PAD.right);
-  const toGHz = (px: number): number =>
-    band.fromGHz + ((px - PAD.left) / (width - PAD.left - PAD.right)) * (band.toGHz - band.fromGHz);
-  const y = (dB: number): number =>
-    range === null
-      ? 0
-      : PAD.top + ((range.high - dB) / (range.high - range.low)) * (height - PAD.top - PAD.bottom);
-  const first = curves.at(0);
-  const shown = hoverGHz ?? (first === undefined ? null : (first.GHz.at(strongest(first)) ?? null));
-  const units = [...new Set(curves.map((curve) => curve.unit))];
-  const completed = curves.some((curve) => curve.completed);
+  const kinds = useMemo(() => (result === null ? [] : viewKinds(result)), [result]);
+  const [asked, setAsked] = useState<ViewKind | null>(null);
+  const kind = asked !== null && kinds.includes(asked) ? asked : kinds.at(0);
   return (
     <section className={styles.panel} aria-label="Spectrum">
-      <header className={styles.head}>
-        <h2 className="label">
-          Level per unit source, dB{units.length > 0 ? ` re 1 ${units.join(", ")}` : ""}
-        </h2>
-        {before.length > 0 && previous !== null && curves.length > 0 && (
-          <span className={styles.legend}>
-            <svg width="18" height="6" aria-hidden="true">
-              <line x1="0" x2="18" y1="3" y2="3" className={styles.before} />
-            </svg>
-            rev {previous.revision}
-          </span>
-        )}
-      </header>
-      <div ref={box} className={styles.plot}>
-        {why !== null && <p className={styles.empty}>{why}</p>}
-        {why === null && range !== null && width > PAD.left + PAD.right && (
-          <svg
-            width={width}
-            height={height}
-            role="img"
-            aria-label={curves.map((curve) => describe(curve, nameOf)).join("; ")}
-            onPointerMove={(event) => {
-              const GHz = toGHz(event.clientX - event.currentTarget.getBoundingClientRect().left);
-              setHoverGHz(GHz >= band.fromGHz && GHz <= band.toGHz ? GHz : null);
-            }}
-            onPointerLeave={() => {
-              setHoverGHz(null);
-            }}
-          >
-            <clipPath id="spectrum-area">
-              <rect
-                x={PAD.left}
-                y={PAD.top}
-                width={width - PAD.left - PAD.right}
-                height={Math.max(0, height - PAD.top - PAD.bottom)}
-              />
-            </clipPath>
-            {ticks(range.low, range.high, Math.max(2, Math.floor(height / 36))).map((dB) => (
-              <g key={dB}>
-                <line x1={PAD.left} x2={width - PAD.right} y1={y(dB)} y2={y(dB)} className={styles.grid} />
-                <text
-                  x={PAD.left - 6}
-                  y={y(dB)}
-                  className={styles.tick}
-                  textAnchor="end"
-                  dominantBaseline="middle"
-                >
-                  {dB < 0 ? `${MINUS}${(-dB).toString()}` : dB.toString()}
-                </text>
-              </g>
-            ))}
-            {frequencyTicks(band, width).map(({ GHz, label, anchor }) => (
-              <text key={GHz} x={x(GHz)} y={height - 6} className={styles.tick} textAnchor={anchor}>
-                {label}
-              </text>
-            ))}
-            <ResonanceMarks
-              resonances={result?.resonances ?? []}
-              band={band}
-              x={x}
-              top={PAD.top}
-              bottom={height - PAD.bottom}
-            />
-            <g clipPath="url(#spectrum-area)">
-              {before.map((curve) => (
-                <Curve key={curve.probe} curve={curve} x={x} y={y} className={styles.before} dash="4 3" />
-              ))}
-              {curves.map((curve, index) => (
-                <Curve
-                  key={curve.probe}
-                  curve={curve}
-                  x={x}
-                  y={y}
-                  className={curve.probe === selected ? styles.chosen : styles.curve}
-                  dash={DASHES[index % DASHES.length] ?? ""}
-                />
-              ))}
-              {hoverGHz !== null && (
-                <line
-                  x1={x(hoverGHz)}
-                  x2={x(hoverGHz)}
-                  y1={PAD.top}
-                  y2={height - PAD.bottom}
-                  className={styles.cursor}
-                />
-              )}
-            </g>
-          </svg>
-        )}
-      </div>
-      {why === null && shown !== null && (
-        <ul
-          className={styles.values}
-          aria-label={hoverGHz === null ? "Strongest level" : "Levels under the cursor"}
-        >
-          <li>
-            <b>{frequency(shown)}</b>
-          </li>
-          {curves.map((curve, index) => {
-            const level = curve.dB[nearestIndex(curve.GHz, shown)] ?? null;
-            return (
-              <li key={curve.probe}>
-                <svg width="18" height="6" aria-hidden="true">
-                  <line
-                    x1="0"
-                    x2="18"
-                    y1="3"
-                    y2="3"
-                    className={curve.probe === selected ? styles.chosen : styles.curve}
-                    strokeDasharray={DASHES[index % DASHES.length]}
-                  />
-                </svg>{" "}
-                {nameOf(curve.probe)}{" "}
-                <b>{level === null ? "–" : `${formatFixed(level, 1)}${THIN_SPACE}dB`}</b>
-              </li>
-            );
-          })}
-        </ul>
-      )}
-      {completed && (
-        <p className={styles.note}>
-          Some traces had not died away at the stop and were completed by their fitted poles.
-        </p>
+      {why !== null || result === null || kind === undefined ? (
+        <>
+          <header className={styles.head}>
+            <h2 className="label">Level per unit source, dB</h2>
+          </header>
+          <div className={styles.plot}>
+            <p className={styles.empty}>{why}</p>
+          </div>
+        </>
+      ) : (
+        <Spectrum key={kind} result={result} kind={kind} kinds={kinds} onKind={setAsked} {...others} />
       )}
     </section>
   );
 }
 
-function strongest(curve: LevelCurve): number {
+interface SpectrumProps extends Omit<SpectrumPanelProps, "result" | "empty"> {
+  result: SolveResult;
+  kind: ViewKind;
+  kinds: readonly ViewKind[];
+  onKind: (kind: ViewKind) => void;
+}
+
+function Spectrum(props: SpectrumProps) {
+  const { result, previous, kind, kinds, onKind, band, limits, nameOf, selected } = props;
+  const [box, { width, height }] = useSize();
+  const [cursorGHz, setCursorGHz] = useState<number | null>(null);
+  const [hidden, setHidden] = useState<ReadonlySet<string>>(new Set());
+  const view = useMemo(
+    () => viewOf(kind, { result, previous: previous?.result ?? null, limits, nameOf, selected }),
+    [kind, result, previous, limits, nameOf, selected],
+  );
+  const curves = view.curves.map((curve, index) => ({ ...curve, index }));
+  const shown = curves.filter(({ key }) => !hidden.has(key));
+  const first = view.curves.at(0);
+  const GHz = cursorGHz ?? (first === undefined ? null : (first.GHz[strongest(first)] ?? null));
+  const guide =
+    result.ports === undefined || kind === "probes" ? [] : guideTicks(result.ports, Math.floor(width / 110));
+  return (
+    <>
+      <header className={styles.head}>
+        <h2 className="label">{view.title}</h2>
+        <span className={styles.legend}>
+          {view.before.length > 0 && previous !== null && (
+            <>
+              <svg width="18" height="6" aria-hidden="true">
+                <line x1="0" x2="18" y1="3" y2="3" className={styles.before} />
+              </svg>{" "}
+              rev {previous.revision}
+            </>
+          )}
+          {kinds.length > 1 && <Views kind={kind} kinds={kinds} onKind={onKind} />}
+        </span>
+      </header>
+      <div ref={box} className={styles.plot}>
+        {view.range === null ? (
+          <p className={styles.empty}>No value is defined in the band.</p>
+        ) : (
+          <FrequencyPlot
+            width={width}
+            height={height}
+            band={band}
+            range={view.range}
+            turn={view.turn}
+            curves={shown}
+            before={view.before}
+            limits={view.limits}
+            resonances={result.resonances ?? []}
+            guide={guide}
+            selected={selected}
+            label={describe(view)}
+            cursorGHz={cursorGHz}
+            onCursor={setCursorGHz}
+          />
+        )}
+      </div>
+      {GHz !== null && (
+        <CurveValues
+          curves={curves}
+          GHz={GHz}
+          label={cursorGHz === null ? "Values where the first curve is largest" : "Values under the cursor"}
+          unit={view.unit}
+          decimals={view.decimals}
+          selected={selected}
+          hidden={hidden}
+          onToggle={(key) => {
+            const next = new Set(hidden);
+            if (!next.delete(key)) next.add(key);
+            setHidden(next);
+          }}
+        />
+      )}
+      {view.notes.length > 0 && <p className={styles.note}>{view.notes.join(" ")}</p>}
+    </>
+  );
+}
+
+function Views({ kind, kinds, onKind }: Pick<SpectrumProps, "kind" | "kinds" | "onKind">) {
+  return (
+    <span className={styles.views} role="group" aria-label="What the spectrum shows">
+      {kinds.map((one) => (
+        <button
+          key={one}
+          type="button"
+          aria-pressed={one === kind}
+          onClick={() => {
+            onKind(one);
+          }}
+        >
+          {VIEW_NAMES[one]}
+        </button>
+      ))}
+    </span>
+  );
+}
+
+function strongest(curve: PlotCurve): number {
   let best = 0;
-  curve.dB.forEach((value, index) => {
-    if (value !== null && value > (curve.dB[best] ?? Number.NEGATIVE_INFINITY)) best = index;
+  curve.values.forEach((value, index) => {
+    if (value !== null && value > (curve.values[best] ?? Number.NEGATIVE_INFINITY)) best = index;
   });
   return best;
 }
 
-const describe = (curve: LevelCurve, nameOf: (probe: string) => string): string => {
-  const at = strongest(curve);
-  const level = curve.dB[at] ?? null;
-  return level === null
-    ? `${nameOf(curve.probe)}: no level`
-    : `${nameOf(curve.probe)}: strongest ${formatFixed(level, 1)} dB at ${frequency(curve.GHz[at] ?? 0)}`;
-};
-
-function frequencyTicks(
-  band: { fromGHz: number; toGHz: number },
-  width: number,
-): { GHz: number; label: string; anchor: "start" | "middle" | "end" }[] {
-  const places = ticks(band.fromGHz, band.toGHz, Math.max(2, Math.floor(width / 90)));
-  return places.map((GHz, index) => {
-    const share = (GHz - band.fromGHz) / (band.toGHz - band.fromGHz);
-    return {
-      GHz,
-      label: index === places.length - 1 ? `${figure(GHz, 4)}${THIN_SPACE}GHz` : figure(GHz, 4),
-      anchor: share > 0.92 ? "end" : "middle",
-    };
-  });
-}
-
-interface CurveProps {
-  curve: LevelCurve;
-  x: (GHz: number) => number;
-  y: (dB: number) => number;
-  className: string | undefined;
-  dash: string;
-}
-
-/** A line through the levels that are defined; a single line of a tone as a stem with a ring. */
-function Curve({ curve, x, y, className, dash }: CurveProps) {
-  const points = curve.GHz.flatMap((GHz, index) => {
-    const level = curve.dB[index] ?? null;
-    return level === null ? [] : [{ x: x(GHz), y: y(level), index }];
-  });
-  const only = points.at(0);
-  if (points.length === 1 && only !== undefined) {
-    return (
-      <g className={className}>
-        <line x1={only.x} x2={only.x} y1={only.y} y2={4096} strokeDasharray={dash} />
-        <circle cx={only.x} cy={only.y} r={3.5} />
-      </g>
-    );
-  }
-  const path = points
-    .map((point, i) => {
-      const joined = points[i - 1]?.index === point.index - 1;
-      return `${joined ? "L" : "M"}${point.x.toFixed(1)} ${point.y.toFixed(1)}`;
+/** The picture in words, for who cannot see it. */
+const describe = ({ curves, unit, decimals }: PlotView): string =>
+  curves
+    .map((curve) => {
+      const at = strongest(curve);
+      const value = curve.values[at] ?? null;
+      return value === null
+        ? `${curve.label}: no value`
+        : `${curve.label}: largest ${formatFixed(value, decimals)}${THIN_SPACE}${unit} at ${frequency(curve.GHz[at] ?? 0)}`;
     })
-    .join("");
-  return <path d={path} className={className} strokeDasharray={dash} />;
-}
+    .join("; ");

@@ -1,0 +1,139 @@
+/** The views that the spectrum panel has of a result, and what each draws. */
+import type { Limit, ProbeResult, SolveResult } from "@heddle/kernels/scene";
+import type { PlotCurve, ValueRange } from "./curves";
+import { rangeOf } from "./curves";
+import type { LimitLine } from "./limit-lines";
+import { limitLines } from "./limit-lines";
+import type { SQuantity } from "./s-curves";
+import { passivityWords, sCurves, sRange } from "./s-curves";
+import { isCompleted, probeCurves, shieldingCurves } from "./spectrum";
+
+export type ViewKind = SQuantity | "probes" | "shielding";
+
+export const VIEW_NAMES: Record<ViewKind, string> = {
+  level: "|S|",
+  phase: "Phase",
+  delay: "Delay",
+  shielding: "Shielding",
+  probes: "Probes",
+};
+
+export interface PlotView {
+  title: string;
+  unit: string;
+  decimals: number;
+  /** Values turn over by this much (phases); null: they do not. */
+  turn: number | null;
+  range: ValueRange | null;
+  curves: PlotCurve[];
+  before: PlotCurve[];
+  limits: LimitLine[];
+  notes: string[];
+}
+
+/** S first where there are ports, then shielding and probes, where there are spectra of them. */
+export function viewKinds(result: SolveResult): ViewKind[] {
+  const kinds: ViewKind[] = [];
+  if (result.ports !== undefined) kinds.push("level", "phase", "delay");
+  if (result.shielding !== undefined && result.shielding.length > 0) kinds.push("shielding");
+  if (result.probes.some(({ spectrum }) => spectrum !== null)) kinds.push("probes");
+  return kinds;
+}
+
+export interface ViewInput {
+  result: SolveResult;
+  /** The clean result before this one. */
+  previous: SolveResult | null;
+  limits: readonly Limit[];
+  nameOf: (probe: string) => string;
+  selected: string | null;
+}
+
+const BAR_NOTE = "The grey area is where a curve lies at zero cell size, by the run on two meshes.";
+const COMPLETED_NOTE = "Some traces had not died away at the stop and were completed by their fitted poles.";
+
+/** Limits are part of the picture as far as the curves' own range goes, and a little further. */
+function withLimits(range: ValueRange | null, limits: readonly LimitLine[]): ValueRange | null {
+  if (range === null) return null;
+  const levels = limits.flatMap(({ points }) => points.map(({ dB }) => dB));
+  if (levels.length === 0) return range;
+  return {
+    low: Math.min(range.low, 10 * Math.floor((Math.min(...levels) - 1) / 10)),
+    high: Math.max(range.high, 10 * Math.ceil((Math.max(...levels) + 1) / 10)),
+  };
+}
+
+function sView(kind: SQuantity, { result, previous, limits }: ViewInput): PlotView {
+  const lines =
+    kind === "level" ? limitLines(limits, result.limits, (of) => "s" in of && isPair(result, of.s)) : [];
+  const curves = sCurves(result, kind);
+  const passivity = result.ports === undefined ? null : passivityWords(result.ports);
+  const range = sRange(result, kind);
+  return {
+    ...{
+      level: { title: "|S|, dB", unit: "dB", decimals: 2, turn: null },
+      phase: { title: "Phase of S, degrees", unit: "°", decimals: 1, turn: 360 },
+      delay: { title: "Group delay, ns", unit: "ns", decimals: 3, turn: null },
+    }[kind],
+    range: kind === "level" ? withLimits(range, lines) : range,
+    curves,
+    before: previous === null ? [] : sCurves(previous, kind),
+    limits: lines,
+    notes: [...(passivity === null ? [] : [passivity]), ...(hasBars(curves) ? [BAR_NOTE] : [])],
+  };
+}
+
+const isPair = ({ ports }: SolveResult, [to, from]: readonly [string, string]): boolean =>
+  ports?.s.some((pair) => pair.to === to && pair.from === from) ?? false;
+
+const hasBars = (curves: readonly PlotCurve[]): boolean => curves.some(({ bar }) => bar !== undefined);
+
+function probesView({ result, previous, limits, nameOf, selected }: ViewInput): PlotView {
+  // An area's halves are told where it alone is looked at: they would crowd a plot of many.
+  const split = (probe: ProbeResult): boolean => probe.id === selected || result.probes.length === 1;
+  const curves = probeCurves(result, nameOf, split);
+  const before = previous === null ? [] : probeCurves(previous, nameOf);
+  const lines = limitLines(limits, result.limits, (of) => "probe" in of);
+  const units = [
+    ...new Set(result.probes.flatMap(({ spectrum, unit }) => (spectrum === null ? [] : [unit]))),
+  ];
+  return {
+    title: `Level per unit source, dB${units.length > 0 ? ` re 1 ${units.join(", ")}` : ""}`,
+    unit: "dB",
+    decimals: 1,
+    turn: null,
+    range: withLimits(curves.length === 0 ? null : rangeOf([...curves, ...before]), lines),
+    curves,
+    before,
+    limits: lines,
+    notes: [...(isCompleted(result) ? [COMPLETED_NOTE] : []), ...(hasBars(curves) ? [BAR_NOTE] : [])],
+  };
+}
+
+function shieldingView({ result, previous, limits, nameOf }: ViewInput): PlotView {
+  const curves = shieldingCurves(result, nameOf);
+  const before = previous === null ? [] : shieldingCurves(previous, nameOf);
+  const lines = limitLines(limits, result.limits, (of) => "shielding" in of);
+  return {
+    title: "Shielding, dB",
+    unit: "dB",
+    decimals: 1,
+    turn: null,
+    range: withLimits(curves.length === 0 ? null : rangeOf([...curves, ...before]), lines),
+    curves,
+    before,
+    limits: lines,
+    notes: [],
+  };
+}
+
+export function viewOf(kind: ViewKind, input: ViewInput): PlotView {
+  switch (kind) {
+    case "probes":
+      return probesView(input);
+    case "shielding":
+      return shieldingView(input);
+    default:
+      return sView(kind, input);
+  }
+}
