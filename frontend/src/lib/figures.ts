@@ -77,6 +77,10 @@ export function formatFixed(value: number, decimals: number): string {
 export const decibels = (value: number, decimals = 1): string =>
   `${formatFixed(value, decimals)}${THIN_SPACE}dB`;
 
+/** A margin, which may be small but is never rounded to nothing: "3.2 dB", "0.018 dB". */
+export const marginDb = (value: number): string =>
+  Math.abs(value) < 0.1 ? withUnit(value, "dB", 2) : decibels(value);
+
 /** A frequency given in GHz with the prefix that fits: "912 MHz". */
 export const frequency = (gigahertz: number, digits = 4): string => formatSi(gigahertz * 1e9, "Hz", digits);
 

@@ -1,5 +1,5 @@
 import type { Limit, LimitResult, SolveResult } from "@heddle/kernels/scene";
-import { decibels, figure, formatFixed, frequency, THIN_SPACE } from "../../lib/figures";
+import { figure, formatFixed, frequency, marginDb, THIN_SPACE } from "../../lib/figures";
 
 export interface LimitsPanelProps {
   limits: readonly Limit[];
@@ -10,7 +10,7 @@ export interface LimitsPanelProps {
 
 /** A margin in the unit of its limit: dB of lines, else that of the number itself. */
 function marginWords(limit: Limit, margin: number): string {
-  if ("points" in limit) return decibels(margin);
+  if ("points" in limit) return marginDb(margin);
   if ("absorbedShare" in limit.of) return `${formatFixed(margin * 100, 1)}${THIN_SPACE}points`;
   return "cutoff" in limit.of ? frequency(margin) : figure(margin, 3);
 }

@@ -248,7 +248,7 @@ export function SceneSheet({ scene, document }: { scene: SceneDto; document: Sce
         />
         <Inspector editor={editor} />
       </aside>
-      <div className="scene-strip">
+      <div className={drawn.probes.length === 0 ? "scene-strip traceless" : "scene-strip"}>
         <RunPanel handle={handle} refusal={runRefusal} cost={estimate?.cost ?? null} />
         <TracePanel
           store={traces}

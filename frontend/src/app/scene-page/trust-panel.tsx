@@ -90,9 +90,7 @@ function Figures({ result, mediaById }: { result: SolveResult; mediaById: Readon
         )}
         {mismatch !== null && (
           <div>
-            <dt title="Power in that is neither absorbed nor leaves, where it is most">
-              Power not accounted for
-            </dt>
+            <dt title="Power in that is neither absorbed nor leaves, where it is most">Power unaccounted</dt>
             <dd>
               {figure(mismatch.share * 100, 2)}
               {THIN_SPACE}% at {frequency(mismatch.GHz)}

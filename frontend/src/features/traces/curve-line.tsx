@@ -41,7 +41,7 @@ export function CurveLine({ curve, x, y, className, index, turn }: CurveLineProp
   }
   const path = points
     .map((point, i) => {
-      const before = points[i - 1];
+      const before = i === 0 ? undefined : points[i - 1];
       const joined =
         before?.at === point.at - 1 && (turn === null || Math.abs(before.value - point.value) < turn / 2);
       return `${joined ? "L" : "M"}${point.x.toFixed(1)} ${point.y.toFixed(1)}`;

@@ -32,6 +32,7 @@ export interface FrequencyPlotProps {
 
 const PAD = { left: 36, right: 10, top: 8, bottom: 20 };
 const GUIDE_PX = 16;
+const VALUE_TICK_PX = 28;
 
 /** Curves over frequency with their axes, limits, resonances and cursor. */
 export function FrequencyPlot(props: FrequencyPlotProps) {
@@ -101,7 +102,7 @@ export function FrequencyPlot(props: FrequencyPlotProps) {
           <CurveBar key={curve.key} curve={curve} x={x} y={y} />
         ))}
         {limits.map((limit) => (
-          <LimitMark key={limit.key} limit={limit} x={x} y={y} />
+          <LimitMark key={limit.key} limit={limit} x={x} y={y} right={right} />
         ))}
         {before.map((curve) => (
           <CurveLine
@@ -135,7 +136,7 @@ export function FrequencyPlot(props: FrequencyPlotProps) {
 
 /** Round places of the values' axis: of a turn its quarters. */
 function valueTicks({ low, high }: ValueRange, turn: number | null, height: number): number[] {
-  if (turn === null) return ticks(low, high, Math.max(2, Math.floor(height / 36)));
+  if (turn === null) return ticks(low, high, Math.max(2, Math.floor(height / VALUE_TICK_PX)));
   const step = turn / 4;
   return Array.from({ length: Math.round((high - low) / step) + 1 }, (_, n) => low + n * step);
 }

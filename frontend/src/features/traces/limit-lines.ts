@@ -26,7 +26,7 @@ export function limitLines(
   return limits.flatMap((limit): LimitLine[] => {
     if (!("points" in limit) || !of(limit.of)) return [];
     const places = limit.points.map(([GHz]) => GHz).sort((a, b) => a - b);
-    const [first, last] = [places[0], places[places.length - 1]];
+    const [first, last] = [places.at(0), places.at(-1)];
     if (first === undefined || last === undefined) return [];
     const between = Array.from({ length: PIECES }, (_, n) => first + ((last - first) * n) / PIECES);
     const points = [...new Set([...between, ...places])]

@@ -1,4 +1,4 @@
-import { decibels } from "../../lib/figures";
+import { marginDb } from "../../lib/figures";
 import type { LimitLine } from "./limit-lines";
 import styles from "./traces.module.css";
 
@@ -6,14 +6,17 @@ export interface LimitMarkProps {
   limit: LimitLine;
   x: (GHz: number) => number;
   y: (dB: number) => number;
+  /** The plot's right edge, px: words end there at the latest. */
+  right: number;
 }
 
 const STROKE_EVERY_PX = 9;
 const STROKE_PX = 6;
+const WORDS_PX = 90;
 const WORDS = { true: "kept", false: "broken", null: "not judged" };
 
 /** A limit's line, with short strokes on the side where the curve must not be. */
-export function LimitMark({ limit, x, y }: LimitMarkProps) {
+export function LimitMark({ limit, x, y, right }: LimitMarkProps) {
   const points = limit.points.map(({ GHz, dB }) => ({ x: x(GHz), y: y(dB) }));
   const only = points.at(0);
   if (only === undefined) return null;
@@ -25,7 +28,7 @@ export function LimitMark({ limit, x, y }: LimitMarkProps) {
   if (points.length === 1)
     strokes.push(`M${(only.x - 4).toFixed(1)} ${only.y.toFixed(1)}h8`, stroke(only.x, only.y));
   points.forEach((point, index) => {
-    const next = points[index + 1];
+    const next = points.at(index + 1);
     if (next === undefined) return;
     const count = Math.max(1, Math.round((next.x - point.x) / STROKE_EVERY_PX));
     for (let n = 0; n < count; n += 1) {
@@ -36,18 +39,16 @@ export function LimitMark({ limit, x, y }: LimitMarkProps) {
   const line = points.map((point) => `${point.x.toFixed(1)} ${point.y.toFixed(1)}`).join("L");
   return (
     <g className={name}>
-      <title>
-        {limit.name}, {WORDS[`${limit.holds}`]}
-      </title>
+      <title>{`${limit.name}, ${WORDS[`${limit.holds}`]}`}</title>
       <path d={`M${line}`} />
       <path d={strokes.join("")} className={styles.limitStrokes} />
-      <Margin limit={limit} x={x} y={y} />
+      <Margin limit={limit} x={x} y={y} right={right} />
     </g>
   );
 }
 
 /** Where the curve comes nearest to the limit, or breaks it worst: a dimension between the two. */
-function Margin({ limit: { margin, atGHz, sense, points, holds }, x, y }: LimitMarkProps) {
+function Margin({ limit: { margin, atGHz, sense, points, holds }, x, y, right }: LimitMarkProps) {
   if (margin === null || atGHz === null) return null;
   const nearest = points.reduce<LimitLine["points"][number] | null>(
     (best, point) =>
@@ -58,11 +59,12 @@ function Margin({ limit: { margin, atGHz, sense, points, holds }, x, y }: LimitM
   const [px, limitY] = [x(atGHz), y(nearest.dB)];
   const curveY = y(sense === "below" ? nearest.dB - margin : nearest.dB + margin);
   const outward = sense === "below" ? -10 : 18;
+  const turned = px > right - WORDS_PX;
   return (
     <g className={styles.margin}>
       <path d={`M${(px - 3).toFixed(1)} ${curveY.toFixed(1)}h6m-3 0V${limitY.toFixed(1)}`} />
-      <text x={px + 5} y={limitY + outward}>
-        {holds === true ? `${decibels(margin)} to spare` : `${decibels(-margin)} over`}
+      <text x={turned ? px - 5 : px + 5} y={limitY + outward} textAnchor={turned ? "end" : "start"}>
+        {holds === true ? `${marginDb(margin)} to spare` : `${marginDb(-margin)} over`}
       </text>
     </g>
   );

@@ -18,7 +18,7 @@ export function ResonanceMarks({ resonances, band, x, top, bottom }: ResonanceMa
         .filter(({ GHz }) => GHz >= band.fromGHz && GHz <= band.toGHz)
         .map(({ GHz }) => (
           <g key={GHz}>
-            <title>Rings at {frequency(GHz, 5)}</title>
+            <title>{`Rings at ${frequency(GHz, 5)}`}</title>
             <line x1={x(GHz)} x2={x(GHz)} y1={top} y2={bottom} className={styles.ring} />
             <path d={`M${x(GHz).toString()} ${(top + 6).toString()}l-4 -6h8z`} className={styles.ringMark} />
           </g>

@@ -20,10 +20,10 @@ const result = (over: Partial<SolveResult> = {}): SolveResult =>
 describe("S-parameters", () => {
   it("are levels, phases and delays, named by where the wave goes and whence it comes", () => {
     const [reflected, passed] = sCurves(result(), "level");
-    expect(reflected?.label).toBe("in ← in");
-    expect(passed?.label).toBe("out ← in");
-    expect(reflected?.values[0]).toBeCloseTo(20 * Math.log10(0.6), 12);
-    expect(reflected?.values.slice(1)).toEqual([-20, null]);
+    expect(reflected.label).toBe("in ← in");
+    expect(passed.label).toBe("out ← in");
+    expect(reflected.values[0]).toBeCloseTo(20 * Math.log10(0.6), 12);
+    expect(reflected.values.slice(1)).toEqual([-20, null]);
     expect(sCurves(result(), "phase").map(({ values }) => values)).toEqual([
       [0, -90, null],
       [90, 180, 90],
@@ -61,9 +61,9 @@ describe("S-parameters", () => {
     ];
     const finer = result({ extrapolation: { s } as unknown as SolveResult["extrapolation"] });
     const [reflected, passed] = sCurves(finer, "level");
-    expect(reflected?.bar?.high[0]).toBeCloseTo(20 * Math.log10(0.7), 12);
-    expect(reflected?.bar?.low[0]).toBeCloseTo(20 * Math.log10(0.5), 12);
-    expect(passed?.bar).toBeUndefined();
+    expect(reflected.bar?.high[0]).toBeCloseTo(20 * Math.log10(0.7), 12);
+    expect(reflected.bar?.low[0]).toBeCloseTo(20 * Math.log10(0.5), 12);
+    expect(passed.bar).toBeUndefined();
     expect(sCurves(finer, "phase")[0]?.bar).toBeUndefined();
   });
 });
@@ -100,11 +100,11 @@ describe("the views of a result", () => {
   it("draw a limit straight over the logarithm of frequency, not judged where no run did", () => {
     const [line] = limitLines([limit], undefined, () => true);
     expect(line).toMatchObject({ holds: null, margin: null });
-    expect(line?.points[0]).toEqual({ GHz: 9, dB: -30 });
-    expect(line?.points.at(-1)).toEqual({ GHz: 16, dB: -10 });
+    expect(line.points[0]).toEqual({ GHz: 9, dB: -30 });
+    expect(line.points.at(-1)).toEqual({ GHz: 16, dB: -10 });
     // The middle of 9 and 16 GHz on a log axis is 12 GHz.
-    const before = line?.points.filter(({ GHz }) => GHz <= 12).at(-1);
-    const after = line?.points.find(({ GHz }) => GHz > 12);
+    const before = line.points.filter(({ GHz }) => GHz <= 12).at(-1);
+    const after = line.points.find(({ GHz }) => GHz > 12);
     expect(before?.dB).toBeLessThanOrEqual(-20);
     expect(after?.dB).toBeGreaterThan(-20);
   });

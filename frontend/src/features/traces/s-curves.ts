@@ -95,7 +95,7 @@ export function guideTicks({ GHz, guideGHz }: Ports, wanted: number): GuideTick[
   if (guideGHz === undefined || first === undefined || last === undefined) return [];
   return ticks(first, last, wanted).flatMap((wantedGHz) => {
     const above = guideGHz.findIndex((value) => value >= wantedGHz);
-    const [f1, g1] = [GHz[above], guideGHz[above]];
+    const [f1, g1] = above < 0 ? [] : [GHz.at(above), guideGHz.at(above)];
     if (f1 === undefined || g1 === undefined) return [];
     const [f0, g0] = [GHz[above - 1] ?? f1, guideGHz[above - 1] ?? g1];
     const share = g1 === g0 ? 0 : (wantedGHz - g0) / (g1 - g0);

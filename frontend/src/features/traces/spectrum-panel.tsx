@@ -66,7 +66,10 @@ function Spectrum(props: SpectrumProps) {
   const curves = view.curves.map((curve, index) => ({ ...curve, index }));
   const shown = curves.filter(({ key }) => !hidden.has(key));
   const first = view.curves.at(0);
-  const GHz = cursorGHz ?? (first === undefined ? null : (first.GHz[strongest(first)] ?? null));
+  // Where a limit is nearest, else where the first curve is largest.
+  const atLimit = view.limits.find(({ atGHz }) => atGHz !== null)?.atGHz ?? null;
+  const restGHz = atLimit ?? (first === undefined ? null : (first.GHz[strongest(first)] ?? null));
+  const GHz = cursorGHz ?? restGHz;
   const guide =
     result.ports === undefined || kind === "probes" ? [] : guideTicks(result.ports, Math.floor(width / 110));
   return (
@@ -74,13 +77,21 @@ function Spectrum(props: SpectrumProps) {
       <header className={styles.head}>
         <h2 className="label">{view.title}</h2>
         <span className={styles.legend}>
+          {view.curves.some(({ bar }) => bar !== undefined) && (
+            <span title="Where a curve lies at zero cell size, by the run on two meshes">
+              <svg width="18" height="8" aria-hidden="true">
+                <rect width="18" height="8" className={styles.bar} />
+              </svg>{" "}
+              zero cell size
+            </span>
+          )}
           {view.before.length > 0 && previous !== null && (
-            <>
+            <span>
               <svg width="18" height="6" aria-hidden="true">
                 <line x1="0" x2="18" y1="3" y2="3" className={styles.before} />
               </svg>{" "}
               rev {previous.revision}
-            </>
+            </span>
           )}
           {kinds.length > 1 && <Views kind={kind} kinds={kinds} onKind={onKind} />}
         </span>
@@ -111,7 +122,9 @@ function Spectrum(props: SpectrumProps) {
         <CurveValues
           curves={curves}
           GHz={GHz}
-          label={cursorGHz === null ? "Values where the first curve is largest" : "Values under the cursor"}
+          label={
+            cursorGHz === null ? REST_LABELS[atLimit === null ? "peak" : "limit"] : "Values under the cursor"
+          }
           unit={view.unit}
           decimals={view.decimals}
           selected={selected}
@@ -127,6 +140,11 @@ function Spectrum(props: SpectrumProps) {
     </>
   );
 }
+
+const REST_LABELS = {
+  limit: "Values where the limit is nearest",
+  peak: "Values where the first curve is largest",
+};
 
 function Views({ kind, kinds, onKind }: Pick<SpectrumProps, "kind" | "kinds" | "onKind">) {
   return (

@@ -22,11 +22,11 @@ const curvesOf = (...probes: ProbeResult[]) => probeCurves(result({ probes }), n
 describe("levels", () => {
   it("are 20 lg of a field and 10 lg of a power, null where undefined", () => {
     const [field] = curvesOf(probe({}));
-    expect(field?.values[0]).toBeCloseTo(20 * Math.log10(5), 12);
-    expect(field?.values[1]).toBeCloseTo(-20, 12);
-    expect(field?.values[2]).toBeNull();
+    expect(field.values[0]).toBeCloseTo(20 * Math.log10(5), 12);
+    expect(field.values[1]).toBeCloseTo(-20, 12);
+    expect(field.values[2]).toBeNull();
     const [power] = curvesOf(probe({ spectrum: { GHz: [1, 2, 3], value: [100, 0, -10] } }));
-    expect(power?.values).toEqual([20, null, 10]);
+    expect(power.values).toEqual([20, null, 10]);
     expect(curvesOf(probe({ spectrum: null }))).toEqual([]);
   });
 
@@ -68,11 +68,11 @@ describe("levels", () => {
       ],
     } as unknown as SolveResult["extrapolation"];
     const [curve] = probeCurves(result({ extrapolation }), nameOf);
-    expect(curve?.bar?.low[0]).toBeCloseTo(20 * Math.log10(4), 12);
-    expect(curve?.bar?.high[0]).toBeCloseTo(20 * Math.log10(6), 12);
+    expect(curve.bar?.low[0]).toBeCloseTo(20 * Math.log10(4), 12);
+    expect(curve.bar?.high[0]).toBeCloseTo(20 * Math.log10(6), 12);
     // As uncertain as it is large: it may be nothing.
-    expect(curve?.bar?.low[1]).toBeLessThan(-200);
-    expect(curve?.bar?.low[2]).toBeNull();
+    expect(curve.bar?.low[1]).toBeLessThan(-200);
+    expect(curve.bar?.low[2]).toBeNull();
   });
 
   it("say why there are none", () => {

@@ -49,7 +49,6 @@ export interface ViewInput {
   selected: string | null;
 }
 
-const BAR_NOTE = "The grey area is where a curve lies at zero cell size, by the run on two meshes.";
 const COMPLETED_NOTE = "Some traces had not died away at the stop and were completed by their fitted poles.";
 
 /** Limits are part of the picture as far as the curves' own range goes, and a little further. */
@@ -79,14 +78,12 @@ function sView(kind: SQuantity, { result, previous, limits }: ViewInput): PlotVi
     curves,
     before: previous === null ? [] : sCurves(previous, kind),
     limits: lines,
-    notes: [...(passivity === null ? [] : [passivity]), ...(hasBars(curves) ? [BAR_NOTE] : [])],
+    notes: passivity === null ? [] : [passivity],
   };
 }
 
 const isPair = ({ ports }: SolveResult, [to, from]: readonly [string, string]): boolean =>
   ports?.s.some((pair) => pair.to === to && pair.from === from) ?? false;
-
-const hasBars = (curves: readonly PlotCurve[]): boolean => curves.some(({ bar }) => bar !== undefined);
 
 function probesView({ result, previous, limits, nameOf, selected }: ViewInput): PlotView {
   // An area's halves are told where it alone is looked at: they would crowd a plot of many.
@@ -106,7 +103,7 @@ function probesView({ result, previous, limits, nameOf, selected }: ViewInput): 
     curves,
     before,
     limits: lines,
-    notes: [...(isCompleted(result) ? [COMPLETED_NOTE] : []), ...(hasBars(curves) ? [BAR_NOTE] : [])],
+    notes: isCompleted(result) ? [COMPLETED_NOTE] : [],
   };
 }
 
