@@ -22,6 +22,21 @@ export interface ViewRequest {
   height: number;
 }
 
+/** Quantities that have a phasor or an envelope: fields, not densities. */
+export type MapQuantity = Exclude<FieldQuantity, "energyDensity" | "lossDensity">;
+
+/** A phasor at one of the frequencies that a run keeps maps of. absE and absH have a magnitude alone: √(|x|² + |y|²). */
+export interface MapRequest extends ViewRequest {
+  quantity: MapQuantity;
+  GHz: number;
+  part: "magnitude" | "real" | "imaginary";
+}
+
+/** The largest magnitude that a frame of the run has shown at each place. */
+export interface EnvelopeRequest extends ViewRequest {
+  quantity: "absE" | "absH";
+}
+
 /** A quantity over the whole section on a regular raster; row 0 is the bottom (smallest y). */
 export interface FieldSample {
   quantity: FieldQuantity;

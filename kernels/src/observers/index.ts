@@ -2,6 +2,7 @@
 export { AreaProbe, sumsOf } from "./area-probe.js";
 export type { LossyMedia } from "./dissipation.js";
 export { storedEnergy } from "./energy.js";
+export { FrameTransform } from "./frame-transform.js";
 export { LinePower } from "./line-power.js";
 export { balanceSums, PowerBalance } from "./power-balance.js";
 export { powerTaps, voltageTaps } from "./line-probe.js";

@@ -1,10 +1,12 @@
 /** What a running scene may become: paint, media and sources may change, its lattice and what is read from it may not. */
-import type { Lattice } from "../lattice/index.js";
+import type { FieldArray, Lattice } from "../lattice/index.js";
 import { cellOfColumn, cellOfRow } from "../lattice/index.js";
 import type { LatticeBox } from "../media/index.js";
 import { wholeLattice } from "../media/index.js";
 import type { Problem, ResolvedPatch, ResolvedScene } from "../scene/index.js";
 import { canonicalJson, gridOf } from "../scene/index.js";
+import type { CoefficientSource, Engine } from "../stepping/index.js";
+import { rowCoefficients } from "../stepping/index.js";
 import type { GridSummary } from "./session.js";
 
 const same = (a: unknown, b: unknown): boolean => canonicalJson({ value: a }) === canonicalJson({ value: b });
@@ -114,5 +116,29 @@ export function changedBox(before: ResolvedScene, after: ResolvedScene, lattice:
     lastColumn: right >= lattice.nx ? whole.lastColumn : Math.ceil(right - cellOfColumn(lattice, 0)),
     firstRow: bottom <= 0 ? 0 : Math.floor(bottom - cellOfRow(lattice, 0)),
     lastRow: top >= lattice.ny ? whole.lastRow : Math.ceil(top - cellOfRow(lattice, 0)),
+  };
+}
+
+/**
+ * A source of coefficients that, row by row before they take effect, clears fields which could not leave by themselves: a point
+ * that becomes a conductor would keep its field frozen; one so lossy that its field dies within a step (a < 0) would let it
+ * ring at the step rate in the semi-implicit form.
+ */
+export function clearingOverdamped(engine: Engine, source: CoefficientSource): CoefficientSource {
+  const { stride } = engine.lattice;
+  const { f, gx, gy } = engine.fields;
+  const before = rowCoefficients(stride);
+  return (j, after) => {
+    source(j, after);
+    engine.readCoefficients(j, before);
+    const base = j * stride;
+    const clear = (field: FieldArray, aOld: Float64Array, aNew: Float64Array, bNew: Float64Array): void => {
+      for (let i = 0; i < stride; i += 1) {
+        if (bNew[i] === 0 || (aNew[i] < 0 && aOld[i] >= 0)) field[base + i] = 0;
+      }
+    };
+    clear(f, before.aF, after.aF, after.bF);
+    clear(gx, before.aGx, after.aGx, after.bGx);
+    clear(gy, before.aGy, after.aGy, after.bGy);
   };
 }

@@ -1,15 +1,20 @@
 /** The session: one engine, its scene, what it records, and when it ends. */
 import { loadGenerators, saveGenerators } from "../drives/index.js";
-import type { FieldQuantity, FieldSample, ViewRequest } from "../frames/index.js";
-import type { FieldArray, Lattice } from "../lattice/index.js";
+import type {
+  EnvelopeRequest,
+  FieldQuantity,
+  FieldSample,
+  MapRequest,
+  ViewRequest,
+} from "../frames/index.js";
+import type { Lattice } from "../lattice/index.js";
 import type { SectionCoefficients } from "../media/index.js";
 import { storedEnergy } from "../observers/index.js";
 import type { ResolvedScene, Scene, SolveResult } from "../scene/index.js";
 import { documentSha256, readScene, resolveScene, sceneSha256 } from "../scene/index.js";
-import type { CoefficientSource, Engine } from "../stepping/index.js";
-import { rowCoefficients } from "../stepping/index.js";
+import type { Engine } from "../stepping/index.js";
 import { packBlocks, unpackBlocks } from "./blocks.js";
-import { changedBox, editProblems } from "./editing.js";
+import { changedBox, clearingOverdamped, editProblems } from "./editing.js";
 import { nonFiniteFailure } from "./failure.js";
 import type { FrameLooks } from "./frame-looks.js";
 import type { DrivePlan } from "./plan.js";
@@ -20,6 +25,7 @@ import type { LegRecord } from "./leg-record.js";
 import type { PortPlan } from "./port-plan.js";
 import { buildResult } from "./result.js";
 import { quantitiesOf, sampleQuantity } from "./sampling.js";
+import { driveTransform } from "./spectra.js";
 import type {
   AdvanceOutcome,
   EditLogEntry,
@@ -208,6 +214,21 @@ export class EngineSession implements SolveSession {
     return sampleQuantity(this.engine, request);
   }
 
+  sampleMap(request: MapRequest): FieldSample {
+    const maps = this.parts.frames?.maps;
+    if (!maps) throw new RangeError("The run keeps no maps.");
+    const { dt } = this.lattice;
+    const { step } = this;
+    const drive = driveTransform({ drives: this.drives, dt, steps: step }, request.GHz * 1e9);
+    return maps.sample(request, drive, step);
+  }
+
+  sampleEnvelope(request: EnvelopeRequest): FieldSample {
+    const maps = this.parts.frames?.maps;
+    if (!maps) throw new RangeError("The run keeps no envelope.");
+    return maps.sampleEnvelope(request, this.step);
+  }
+
   edit(scene: Scene): EditOutcome {
     const read = readScene(scene, { purpose: "run" });
     if (!read.ok) return { kind: "refused", problems: read.problems };
@@ -227,7 +248,7 @@ export class EngineSession implements SolveSession {
     if (box) {
       const previous = { coefficients: this.coefficients, box };
       this.coefficients = coefficientsOf(resolved, lattice, previous);
-      const clearing = this.clearOverdamped(this.coefficients.row);
+      const clearing = clearingOverdamped(engine, this.coefficients.row);
       engine.setRows(box.firstRow, box.lastRow, clearing);
       engine.setBranches(this.coefficients.branches);
       this.parts.frames?.refresh(engine);
@@ -237,30 +258,6 @@ export class EngineSession implements SolveSession {
     engine.setDrives(this.drives.points, this.drives.signals);
     this.scene = scene;
     this.resolved = resolved;
-  }
-
-  /**
-   * A source of coefficients that, row by row before they take effect, clears fields which could not leave by themselves: a point
-   * that becomes a conductor would keep its field frozen; one so lossy that its field dies within a step (a < 0) would let it
-   * ring at the step rate in the semi-implicit form.
-   */
-  private clearOverdamped(source: CoefficientSource): CoefficientSource {
-    const { stride } = this.lattice;
-    const { f, gx, gy } = this.engine.fields;
-    const before = rowCoefficients(stride);
-    return (j, after) => {
-      source(j, after);
-      this.engine.readCoefficients(j, before);
-      const base = j * stride;
-      const clear = (field: FieldArray, aOld: Float64Array, aNew: Float64Array, bNew: Float64Array): void => {
-        for (let i = 0; i < stride; i += 1) {
-          if (bNew[i] === 0 || (aNew[i] < 0 && aOld[i] >= 0)) field[base + i] = 0;
-        }
-      };
-      clear(f, before.aF, after.aF, after.bF);
-      clear(gx, before.aGx, after.aGx, after.bGx);
-      clear(gy, before.aGy, after.aGy, after.bGy);
-    };
   }
 
   /** What must agree for a snapshot to fit: everything that shapes the engine's arrays. */

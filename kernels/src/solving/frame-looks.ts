@@ -5,6 +5,8 @@ import type { LossyMedia } from "../observers/index.js";
 import { AreaProbe, balanceSums, PowerBalance, sumsOf } from "../observers/index.js";
 import type { ResolvedScene } from "../scene/index.js";
 import type { Engine } from "../stepping/index.js";
+import { ENVELOPE_LOOKS, FieldMaps } from "./field-maps.js";
+import type { MapSpec } from "./field-maps.js";
 import type { DrivePlan } from "./plan.js";
 
 /** Frames are as frequent as what a drive excites more than this weakly (of its strongest) asks for. */
@@ -23,7 +25,7 @@ const SMALL_FRAME = 5e4;
 const BALANCE_FREQUENCIES = 11;
 
 /** Steps from frame to frame, so that what is folded into frequencies up to `highestHz` was never excited. */
-export function framesEvery(drives: DrivePlan, dt: number, highestHz: number): number {
+export function framesEvery(drives: DrivePlan, dt: number, highestHz: number, envelope = false): number {
   let excited = highestHz;
   for (const { waveform, offset } of drives.sources) {
     if (waveform.toneHz !== null) {
@@ -40,7 +42,8 @@ export function framesEvery(drives: DrivePlan, dt: number, highestHz: number): n
     const last = sizes.reduce((found, size, n) => (size > UNHEARD * largest ? n : found), 0);
     excited = Math.max(excited, frequencies[Math.min(SEARCHED - 1, last + 1)]);
   }
-  return Math.max(1, Math.floor(1 / ((excited + highestHz) * dt)));
+  const looks = Math.floor(1 / ((excited + highestHz) * dt));
+  return Math.max(1, envelope ? Math.min(looks, Math.floor(1 / (ENVELOPE_LOOKS * excited * dt))) : looks);
 }
 
 /** `count` of `length` indices, evenly, the first and the last among them. */
@@ -65,6 +68,7 @@ export interface FrameInput {
   drives: DrivePlan;
   frequenciesGHz: readonly number[];
   every: number;
+  maps?: MapSpec | undefined;
 }
 
 export class FrameLooks {
@@ -74,6 +78,7 @@ export class FrameLooks {
   readonly areas: ReadonlyMap<number, AreaLook>;
   readonly balance: PowerBalance | null;
   readonly balanceGHz: readonly number[];
+  readonly maps: FieldMaps | null;
 
   constructor(private readonly input: FrameInput) {
     const { frequenciesGHz, every } = input;
@@ -82,6 +87,8 @@ export class FrameLooks {
     this.balanceGHz = picks.map((index) => frequenciesGHz[index]);
     this.areas = this.areaLooks(picks);
     this.balance = this.makeBalance();
+    const wanted = input.maps && (input.maps.envelope || input.maps.mapsGHz.length > 0);
+    this.maps = input.maps && wanted ? new FieldMaps(input.engine.lattice, input.maps, every) : null;
   }
 
   private areaLooks(picks: readonly number[]): Map<number, AreaLook> {
@@ -131,7 +138,7 @@ export class FrameLooks {
 
   /** Whether anything looks. */
   get needed(): boolean {
-    return this.areas.size > 0 || this.balance !== null;
+    return this.areas.size > 0 || this.balance !== null || this.maps !== null;
   }
 
   /** Steps from `step` to the next frame. */
@@ -148,6 +155,7 @@ export class FrameLooks {
     if (engine.step % this.every !== 0) return;
     const step = this.input.drives.firstStep + engine.step;
     for (const { probe } of this.areas.values()) probe.look(engine.fields, step);
+    this.maps?.look(engine.fields, step);
     this.balance?.look(engine, step, signals, signals.length - this.input.drives.signals);
   }
 
@@ -158,6 +166,7 @@ export class FrameLooks {
 
   save(): Float64Array {
     const parts = [...this.areas.values()].map(({ probe }) => probe.save());
+    if (this.maps) parts.push(...this.maps.save());
     if (this.balance) parts.push(this.balance.save());
     const all = new Float64Array(parts.reduce((sum, { length }) => sum + length, 0));
     let at = 0;
@@ -171,6 +180,7 @@ export class FrameLooks {
   load(packed: Float64Array): void {
     let rest = packed;
     for (const { probe } of this.areas.values()) rest = probe.load(rest);
+    if (this.maps) rest = this.maps.load(rest);
     this.balance?.load(rest);
   }
 }

@@ -23,7 +23,8 @@ export async function openSession(scene: Scene, options: SessionOptions = {}): P
   if (frequenciesGHz?.some((frequency) => !(frequency > 0 && Number.isFinite(frequency)))) {
     throw new RangeError("Every frequency of a spectrum must be a positive number of GHz.");
   }
-  const legs = legsOf(scene, makeEngine, frequenciesGHz);
+  const maps = { mapsGHz: options.mapsGHz ?? [], envelope: options.envelope ?? false };
+  const legs = legsOf(scene, makeEngine, frequenciesGHz, maps);
   const comparisons = comparisonsOf(scene, options).map(({ scene: other, ...comparison }) => ({
     ...comparison,
     legs: legsOf(other, makeEngine, frequenciesGHz),

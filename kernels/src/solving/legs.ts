@@ -3,7 +3,13 @@
  * scenes that it is compared with. Every leg has an engine of its own, made when its turn comes; of a leg that is over only its record
  * is kept. Steps and samples count on from leg to leg, and `maxSteps` is the sum of theirs.
  */
-import type { FieldQuantity, FieldSample, ViewRequest } from "../frames/index.js";
+import type {
+  EnvelopeRequest,
+  FieldQuantity,
+  FieldSample,
+  MapRequest,
+  ViewRequest,
+} from "../frames/index.js";
 import type { Scene, SolveResult } from "../scene/index.js";
 import { packBlocks, unpackBlocks } from "./blocks.js";
 import type { EngineSession } from "./engine-session.js";
@@ -159,6 +165,14 @@ export class LegsSession implements SolveSession {
 
   sampleField(request: ViewRequest): FieldSample {
     return this.current.sampleField(request);
+  }
+
+  sampleMap(request: MapRequest): FieldSample {
+    return this.current.sampleMap(request);
+  }
+
+  sampleEnvelope(request: EnvelopeRequest): FieldSample {
+    return this.current.sampleEnvelope(request);
   }
 
   /** Edits the leg that is running; it is then the last. */

@@ -17,7 +17,7 @@ export const quantitiesOf = (polarization: "TMz" | "TEz"): readonly FieldQuantit
     : ["Hz", "Ex", "Ey", "absE", "absH", "energyDensity", "lossDensity"];
 
 /** Writes row `cellRow` (0 … ny − 1) of a quantity at the cell centres. */
-type RowReader = (cellRow: number, out: Float64Array) => void;
+export type RowReader = (cellRow: number, out: Float64Array) => void;
 
 /** The three fields at the centres of one row of cells. */
 class CentreReader {
@@ -165,8 +165,12 @@ class DensityReader {
   };
 }
 
-function readerOf(engine: Engine, quantity: FieldQuantity): RowReader {
-  const { lattice, fields } = engine;
+/** A field quantity of one instant; densities have other readers. */
+export function fieldReader(
+  lattice: Lattice,
+  fields: EngineFields,
+  quantity: Exclude<FieldQuantity, "energyDensity" | "lossDensity">,
+): RowReader {
   const centre = new CentreReader(lattice, fields);
   const scratch = new Float64Array(lattice.nx);
   const negated =
@@ -201,11 +205,15 @@ function readerOf(engine: Engine, quantity: FieldQuantity): RowReader {
       return isTmz ? outOfPlane : inPlane;
     case "absH":
       return isTmz ? inPlane : outOfPlane;
-    case "energyDensity":
-      return new DensityReader(engine, (a, b) => halfStorage(a, b, lattice.dt)).read;
-    case "lossDensity":
-      return new DensityReader(engine, lossOf).read;
   }
+}
+
+function readerOf(engine: Engine, quantity: FieldQuantity): RowReader {
+  const { lattice, fields } = engine;
+  if (quantity === "energyDensity")
+    return new DensityReader(engine, (a, b) => halfStorage(a, b, lattice.dt)).read;
+  if (quantity === "lossDensity") return new DensityReader(engine, lossOf).read;
+  return fieldReader(lattice, fields, quantity);
 }
 
 /** Adds `scale` × a row of `from.length` values to `to`, each target cell the mean of the sources it covers, by length. */
@@ -229,11 +237,24 @@ function addResampled(from: Float64Array, to: Float64Array, width: number, scale
 
 /** Throws a RangeError for a quantity that the polarization does not have or a size below one sample. */
 export function sampleQuantity(engine: Engine, request: ViewRequest): FieldSample {
-  const { lattice } = engine;
+  checkQuantity(engine.lattice, request.quantity);
+  return resample(engine.lattice, request, readerOf(engine, request.quantity), engine.step);
+}
+
+/** Throws a RangeError for a quantity that the polarization does not have. */
+export function checkQuantity({ polarization }: Lattice, quantity: FieldQuantity): void {
+  if (!quantitiesOf(polarization).includes(quantity))
+    throw new RangeError(`${polarization} has no ${quantity}.`);
+}
+
+/** What a reader tells of the cells, on the raster asked for. Throws a RangeError for a size below one sample. */
+export function resample(
+  lattice: Lattice,
+  request: ViewRequest,
+  reader: RowReader,
+  step: number,
+): FieldSample {
   const { quantity } = request;
-  if (!quantitiesOf(lattice.polarization).includes(quantity)) {
-    throw new RangeError(`${lattice.polarization} has no ${quantity}.`);
-  }
   const width = Math.min(lattice.nx, Math.floor(request.width));
   const height = Math.min(lattice.ny, Math.floor(request.height));
   if (!(width >= 1 && height >= 1)) {
@@ -241,7 +262,6 @@ export function sampleQuantity(engine: Engine, request: ViewRequest): FieldSampl
       `A view of ${request.width} × ${request.height} samples was asked for; it needs at least 1 × 1.`,
     );
   }
-  const reader = readerOf(engine, quantity);
   const values = new Float32Array(width * height);
   const cells = new Float64Array(lattice.nx);
   const sums = new Float64Array(width);
@@ -260,5 +280,5 @@ export function sampleQuantity(engine: Engine, request: ViewRequest): FieldSampl
     }
     values.set(sums, target * width);
   }
-  return { quantity, width, height, values, step: engine.step, timeNs: engine.step * lattice.dt * 1e9 };
+  return { quantity, width, height, values, step, timeNs: step * lattice.dt * 1e9 };
 }

@@ -3,6 +3,7 @@ import type { Scene } from "../scene/index.js";
 import { fillMediaInUse, hasPoles, readScene, resolveScene, SceneError } from "../scene/index.js";
 import { EngineSession } from "./engine-session.js";
 import type { chooseEngine } from "./engines.js";
+import type { MapSpec } from "./field-maps.js";
 import { frameLooks, framesEvery, highestOf } from "./frame-looks.js";
 import type { Leg } from "./legs.js";
 import { coefficientsOf, drivesOf, latticeOf, layersOf } from "./plan.js";
@@ -34,6 +35,7 @@ export function legsOf(
   scene: Scene,
   makeEngine: Awaited<ReturnType<typeof chooseEngine>>,
   wantedGHz?: readonly number[],
+  maps?: MapSpec,
 ): Leg[] {
   const read = readScene(scene, { purpose: "run" });
   if (!read.ok) throw new SceneError(read.problems);
@@ -51,7 +53,8 @@ export function legsOf(
     const drives = ports ? portDrives(resolved, lattice, ports) : drivesOf(resolved, lattice);
     // The scene's time ends where it says, wherever it starts.
     const grid = { ...scenesGrid, maxSteps: scenesGrid.maxSteps - drives.firstStep };
-    const every = framesEvery(drives, lattice.dt, highestOf(frequenciesGHz, lattice));
+    const highest = highestOf([...frequenciesGHz, ...(maps?.mapsGHz ?? [])], lattice);
+    const every = framesEvery(drives, lattice.dt, highest, maps?.envelope);
     const probes = probesOf(resolved, lattice, frequenciesGHz, modes, every);
     const engine = makeEngine({
       lattice,
@@ -83,7 +86,7 @@ export function legsOf(
       ports,
       probes,
       frequenciesGHz,
-      frames: frameLooks({ scene: resolved, engine, media, drives, frequenciesGHz, every }),
+      frames: frameLooks({ scene: resolved, engine, media, drives, frequenciesGHz, every, maps }),
     });
   };
   const driven = resolved.ports.flatMap(({ drive }, index) => (drive ? [index] : []));

@@ -5,7 +5,13 @@
  */
 import type { Problem, Scene } from "../scene/index.js";
 import type { SolveResult } from "../scene/result.js";
-import type { FieldQuantity, FieldSample, ViewRequest } from "../frames/index.js";
+import type {
+  EnvelopeRequest,
+  FieldQuantity,
+  FieldSample,
+  MapRequest,
+  ViewRequest,
+} from "../frames/index.js";
 import type { EngineOptions } from "./engines.js";
 
 export type { EngineName, Precision } from "./engines.js";
@@ -21,6 +27,10 @@ export interface ComparisonOptions {
 export interface SessionOptions extends EngineOptions, ComparisonOptions {
   /** Spectrum frequencies in GHz, in the order wanted; default 401 evenly over the scene's band. */
   frequenciesGHz?: readonly number[];
+  /** Frequencies in GHz of which the run keeps the whole map: see `sampleMap`. Default: none. */
+  mapsGHz?: readonly number[];
+  /** Keeps the peak envelope: see `sampleEnvelope`. Default: no. */
+  envelope?: boolean;
 }
 
 /** What the run costs and on what mesh it is computed; known before the first step. */
@@ -97,6 +107,13 @@ export interface SolveSession {
   tracesSince(from: number): TraceIncrement[];
   /** One field quantity resampled to the size asked for (never finer than the lattice). */
   sampleField(request: ViewRequest): FieldSample;
+  /**
+   * A phasor of the run so far (of several runs: of the one that is on) at one of `mapsGHz`, per unit of the waveform that drives.
+   * Throws a RangeError where there is no such map, or sources drive with different waveforms.
+   */
+  sampleMap?(request: MapRequest): FieldSample;
+  /** The largest |E| or |H| so far. Throws a RangeError where the run keeps none. */
+  sampleEnvelope?(request: EnvelopeRequest): FieldSample;
   /** Paint, media and sources of `scene` from the next step on; grid and time step stay. */
   edit(scene: Scene): EditOutcome;
   snapshot(): SessionSnapshot;

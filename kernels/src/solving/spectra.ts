@@ -57,13 +57,25 @@ const none = (probes: readonly PlannedProbe[], warning: string): Spectra => ({
 });
 
 /** w as it drove the steps, before the amplitude: from its own time 0 on. */
-export function waveformSignal(input: SpectrumInput): SampledSignal {
+export function waveformSignal(input: Pick<SpectrumInput, "drives" | "dt" | "steps">): SampledSignal {
   const { waveform, offset } = input.drives.sources[0];
   const { dt, steps } = input;
   const last = Math.max(0, input.drives.firstStep + steps);
   const driven = Math.min(last, Math.ceil(waveform.endSeconds / dt) + 1);
   const values = Float64Array.from({ length: driven }, (_, n) => waveform.valueAt((n + offset) * dt));
   return { start: offset * dt, step: dt, values };
+}
+
+/** ∫w·exp(−jωt)dt of the waveform that all sources share. Throws a RangeError where they share none. */
+export function driveTransform(
+  input: Pick<SpectrumInput, "drives" | "dt" | "steps">,
+  hz: number,
+): { re: number; im: number } {
+  const [first, ...others] = input.drives.sources;
+  if (!first || others.some(({ waveformText }) => waveformText !== first.waveformText))
+    throw new RangeError("The sources share no waveform that a phasor could be a unit of.");
+  const { re, im } = fourierSum(waveformSignal(input), [hz]);
+  return { re: re[0], im: im[0] };
 }
 
 export const traceSignal = (input: SpectrumInput, probe: number): SampledSignal => ({
