@@ -1,6 +1,8 @@
 /** Impedance inverters against the formulas of their equivalent circuits. */
 import { describe, expect, it } from "vitest";
 import type { SolveResult } from "../scene/index.js";
+import { readScene } from "../scene/index.js";
+import { openSession } from "./index.js";
 import { invertersOf } from "./inverters.js";
 
 type Entry = NonNullable<SolveResult["ports"]>["s"][number];
@@ -69,5 +71,43 @@ describe("an inverter", () => {
     expect(invertersOf(twoPort([0.9, 0], [0, 0.3]))).toBeUndefined();
     expect(invertersOf(twoPort([0.8, 0], [0, 0.6]).slice(0, 2))).toBeUndefined();
     expect(invertersOf(twoPort([0.8, 0], [0, 0.6]))).toHaveLength(1);
+  });
+});
+
+describe("a step between plates 10 mm and 4 mm apart", () => {
+  // Two lines of impedances in the ratio of the distances, and at a low frequency nothing else: S₁₁ = (Z₂ − Z₁)/(Z₂ + Z₁), D. M. Pozar,
+  // Microwave Engineering, 4th ed., sec. 2.3; so K/√(Z₁Z₂) = √(Z₂/Z₁).
+  it("is an inverter of √0.4 at its ports", async () => {
+    const line = { mode: 0, drive: true } as const;
+    const read = readScene(
+      {
+        format: "heddle-scene",
+        version: 1,
+        name: "Step",
+        polarization: "TEz",
+        section: { widthMm: 40, heightMm: 10 },
+        band: { fromGHz: 0.2, toGHz: 2 },
+        mesh: { cellMm: 0.5 },
+        edges: { left: "absorbing", right: "absorbing", bottom: "electric", top: "electric" },
+        paint: [{ kind: "rectangle", id: "step", medium: "pec", x: 20, y: 4, width: 20, height: 6 }],
+        ports: [
+          { ...line, id: "wide", inward: "+x", from: [8, 0], to: [8, 10], shiftMm: 12 },
+          { ...line, id: "narrow", inward: "-x", from: [32, 0], to: [32, 4], shiftMm: 12 },
+        ],
+        stop: { maxTimeNs: 40, decayDb: 60 },
+      },
+      { purpose: "run" },
+    );
+    if (!read.ok) throw new Error(JSON.stringify(read.problems));
+    const session = await openSession(read.scene, { engine: "wasm", frequenciesGHz: [0.3, 0.6] });
+    session.advance(1e7);
+    const { ports } = session.result();
+    session.dispose();
+    const [inverter] = ports?.inverters ?? [];
+    expect(inverter.between).toEqual(["wide", "narrow"]);
+    for (const k of inverter.k) expect(Math.abs((k ?? 9) / Math.sqrt(0.4) - 1)).toBeLessThan(2e-3);
+    // The lower impedance stands behind the wide port: its wave comes back reversed, that of the narrow port upright.
+    expect(Math.abs(inverter.phaseDeg[0][0] ?? 99)).toBeLessThan(2);
+    expect(Math.abs(inverter.phaseDeg[1][0] ?? 0)).toBeGreaterThan(178);
   });
 });

@@ -33,9 +33,11 @@ function inverterAt(own: Entry, other: Entry, through: Entry, n: number): [numbe
 export function invertersOf(s: readonly Entry[]): Inverters | undefined {
   const find = (to: string, from: string): Entry | undefined =>
     s.find((one) => one.to === to && one.from === from);
-  const found = s.flatMap(({ to, from }): Inverters => {
+  const found = s.flatMap(({ to, from }, index): Inverters => {
     const [own, other, through] = [find(from, from), find(to, to), find(to, from)];
-    if (to <= from || !own || !other || !through || !find(from, to)) return [];
+    const back = s.findIndex((one) => one.to === from && one.from === to);
+    // Each pair once, in the order in which its ports were driven.
+    if (to === from || back < index || !own || !other || !through) return [];
     const at = own.re.map((_, n) => inverterAt(own, other, through, n));
     if (at.every((value) => value === null)) return [];
     const part = (of: 0 | 1 | 2): (number | null)[] => at.map((value) => value && value[of]);
