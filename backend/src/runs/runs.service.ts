@@ -151,13 +151,12 @@ export class RunsService {
     return new Map(order.map((id, index) => [id, index + 1]));
   }
 
-  /** Of the largest of the scenes that the run solves one after the other. */
+  /** Of the scene, whose field stays, and of the largest of those that it is compared with, one after the other. */
   private memoryFor(document: Record<string, unknown>, compared: ComparisonOptions): number {
     const own = runnable(document);
     const others = scenesBeside(own, compared).map(runnable);
-    const memoryBytes = Math.max(
-      ...[own, ...others].map((scene) => estimateCost(resolveScene(scene)).memoryBytes),
-    );
+    const bytesOf = (scene: Scene): number => estimateCost(resolveScene(scene)).memoryBytes;
+    const memoryBytes = bytesOf(own) + Math.max(0, ...others.map(bytesOf));
     if (memoryBytes > this.limits.memoryBytes) {
       throw new Refusal(
         "too-large",

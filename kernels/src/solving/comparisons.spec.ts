@@ -224,6 +224,9 @@ describe("a run that is compared with others", () => {
     const [later] = session.tracesSince(alone.grid.steps);
     expect([later.from, later.values.length]).toEqual([alone.grid.steps, 0]);
     expect(session.edit(scene)).toMatchObject({ kind: "refused" });
+    const look = { quantity: "Ez", width: 8, height: 8 } as const;
+    const field = session.sampleField(look);
+    expect(field.step).toBe(alone.grid.steps);
     const saved = session.snapshot();
     expect(session.advance(1e7)).toMatchObject({ kind: "ended", reason: "time" });
     const result = session.result();
@@ -231,7 +234,10 @@ describe("a run that is compared with others", () => {
     expect(rest).toEqual(figuresOf(alone));
     expect(extrapolation?.probes).toHaveLength(1);
     expect(shielding).toHaveLength(1);
+    // The field stays that of the scene itself.
+    expect(session.sampleField(look)).toEqual(field);
     session.restore(saved);
+    expect(session.sampleField(look)).toEqual(field);
     session.advance(1e7);
     expect(figuresOf(session.result())).toEqual(figuresOf(result));
     session.dispose();

@@ -21,6 +21,7 @@ import type {
   GridSummary,
   SessionSnapshot,
   SolveSession,
+  StopReason,
   TraceIncrement,
 } from "./session.js";
 
@@ -54,6 +55,8 @@ export class LegsSession implements SolveSession {
   readonly quantities: readonly FieldQuantity[];
   private finished: FinishedLeg[] = [];
   private current: EngineSession;
+  /** The scene's own last leg, whose field stays to be looked at while others are solved for comparison. */
+  private shown: EngineSession | null = null;
   /** An edited or cancelled run ends with the leg that it is in. */
   private last: number;
 
@@ -111,22 +114,31 @@ export class LegsSession implements SolveSession {
     for (;;) {
       const outcome = this.current.advance(end - this.step);
       if (outcome.kind !== "ended") return outcome;
-      if (outcome.reason === "cancelled" || this.finished.length === this.last) return outcome;
+      if (outcome.reason === "cancelled") return outcome;
+      if (this.finished.length === this.last) return { kind: "ended", reason: this.ownReason() };
       this.goOn();
       if (this.step >= end) return { kind: "running" };
     }
   }
 
+  /** The scene's own legs tell why the run ended: the least finished of them. */
+  private ownReason(): StopReason {
+    const records = [...this.finished.map(({ record }) => record), this.current.record()];
+    return records.slice(0, this.own.length).some(({ reason }) => reason === "time") ? "time" : "decay";
+  }
+
   /** Puts the leg that is over aside and opens the next one. */
   private goOn(): void {
     const { current, ownUnderWay } = this;
+    const stays = this.finished.length === this.own.length - 1;
     this.finished.push({
       record: current.record(),
-      saved: current.snapshot("record"),
+      saved: current.snapshot(stays ? "run" : "record"),
       traces: ownUnderWay ? current.tracesSince(0) : [],
       samples: ownUnderWay ? current.step : 0,
     });
-    current.dispose();
+    if (stays) this.shown = current;
+    else current.dispose();
     this.current = this.legs[this.finished.length].open();
   }
 
@@ -163,8 +175,9 @@ export class LegsSession implements SolveSession {
     });
   }
 
+  /** Always of the scene itself: the field of one without its shield would not fit the drawing. */
   sampleField(request: ViewRequest): FieldSample {
-    return this.current.sampleField(request);
+    return (this.shown ?? this.current).sampleField(request);
   }
 
   sampleMap(request: MapRequest): FieldSample {
@@ -209,7 +222,8 @@ export class LegsSession implements SolveSession {
       step: words.steps[leg],
       bytes: blocks[leg],
     });
-    this.current.dispose();
+    this.dispose();
+    this.shown = null;
     this.finished = [];
     this.current = this.legs[0].open();
     this.last = this.legs.length - 1;
@@ -226,6 +240,7 @@ export class LegsSession implements SolveSession {
   }
 
   dispose(): void {
+    this.shown?.dispose();
     this.current.dispose();
   }
 }

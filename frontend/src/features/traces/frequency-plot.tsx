@@ -102,7 +102,7 @@ export function FrequencyPlot(props: FrequencyPlotProps) {
           <CurveBar key={curve.key} curve={curve} x={x} y={y} />
         ))}
         {limits.map((limit) => (
-          <LimitMark key={limit.key} limit={limit} x={x} y={y} right={right} />
+          <LimitMark key={limit.key} limit={limit} x={x} y={y} edges={{ top, right, bottom }} />
         ))}
         {before.map((curve) => (
           <CurveLine

@@ -6,8 +6,8 @@ export interface LimitMarkProps {
   limit: LimitLine;
   x: (GHz: number) => number;
   y: (dB: number) => number;
-  /** The plot's right edge, px: words end there at the latest. */
-  right: number;
+  /** The plot's edges, px: words stay within. */
+  edges: { top: number; right: number; bottom: number };
 }
 
 const STROKE_EVERY_PX = 9;
@@ -16,7 +16,7 @@ const WORDS_PX = 90;
 const WORDS = { true: "kept", false: "broken", null: "not judged" };
 
 /** A limit's line, with short strokes on the side where the curve must not be. */
-export function LimitMark({ limit, x, y, right }: LimitMarkProps) {
+export function LimitMark({ limit, x, y, edges }: LimitMarkProps) {
   const points = limit.points.map(({ GHz, dB }) => ({ x: x(GHz), y: y(dB) }));
   const only = points.at(0);
   if (only === undefined) return null;
@@ -42,13 +42,13 @@ export function LimitMark({ limit, x, y, right }: LimitMarkProps) {
       <title>{`${limit.name}, ${WORDS[`${limit.holds}`]}`}</title>
       <path d={`M${line}`} />
       <path d={strokes.join("")} className={styles.limitStrokes} />
-      <Margin limit={limit} x={x} y={y} right={right} />
+      <Margin limit={limit} x={x} y={y} edges={edges} />
     </g>
   );
 }
 
 /** Where the curve comes nearest to the limit, or breaks it worst: a dimension between the two. */
-function Margin({ limit: { margin, atGHz, sense, points, holds }, x, y, right }: LimitMarkProps) {
+function Margin({ limit: { margin, atGHz, sense, points, holds }, x, y, edges }: LimitMarkProps) {
   if (margin === null || atGHz === null) return null;
   const nearest = points.reduce<LimitLine["points"][number] | null>(
     (best, point) =>
@@ -59,11 +59,15 @@ function Margin({ limit: { margin, atGHz, sense, points, holds }, x, y, right }:
   const [px, limitY] = [x(atGHz), y(nearest.dB)];
   const curveY = y(sense === "below" ? nearest.dB - margin : nearest.dB + margin);
   const outward = sense === "below" ? -10 : 18;
-  const turned = px > right - WORDS_PX;
+  const turned = px > edges.right - WORDS_PX;
   return (
     <g className={styles.margin}>
       <path d={`M${(px - 3).toFixed(1)} ${curveY.toFixed(1)}h6m-3 0V${limitY.toFixed(1)}`} />
-      <text x={turned ? px - 5 : px + 5} y={limitY + outward} textAnchor={turned ? "end" : "start"}>
+      <text
+        x={turned ? px - 5 : px + 5}
+        y={Math.min(Math.max(limitY + outward, edges.top + 10), edges.bottom - 4)}
+        textAnchor={turned ? "end" : "start"}
+      >
         {holds === true ? `${marginDb(margin)} to spare` : `${marginDb(-margin)} over`}
       </text>
     </g>
