@@ -2,7 +2,7 @@ import type { Limit, SolveResult } from "@heddle/kernels/scene";
 import { describe, expect, it } from "vitest";
 import { limitLines } from "./limit-lines";
 import { guideTicks, passivityWords, sCurves, sRange } from "./s-curves";
-import { viewKinds, viewOf } from "./views";
+import { viewKinds, viewName, viewOf } from "./views";
 
 type Ports = NonNullable<SolveResult["ports"]>;
 
@@ -86,6 +86,20 @@ describe("the views of a result", () => {
     expect(viewKinds(result({ ports: undefined }))).toEqual([]);
     const shielding = [{ probe: "p", GHz: [1], dB: [3] }];
     expect(viewKinds(result({ shielding }))).toContain("shielding");
+  });
+
+  it("show probes of one unit at a time, and limits on those only", () => {
+    const of = (id: string, unit: string) => ({ id, unit, drive: null, spectrum: { GHz: [1], value: [10] } });
+    const probes = [of("e", "V/m"), of("w", "W/m")] as unknown as SolveResult["probes"];
+    const mixed = result({ ports: undefined, probes });
+    const kinds = viewKinds(mixed);
+    expect(kinds).toEqual(["probes V/m", "probes W/m"]);
+    expect(kinds.map((kind) => viewName(kind, kinds))).toEqual(["Probes, V/m", "Probes, W/m"]);
+    expect(viewName("probes V/m", ["level", "probes V/m"])).toBe("Probes");
+    const onField = { ...limit, of: { probe: "e" } };
+    const views = kinds.map((kind) => viewOf(kind, { ...input, limits: [onField], result: mixed }));
+    expect(views.map(({ curves }) => curves.map(({ label }) => label))).toEqual([["e"], ["w"]]);
+    expect(views.map(({ limits }) => limits.length)).toEqual([1, 0]);
   });
 
   it("draw a limit with its margin where it is on what they show", () => {

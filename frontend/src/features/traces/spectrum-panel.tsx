@@ -9,7 +9,7 @@ import { whyNoSpectrum } from "./spectrum";
 import styles from "./traces.module.css";
 import { useSize } from "./use-size";
 import type { PlotView, ViewKind } from "./views";
-import { VIEW_NAMES, viewKinds, viewOf } from "./views";
+import { viewKinds, viewName, viewOf } from "./views";
 
 export interface SpectrumPanelProps {
   result: SolveResult | null;
@@ -71,7 +71,9 @@ function Spectrum(props: SpectrumProps) {
   const restGHz = atLimit ?? (first === undefined ? null : (first.GHz[strongest(first)] ?? null));
   const GHz = cursorGHz ?? restGHz;
   const guide =
-    result.ports === undefined || kind === "probes" ? [] : guideTicks(result.ports, Math.floor(width / 110));
+    result.ports === undefined || kind.startsWith("probes")
+      ? []
+      : guideTicks(result.ports, Math.floor(width / 110));
   return (
     <>
       <header className={styles.head}>
@@ -158,7 +160,7 @@ function Views({ kind, kinds, onKind }: Pick<SpectrumProps, "kind" | "kinds" | "
             onKind(one);
           }}
         >
-          {VIEW_NAMES[one]}
+          {viewName(one, kinds)}
         </button>
       ))}
     </span>

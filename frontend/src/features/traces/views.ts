@@ -8,14 +8,18 @@ import type { SQuantity } from "./s-curves";
 import { passivityWords, sCurves, sRange } from "./s-curves";
 import { isCompleted, probeCurves, shieldingCurves } from "./spectrum";
 
-export type ViewKind = SQuantity | "probes" | "shielding";
+/** Probes of one unit at a time: V/m and J/m share no axis. */
+export type ViewKind = SQuantity | "shielding" | `probes ${string}`;
 
-export const VIEW_NAMES: Record<ViewKind, string> = {
-  level: "|S|",
-  phase: "Phase",
-  delay: "Delay",
-  shielding: "Shielding",
-  probes: "Probes",
+const VIEW_NAMES = { level: "|S|", phase: "Phase", delay: "Delay", shielding: "Shielding" };
+
+const isOfProbes = (kind: ViewKind): kind is `probes ${string}` => kind.startsWith("probes ");
+const unitOf = (kind: `probes ${string}`): string => kind.slice("probes ".length);
+
+/** What the view is called among those that there are. */
+export const viewName = (kind: ViewKind, kinds: readonly ViewKind[]): string => {
+  if (!isOfProbes(kind)) return VIEW_NAMES[kind];
+  return kinds.filter(isOfProbes).length === 1 ? "Probes" : `Probes, ${unitOf(kind)}`;
 };
 
 export interface PlotView {
@@ -36,8 +40,8 @@ export function viewKinds(result: SolveResult): ViewKind[] {
   const kinds: ViewKind[] = [];
   if (result.ports !== undefined) kinds.push("level", "phase", "delay");
   if (result.shielding !== undefined && result.shielding.length > 0) kinds.push("shielding");
-  if (result.probes.some(({ spectrum }) => spectrum !== null)) kinds.push("probes");
-  return kinds;
+  const units = result.probes.flatMap(({ spectrum, unit }) => (spectrum === null ? [] : [unit]));
+  return [...kinds, ...[...new Set(units)].map((unit): ViewKind => `probes ${unit}`)];
 }
 
 export interface ViewInput {
@@ -85,17 +89,23 @@ function sView(kind: SQuantity, { result, previous, limits }: ViewInput): PlotVi
 const isPair = ({ ports }: SolveResult, [to, from]: readonly [string, string]): boolean =>
   ports?.s.some((pair) => pair.to === to && pair.from === from) ?? false;
 
-function probesView({ result, previous, limits, nameOf, selected }: ViewInput): PlotView {
+const ofUnit = (result: SolveResult, unit: string): SolveResult => ({
+  ...result,
+  probes: result.probes.filter((probe) => probe.unit === unit),
+});
+
+function probesView(unit: string, input: ViewInput): PlotView {
+  const { limits, nameOf, selected } = input;
+  const result = ofUnit(input.result, unit);
+  const previous = input.previous && ofUnit(input.previous, unit);
   // An area's halves are told where it alone is looked at: they would crowd a plot of many.
   const split = (probe: ProbeResult): boolean => probe.id === selected || result.probes.length === 1;
   const curves = probeCurves(result, nameOf, split);
   const before = previous === null ? [] : probeCurves(previous, nameOf);
-  const lines = limitLines(limits, result.limits, (of) => "probe" in of);
-  const units = [
-    ...new Set(result.probes.flatMap(({ spectrum, unit }) => (spectrum === null ? [] : [unit]))),
-  ];
+  const measured = new Set(result.probes.map(({ id }) => id));
+  const lines = limitLines(limits, result.limits, (of) => "probe" in of && measured.has(of.probe));
   return {
-    title: `Level per unit source, dB${units.length > 0 ? ` re 1 ${units.join(", ")}` : ""}`,
+    title: `Level per unit source, dB re 1 ${unit}`,
     unit: "dB",
     decimals: 1,
     turn: null,
@@ -125,12 +135,6 @@ function shieldingView({ result, previous, limits, nameOf }: ViewInput): PlotVie
 }
 
 export function viewOf(kind: ViewKind, input: ViewInput): PlotView {
-  switch (kind) {
-    case "probes":
-      return probesView(input);
-    case "shielding":
-      return shieldingView(input);
-    default:
-      return sView(kind, input);
-  }
+  if (isOfProbes(kind)) return probesView(unitOf(kind), input);
+  return kind === "shielding" ? shieldingView(input) : sView(kind, input);
 }
