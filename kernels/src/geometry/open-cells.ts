@@ -46,6 +46,9 @@ export function commonLength(a: readonly Span[], b: readonly Span[]): number {
   return sum;
 }
 
+/** In cells: above rounding, below half the thickness of a wall. */
+const ON_EDGE = 1e-6;
+
 /** The cell beyond a side of the section, where what touches the side goes on straight outward. */
 export function continued(cell: OpenCell, side: Side4): OpenCell {
   if (typeof cell === "string") return cell;
@@ -53,9 +56,10 @@ export function continued(cell: OpenCell, side: Side4): OpenCell {
   for (const span of cell[side]) if (span[1] - span[0] > widest[1] - widest[0]) widest = span;
   const area = widest[1] - widest[0];
   if (area < SLIVER) return "metal";
-  if (area > 1 - SLIVER) return "open";
-  const low = widest[0] < SLIVER ? WHOLE : NO_SPANS;
-  const high = widest[1] > 1 - SLIVER ? WHOLE : NO_SPANS;
+  // A wall along an edge takes less than a sliver of the cell, and closes that edge.
+  const low = widest[0] < ON_EDGE ? WHOLE : NO_SPANS;
+  const high = widest[1] > 1 - ON_EDGE ? WHOLE : NO_SPANS;
+  if (low === WHOLE && high === WHOLE) return "open";
   return side === "left" || side === "right"
     ? { area, left: [widest], right: [widest], bottom: low, top: high }
     : { area, bottom: [widest], top: [widest], left: low, right: high };

@@ -71,8 +71,8 @@ export function driveTransform(
   input: Pick<SpectrumInput, "drives" | "dt" | "steps">,
   hz: number,
 ): { re: number; im: number } {
-  const [first, ...others] = input.drives.sources;
-  if (!first || others.some(({ waveformText }) => waveformText !== first.waveformText))
+  const first = input.drives.sources.at(0);
+  if (!first || input.drives.sources.some(({ waveformText }) => waveformText !== first.waveformText))
     throw new RangeError("The sources share no waveform that a phasor could be a unit of.");
   const { re, im } = fourierSum(waveformSignal(input), [hz]);
   return { re: re[0], im: im[0] };
