@@ -51,13 +51,24 @@ function probesOf(coarse: SolveResult, fine: SolveResult, rule: Rule): Extrapola
   return fine.probes.flatMap(({ id, drive, spectrum }): Extrapolation["probes"] => {
     const before = coarse.probes.find((probe) => probe.id === id && probe.drive === drive)?.spectrum;
     if (!spectrum || !before) return [];
-    const { GHz } = spectrum;
+    // Areas have frequencies of their own on each mesh: only common ones can be compared.
+    const at = spectrum.GHz.flatMap((frequency, n) => {
+      const m = before.GHz.indexOf(frequency);
+      return m < 0 ? [] : [{ frequency, n, m }];
+    });
+    const GHz = at.map(({ frequency }) => frequency);
+    const ofFine = (curve: Curve): Curve => at.map(({ n }) => curve[n]);
+    const ofCoarse = (curve: Curve): Curve => at.map(({ m }) => curve[m]);
     if ("re" in spectrum && "re" in before) {
-      const curves = complexCurves(before, spectrum, rule);
+      const curves = complexCurves(
+        { re: ofCoarse(before.re), im: ofCoarse(before.im) },
+        { re: ofFine(spectrum.re), im: ofFine(spectrum.im) },
+        rule,
+      );
       return [{ id, drive, GHz, ...curves, uncertainty: widened([curves.uncertainty]) }];
     }
     if ("value" in spectrum && "value" in before) {
-      const curves = realCurves(before.value, spectrum.value, rule);
+      const curves = realCurves(ofCoarse(before.value), ofFine(spectrum.value), rule);
       return [{ id, drive, GHz, ...curves, uncertainty: widened([curves.uncertainty]) }];
     }
     return [];

@@ -63,7 +63,7 @@ export function CurveBar({ curve, x, y }: Place & { curve: PlotCurve }) {
   const { bar } = curve;
   if (bar === undefined) return null;
   const edge = (values: readonly (number | null)[]): string[] =>
-    curve.GHz.flatMap((GHz, at) => {
+    bar.GHz.flatMap((GHz, at) => {
       const value = values[at] ?? null;
       return value === null ? [] : [`${x(GHz).toFixed(1)} ${y(value).toFixed(1)}`];
     });

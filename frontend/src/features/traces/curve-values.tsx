@@ -16,7 +16,8 @@ export interface CurveValuesProps {
 }
 
 /** "−20.41 … −20.20": where the value lies at zero cell size. */
-function barWords({ bar }: PlotCurve, at: number, decimals: number): string | null {
+function barWords({ bar }: PlotCurve, GHz: number, decimals: number): string | null {
+  const at = bar === undefined ? -1 : nearestIndex(bar.GHz, GHz);
   const [low, high] = [bar?.low[at] ?? null, bar?.high[at] ?? null];
   if (low === null || high === null) return null;
   const upper = formatFixed(high, decimals);
@@ -34,7 +35,7 @@ export function CurveValues(props: CurveValuesProps) {
       {curves.map((curve) => {
         const at = nearestIndex(curve.GHz, GHz);
         const value = curve.values[at] ?? null;
-        const bar = barWords(curve, at, decimals);
+        const bar = barWords(curve, GHz, decimals);
         const chosen = curve.probe !== undefined && curve.probe === selected;
         return (
           <li key={curve.key}>

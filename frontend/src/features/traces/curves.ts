@@ -5,8 +5,8 @@ export interface PlotCurve {
   GHz: readonly number[];
   /** In the plot's unit; null where undefined. */
   values: readonly (number | null)[];
-  /** Where the value lies on an ever finer mesh, at the same frequencies; from a run on two meshes. */
-  bar?: { low: readonly (number | null)[]; high: readonly (number | null)[] };
+  /** Where the value lies on an ever finer mesh, at frequencies of its own; from a run on two meshes. */
+  bar?: { GHz: readonly number[]; low: readonly (number | null)[]; high: readonly (number | null)[] };
   /** The probe that it is of, for the selection on the sheet. */
   probe?: string;
 }
@@ -42,6 +42,7 @@ export const BOTTOMLESS_DB = -300;
  * @param toDb from a magnitude to its level
  */
 export function barOf(
+  GHz: readonly number[],
   magnitudes: readonly (number | null)[],
   uncertainty: readonly (number | null)[],
   toDb: (magnitude: number | null) => number | null,
@@ -53,7 +54,7 @@ export function barOf(
       const at = Math.abs(value) + sign * around;
       return at > 0 ? toDb(at) : BOTTOMLESS_DB;
     });
-  return { low: edge(-1), high: edge(1) };
+  return { GHz, low: edge(-1), high: edge(1) };
 }
 
 /** The index of the frequency nearest to one asked for. */

@@ -94,7 +94,7 @@ describe("the views of a result", () => {
     const mixed = result({ ports: undefined, probes });
     const kinds = viewKinds(mixed);
     expect(kinds).toEqual(["probes V/m", "probes W/m"]);
-    expect(kinds.map((kind) => viewName(kind, kinds))).toEqual(["Probes, V/m", "Probes, W/m"]);
+    expect(kinds.map((kind) => viewName(kind, kinds))).toEqual(["V/m", "W/m"]);
     expect(viewName("probes V/m", ["level", "probes V/m"])).toBe("Probes");
     const onField = { ...limit, of: { probe: "e" } };
     const views = kinds.map((kind) => viewOf(kind, { ...input, limits: [onField], result: mixed }));

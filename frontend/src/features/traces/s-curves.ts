@@ -42,7 +42,7 @@ export function sCurves(result: SolveResult, quantity: SQuantity): PlotCurve[] {
     const finer = result.extrapolation?.s.find((one) => one.to === to && one.from === from);
     if (finer === undefined || quantity !== "level") return curve;
     const magnitudes = finer.re.map((_, index) => magnitudeOf(finer, index));
-    return { ...curve, bar: barOf(magnitudes, finer.uncertainty, amplitudeDb) };
+    return { ...curve, bar: barOf(finer.GHz, magnitudes, finer.uncertainty, amplitudeDb) };
   });
 }
 

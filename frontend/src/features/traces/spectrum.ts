@@ -24,9 +24,9 @@ const levelsOf = (spectrum: ComplexSpectrum | PowerSpectrum): (number | null)[] 
 
 function barOfProbe(bar: ProbeBar | undefined): Pick<PlotCurve, "bar"> {
   if (bar === undefined) return {};
-  if ("value" in bar) return { bar: barOf(bar.value, bar.uncertainty, powerDb) };
+  if ("value" in bar) return { bar: barOf(bar.GHz, bar.value, bar.uncertainty, powerDb) };
   const magnitudes = bar.GHz.map((_, index) => magnitudeOf(bar, index));
-  return { bar: barOf(magnitudes, bar.uncertainty, amplitudeDb) };
+  return { bar: barOf(bar.GHz, magnitudes, bar.uncertainty, amplitudeDb) };
 }
 
 /**

@@ -19,7 +19,7 @@ const unitOf = (kind: `probes ${string}`): string => kind.slice("probes ".length
 /** What the view is called among those that there are. */
 export const viewName = (kind: ViewKind, kinds: readonly ViewKind[]): string => {
   if (!isOfProbes(kind)) return VIEW_NAMES[kind];
-  return kinds.filter(isOfProbes).length === 1 ? "Probes" : `Probes, ${unitOf(kind)}`;
+  return kinds.filter(isOfProbes).length === 1 ? "Probes" : unitOf(kind);
 };
 
 export interface PlotView {
@@ -105,7 +105,7 @@ function probesView(unit: string, input: ViewInput): PlotView {
   const measured = new Set(result.probes.map(({ id }) => id));
   const lines = limitLines(limits, result.limits, (of) => "probe" in of && measured.has(of.probe));
   return {
-    title: `Level per unit source, dB re 1 ${unit}`,
+    title: `Level, dB re 1 ${unit}, per unit source`,
     unit: "dB",
     decimals: 1,
     turn: null,
