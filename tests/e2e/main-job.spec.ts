@@ -94,6 +94,8 @@ describe("the main job", () => {
       .click();
     await page.getByLabel("Brush width").fill("20");
     await page.getByLabel("Brush width").press("Enter");
+    const atStroke = await latestRun(sceneId);
+    if (atStroke === undefined) throw new Error("The run is gone.");
     await sheet.drag([238, 126], [238, 146], [238, 166]);
     const edited = await waitFor("the live edit", async () => {
       const latest = await latestRun(sceneId);
@@ -104,7 +106,7 @@ describe("the main job", () => {
       return latest !== undefined && latest.timeNs > edited.timeNs + 5 ? latest : undefined;
     });
     // The tone still builds up: what counts is the level just before the stroke.
-    const leaking = await outsidePeak(run.id, edited.timeNs - 3.5, edited.timeNs - 1.5);
+    const leaking = await outsidePeak(run.id, atStroke.timeNs - 2, atStroke.timeNs);
     expect(leaking).toBeGreaterThan(0);
     const lined = await outsidePeak(run.id, settled.timeNs - 2, settled.timeNs);
     await shoot(page, "painted-over");
